@@ -27,6 +27,17 @@ type Score struct {
 	Figures []float64
 	Aims    []float64
 	Limits  []float64
+	// Answers are what simulators said on the way, for the record only.
+	Answers []Answer
+}
+
+// Answer is what one simulator said to one question, kept so that it need
+// never be asked again. The search does not look inside.
+type Answer struct {
+	Key      string // SHA-256 of the whole question, hexadecimal
+	Design   string // the design's hash
+	Model    string // the simulator's identity
+	Response []byte // JSON
 }
 
 // Status is how an evaluation ended.
