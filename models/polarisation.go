@@ -1,6 +1,9 @@
 package models
 
-import "math"
+import (
+	"math"
+	"math/cmplx"
+)
 
 // AxialRatioCap is the highest axial ratio that is ever reported, dB.
 const AxialRatioCap = 60
@@ -25,4 +28,11 @@ func AxialRatio(c Circular) (db float64, sense Sense) {
 		return db, Right
 	}
 	return db, Left
+}
+
+// PortSpread is how far the port impedance moves when the voltage is spread
+// evenly over the riser, in per cent of its magnitude: the model's own
+// uncertainty about the port.
+func PortSpread(s *Sample) float64 {
+	return 100 * cmplx.Abs(s.SpreadPort-s.Port) / cmplx.Abs(s.Port)
 }

@@ -1,0 +1,238 @@
+package objectives
+
+import (
+	"fmt"
+	"math"
+	"strconv"
+
+	"turnwise/models"
+	"turnwise/optimize/space"
+)
+
+// Resolutions of canonical points and of every design that is written: 1 µm,
+// 0.01 Ω, 0.001 turn.
+const (
+	LengthGrid     = 1e-6
+	ResistanceGrid = 0.01
+	TurnsGrid      = 0.001
+)
+
+// Column is one varied quantity of a front, a knot at a time.
+type Column struct {
+	Name     string // with its unit: the CSV column and the variable's name
+	Quantity Quantity
+	Knot     int // of a law, from 0
+}
+
+// suffix is the unit at the end of a quantity's column.
+func (q Quantity) suffix() string {
+	switch q {
+	case Turns, LeadTurns, StripTurns, Conductor:
+		return ""
+	case TransformerImpedance:
+		return "_ohm"
+	}
+	return "_m"
+}
+
+// IsLaw reports whether the quantity runs along the winding.
+func (q Quantity) IsLaw() bool { return q == Diameter || q == Spacing }
+
+// Grid is the resolution of the quantity's canonical values.
+func (q Quantity) Grid() float64 {
+	switch q.suffix() {
+	case "_m":
+		return LengthGrid
+	case "_ohm":
+		return ResistanceGrid
+	}
+	return TurnsGrid
+}
+
+// Layout ties a spec's points to designs: which variable is which dimension.
+type Layout struct {
+	spec      *Spec
+	Columns   []Column    // one a variable, in the order of a point
+	Space     space.Space // what a searcher sees, named like the columns
+	conductor int         // the variable that chooses the stock; −1: the first row
+}
+
+// NewLayout lays the varied quantities of a spec out as variables.
+func NewLayout(s *Spec) *Layout {
+	l := &Layout{spec: s, conductor: -1}
+	for _, v := range s.Vary {
+		for k := range max(v.Knots, 1) {
+			c := Column{Name: string(v.Quantity) + v.Quantity.suffix(), Quantity: v.Quantity, Knot: k}
+			if v.Quantity.IsLaw() {
+				c.Name = string(v.Quantity) + "_" + strconv.Itoa(k+1) + v.Quantity.suffix()
+			}
+			if v.Quantity == Conductor {
+				l.conductor = len(l.Columns)
+			}
+			l.Columns = append(l.Columns, c)
+			l.Space = append(l.Space, s.variable(c, v))
+		}
+	}
+	return l
+}
+
+func (s *Spec) variable(c Column, v Vary) space.Variable {
+	switch {
+	case c.Quantity == Conductor:
+		names := make([]string, len(s.Stock))
+		for i := range s.Stock {
+			names[i] = s.Stock[i].Name
+		}
+		return space.NewChoice(c.Name, names...)
+	case v.Step > 0:
+		return space.NewStepped(c.Name, v.From, v.To, v.Step)
+	}
+	return space.NewReal(c.Name, v.From, v.To, c.Quantity.Grid())
+}
+
+// Design is the antenna at a canonical point: the base with the varied
+// quantities put in.
+func (l *Layout) Design(p space.Point) models.Design {
+	s := l.spec
+	d := s.Base
+	d.Diameter = append(models.Law(nil), d.Diameter...)
+	d.Spacing = append(models.Law(nil), d.Spacing...)
+	d.Band = s.Band
+	for _, v := range s.Vary {
+		if v.Quantity == Diameter {
+			d.Diameter = make(models.Law, v.Knots)
+		}
+		if v.Quantity == Spacing {
+			d.Spacing = make(models.Law, v.Knots)
+		}
+	}
+	stock := l.Stock(p)
+	d.Conductor = stock.Conductor()
+	if stock.Insulation.Thickness > 0 {
+		d.Insulation = stock.Insulation
+	}
+	for i, c := range l.Columns {
+		if c.Quantity != Conductor {
+			*slot(&d, c) = p[i]
+		}
+	}
+	return d
+}
+
+// Conductor is the stock as a design names it.
+func (s *Stock) Conductor() models.Conductor {
+	return models.Conductor{Stock: s.Name, Diameter: s.Diameter, Material: s.Material}
+}
+
+// Stock is what the antenna at a point is wound from.
+func (l *Layout) Stock(p space.Point) *Stock {
+	if l.conductor < 0 {
+		return &l.spec.Stock[0]
+	}
+	return &l.spec.Stock[int(p[l.conductor])]
+}
+
+// slot is where a design holds the quantity of a column.
+func slot(d *models.Design, c Column) *float64 {
+	switch c.Quantity {
+	case Turns:
+		return &d.Turns
+	case Diameter:
+		return &d.Diameter[c.Knot]
+	case Spacing:
+		return &d.Spacing[c.Knot]
+	case FeedHeight:
+		return &d.Feed.Height
+	case LeadTurns:
+		return &d.Feed.Lead.Turns
+	case LeadSpacing:
+		return &d.Feed.Lead.Spacing
+	case Pin:
+		return &d.Feed.Pin
+	case StripTurns:
+		return &d.Feed.Strip.Turns
+	case StripWidth:
+		return &d.Feed.Strip.Width
+	case TransformerImpedance:
+		return &d.Feed.Transformer.Impedance
+	case TransformerLength:
+		return &d.Feed.Transformer.Length
+	case GroundDiameter:
+		return &d.Ground.Diameter
+	case GroundRim:
+		return &d.Ground.Rim
+	}
+	panic("objectives: a column without a slot: " + string(c.Quantity))
+}
+
+// Point is the canonical point nearest to a design, and in words whatever of
+// the design the space cannot follow.
+func (l *Layout) Point(d models.Design) (space.Point, []string) {
+	s, sp := l.spec, l.Space
+	p := make(space.Point, len(sp))
+	var notes []string
+	law := map[Quantity]models.Law{}
+	for _, v := range s.Vary {
+		switch v.Quantity {
+		case Diameter:
+			law[Diameter] = resample(d.Diameter, v.Knots)
+		case Spacing:
+			law[Spacing] = resample(d.Spacing, v.Knots)
+		}
+	}
+	asked := d
+	asked.Diameter, asked.Spacing = law[Diameter], law[Spacing]
+	for i, c := range l.Columns {
+		if c.Quantity == Conductor {
+			p[i] = float64(s.nearestStock(d.Conductor))
+			continue
+		}
+		want := *slot(&asked, c)
+		p[i] = sp[i].Snap(want)
+		if math.Abs(p[i]-want) > c.Quantity.Grid()*0.51 {
+			notes = append(notes, fmt.Sprintf("%s: %g taken as %g, the nearest that may vary", c.Name, want, p[i]))
+		}
+	}
+	if got := l.Design(p); got.Handedness != d.Handedness {
+		notes = append(notes, fmt.Sprintf("handedness: %s taken as %s, which the brief asks for", d.Handedness, got.Handedness))
+	}
+	return p, notes
+}
+
+// nearestStock is the row nearest in diameter, the same material preferred.
+func (s *Spec) nearestStock(c models.Conductor) int {
+	best, bestAway := 0, math.Inf(1)
+	for i := range s.Stock {
+		away := math.Abs(math.Log(s.Stock[i].Diameter / c.Diameter))
+		if s.Stock[i].Material.Name != c.Material.Name {
+			away += 10
+		}
+		if away < bestAway {
+			best, bestAway = i, away
+		}
+	}
+	return best
+}
+
+// resample reads a law at n knots along straight lines between its own.
+func resample(l models.Law, n int) models.Law {
+	out := make(models.Law, n)
+	for k := range out {
+		if len(l) == 1 || n == 1 {
+			out[k] = mean(l)
+			continue
+		}
+		x := float64(k) / float64(n-1) * float64(len(l)-1)
+		i := min(int(x), len(l)-2)
+		out[k] = l[i] + (x-float64(i))*(l[i+1]-l[i])
+	}
+	return out
+}
+
+func mean(l models.Law) float64 {
+	sum := 0.0
+	for _, x := range l {
+		sum += x
+	}
+	return sum / float64(max(len(l), 1))
+}

@@ -1,0 +1,155 @@
+package objectives
+
+import (
+	"math"
+
+	"turnwise/models"
+)
+
+// Row holds one value per figure, in the units of their columns; NaN where a
+// figure was not asked for or does not apply.
+type Row [FigureCount]float64
+
+// emptyRow applies to nothing yet.
+func emptyRow() Row {
+	var r Row
+	for i := range r {
+		r[i] = math.NaN()
+	}
+	return r
+}
+
+// Caps keep every figure a plain number: an axial ratio, a VSWR, and the
+// level below which a gain is no gain at all.
+const (
+	vswrCap   = 1000
+	gainFloor = -100
+)
+
+// Decibels is 10 lg of a power ratio, not below −100.
+func Decibels(ratio float64) float64 {
+	if !(ratio > 1e-10) {
+		return gainFloor
+	}
+	return 10 * math.Log10(ratio)
+}
+
+// readBand fills in the figures that a sweep over the band decides: of each,
+// the worst sample.
+func readBand(row *Row, d *models.Design, r *models.Response) {
+	wanted := d.Wanted()
+	worst := func(f Figure, x float64) {
+		if math.IsNaN(row[f]) || (Figures[f].More && x < row[f]) || (!Figures[f].More && x > row[f]) {
+			row[f] = x
+		}
+	}
+	for i := range r.Samples {
+		s := &r.Samples[i]
+		vswr := models.VSWR(s.Input, d.Feed.Impedance)
+		gain := s.Gain.Of(wanted)
+		worst(Gain, Decibels(gain))
+		worst(RealisedGain, Decibels(gain*Transmission(vswr)))
+		worst(AxialRatio, sensedAxialRatio(s, wanted))
+		worst(VSWR, math.Min(vswr, vswrCap))
+		worst(Efficiency, s.Efficiency)
+		if r.Answered&models.Cone != 0 {
+			worst(AxialRatioCone, s.ConeAxialRatio.Of(wanted))
+			worst(EdgeGain, Decibels(s.EdgeGain.Of(wanted)))
+		}
+		if r.Answered&models.Cuts != 0 {
+			worst(Beamwidth, s.Beamwidth*180/math.Pi)
+			worst(Sidelobe, math.Max(s.Sidelobe, -60))
+			if d.Ground.Kind == models.Disc || d.Ground.Kind == models.Cup {
+				worst(FrontToBack, Decibels(gain)-Decibels(s.RearGain))
+			}
+		}
+	}
+}
+
+// Transmission is 1 − |Γ|² of a VSWR.
+func Transmission(vswr float64) float64 {
+	return 4 * vswr / ((vswr + 1) * (vswr + 1))
+}
+
+// sensedAxialRatio is the axial ratio on the axis; a sample in the wrong
+// sense counts as the cap.
+func sensedAxialRatio(s *models.Sample, wanted models.Sense) float64 {
+	if s.Sense == -wanted {
+		return models.AxialRatioCap
+	}
+	return s.AxialRatio
+}
+
+// WrongSense reports whether any sample radiates the other sense on the axis.
+func WrongSense(d *models.Design, r *models.Response) bool {
+	for i := range r.Samples {
+		if r.Samples[i].Sense == -d.Wanted() {
+			return true
+		}
+	}
+	return false
+}
+
+// interval is the width of the interval about the middle sample inside which
+// level stays at or above zero, crossing points by straight lines between
+// samples; 0 if the middle fails. An end that is never left counts to there.
+func interval(hz, level []float64) float64 {
+	mid := len(hz) / 2
+	if level[mid] < 0 {
+		return 0
+	}
+	edge := func(step int) float64 {
+		i := mid
+		for i+step >= 0 && i+step < len(hz) {
+			if level[i+step] < 0 {
+				t := level[i] / (level[i] - level[i+step])
+				return hz[i] + t*(hz[i+step]-hz[i])
+			}
+			i += step
+		}
+		return hz[i]
+	}
+	return edge(1) - edge(-1)
+}
+
+// bandwidthSamples is the number of frequencies of the sweeps that gain
+// bandwidth and VSWR bandwidth make of their own.
+const bandwidthSamples = 41
+
+// about lists the bandwidth sweep: mid ± share of it.
+func about(mid, share float64) []float64 {
+	return models.Band{From: mid * (1 - share), To: mid * (1 + share), Samples: bandwidthSamples}.Hz()
+}
+
+// Half-widths of the bandwidth sweeps, as shares of mid-band.
+const (
+	gainReach = 0.2
+	vswrReach = 0.1
+)
+
+// gainBandwidth is the part about mid-band, in per cent of it, whose gain in
+// the wanted sense is within 1 dB of mid-band's; 40 when it reaches both ends
+// of its sweep.
+func gainBandwidth(d *models.Design, r *models.Response) float64 {
+	n := len(r.Samples)
+	hz, level := make([]float64, n), make([]float64, n)
+	mid := Decibels(r.Samples[n/2].Gain.Of(d.Wanted()))
+	for i := range r.Samples {
+		hz[i] = r.Samples[i].Hz
+		level[i] = 1 - math.Abs(Decibels(r.Samples[i].Gain.Of(d.Wanted()))-mid)
+	}
+	return 100 * interval(hz, level) / hz[n/2]
+}
+
+// vswrBandwidth is the interval about mid-band, in per cent of it, inside
+// which the VSWR keeps most, |Γ|² taken as straight between samples.
+func vswrBandwidth(d *models.Design, r *models.Response, most float64) float64 {
+	n := len(r.Samples)
+	hz, level := make([]float64, n), make([]float64, n)
+	limit := 1 - Transmission(most)
+	for i := range r.Samples {
+		hz[i] = r.Samples[i].Hz
+		level[i] = limit - (1 - Transmission(models.VSWR(r.Samples[i].Input, d.Feed.Impedance)))
+	}
+	return 100 * interval(hz, level) / hz[n/2]
+}
