@@ -1,0 +1,202 @@
+package optimize
+
+import (
+	"context"
+	"sync"
+
+	"turnwise/optimize/front"
+)
+
+// Confirmer gives the final word on a candidate: with the finest model over
+// a finer sweep, what ranks it; when whole, every other figure as well.
+type Confirmer func(ctx context.Context, c Candidate, whole bool) (Score, error)
+
+// Settled is a final front and what became of the others on the way there.
+type Settled struct {
+	// Front holds the members, by candidate number.
+	Front []Member
+	// Left holds those that a confirmation took off the front, with the
+	// reason where one failed.
+	Left []Evaluation
+	// Checks counts the confirmations; they are no part of the budget.
+	Checks int
+}
+
+// Member is one design of a front; Checked says that every figure is
+// confirmed, which only an interrupted settling leaves undone.
+type Member struct {
+	Evaluation
+	Checked bool
+}
+
+// check is how much of a candidate the final word has been spoken on.
+type check int
+
+const (
+	unchecked check = iota
+	ranked          // what ranks it
+	complete        // every figure
+)
+
+// SettleOptions is how a front is settled. Most is the number of members at
+// the most, 0: all. Kept, where set, is called from one goroutine with each
+// round's confirmations in candidate order before they count. Progress is
+// told how many of a round's confirmations are done.
+type SettleOptions struct {
+	Most     int
+	Workers  int
+	Kept     func([]Evaluation) error
+	Progress func(done, of, round int)
+}
+
+// Settle turns all evaluations of a search into its final front: the front
+// is thinned to its most telling members, those not yet confirmed are, all
+// are ranked again, and so on until every member is confirmed. The result
+// does not depend on the number of workers. When ctx ends, the front as it
+// stands comes back with ctx's error.
+func Settle(ctx context.Context, all []Evaluation, confirm Confirmer, o SettleOptions) (Settled, error) {
+	s := settling{
+		all:    append([]Evaluation(nil), all...),
+		checks: make([]check, len(all)),
+		values: make([]front.Value, len(all)),
+		o:      o,
+	}
+	for i := range s.all {
+		s.values[i] = s.all[i].Value()
+	}
+	for round := 1; ; round++ {
+		members := s.members()
+		todo, to := s.open(members)
+		if len(todo) == 0 {
+			return s.settled(members), nil
+		}
+		if err := s.confirm(ctx, confirm, todo, to, round); err != nil {
+			return s.settled(s.members()), err
+		}
+	}
+}
+
+type settling struct {
+	all    []Evaluation
+	checks []check
+	values []front.Value
+	count  int
+	o      SettleOptions
+}
+
+// members is the thinned front of all values as they stand.
+func (s *settling) members() []int {
+	members := front.Front(s.values)
+	if s.o.Most <= 0 || len(members) <= s.o.Most {
+		return members
+	}
+	points := make([][]float64, len(members))
+	for k, i := range members {
+		points[k] = s.values[i].Aims
+	}
+	keep := front.Thin(points, beyond(points), s.o.Most)
+	for k, j := range keep {
+		keep[k] = members[j]
+	}
+	return keep
+}
+
+// beyond is a reference a tenth of the points' range beyond their worst.
+func beyond(points [][]float64) []float64 {
+	worst := append([]float64(nil), points[0]...)
+	best := append([]float64(nil), points[0]...)
+	for _, p := range points {
+		for a, x := range p {
+			worst[a], best[a] = max(worst[a], x), min(best[a], x)
+		}
+	}
+	for a := range worst {
+		if width := worst[a] - best[a]; width > 0 {
+			worst[a] += 0.1 * width
+		} else {
+			worst[a]++
+		}
+	}
+	return worst
+}
+
+// open lists the members that the next round has to confirm, and how far:
+// first all that were never confirmed, then the rest of their figures.
+func (s *settling) open(members []int) (todo []int, to check) {
+	for _, to := range []check{ranked, complete} {
+		for _, i := range members {
+			if s.checks[i] < to {
+				todo = append(todo, i)
+			}
+		}
+		if len(todo) > 0 {
+			return todo, to
+		}
+	}
+	return nil, complete
+}
+
+// confirm answers one round and takes it in, in candidate order.
+func (s *settling) confirm(ctx context.Context, confirm Confirmer, todo []int, to check, round int) error {
+	answers := make([]Evaluation, len(todo))
+	var next, done int
+	var mu sync.Mutex
+	var wg sync.WaitGroup
+	for range max(1, min(s.o.Workers, len(todo))) {
+		wg.Go(func() {
+			for {
+				mu.Lock()
+				k := next
+				next++
+				mu.Unlock()
+				if k >= len(todo) || ctx.Err() != nil {
+					return
+				}
+				answers[k] = answer(ctx, evaluatorFunc(func(ctx context.Context, c Candidate) (Score, error) {
+					return confirm(ctx, c, to == complete)
+				}), s.all[todo[k]].Candidate, 0)
+				mu.Lock()
+				done++
+				if s.o.Progress != nil {
+					s.o.Progress(done, len(todo), round)
+				}
+				mu.Unlock()
+			}
+		})
+	}
+	wg.Wait()
+	if ctx.Err() != nil {
+		return context.Cause(ctx)
+	}
+	if s.o.Kept != nil {
+		if err := s.o.Kept(answers); err != nil {
+			return err
+		}
+	}
+	for k, i := range todo {
+		answers[k].Answers = nil
+		s.all[i], s.checks[i], s.values[i] = answers[k], to, answers[k].Value()
+		s.count++
+	}
+	return nil
+}
+
+// settled sums up as things stand.
+func (s *settling) settled(members []int) Settled {
+	out := Settled{Checks: s.count}
+	on := make(map[int]bool, len(members))
+	for _, i := range members {
+		on[i] = true
+		out.Front = append(out.Front, Member{Evaluation: s.all[i], Checked: s.checks[i] == complete})
+	}
+	for i, c := range s.checks {
+		if c > unchecked && !on[i] {
+			out.Left = append(out.Left, s.all[i])
+		}
+	}
+	return out
+}
+
+type evaluatorFunc func(context.Context, Candidate) (Score, error)
+
+func (f evaluatorFunc) Evaluate(ctx context.Context, c Candidate) (Score, error) { return f(ctx, c) }
