@@ -1,0 +1,101 @@
+package helix
+
+import (
+	"math"
+	"slices"
+)
+
+// Clearance is how close the centre line comes to itself and to the plane, m.
+type Clearance struct {
+	// Turns is the least distance, centre to centre, between points of the
+	// winding half a turn to one and a half turns apart. It is +Inf for a
+	// winding of less than half a turn, which has no neighbours.
+	Turns float64
+	// Plane is the least height of the winding above the plane. Spacing is
+	// never negative, so that is where the winding starts.
+	Plane float64
+}
+
+// The neighbourhood of a point, in turns further on.
+const (
+	nearest  = 0.5
+	farthest = 1.5
+)
+
+// Clearances finds the closest approaches. Points a turn apart are searched
+// from every stretch between breaks, first evenly, then closing in; the
+// nearest point of the next turn lies a little before a whole turn, since
+// the winding climbs.
+func (c *Curve) Clearances() Clearance {
+	out := Clearance{Turns: math.Inf(1), Plane: c.height}
+	if c.turns < nearest {
+		return out
+	}
+	var room [64]float64
+	ends := append(room[:0], 0, c.turns-nearest, max(c.turns-1, 0))
+	for _, b := range c.breaks {
+		ends = append(ends, b, b-1)
+	}
+	slices.Sort(ends)
+	for i, a := range ends[:len(ends)-1] {
+		b := ends[i+1]
+		if a < 0 || b > c.turns-nearest || b-a <= sameBreak {
+			continue
+		}
+		p, _ := c.on((a + b) / 2)
+		q, _ := c.on((a+b)/2 + 1)
+		if p == q && p.uniform && b <= c.turns-1 {
+			out.Turns = min(out.Turns, c.gap(a))
+			continue
+		}
+		out.Turns = min(out.Turns, lowest(a, b, c.gap))
+	}
+	if math.IsInf(out.Turns, 1) { // half a turn exactly
+		out.Turns = c.gap(0)
+	}
+	return out
+}
+
+// gap is the distance from t to the nearest point half a turn to one and a
+// half turns further on: Newton steps on the squared distance from one whole
+// turn on, held in a shrinking bracket.
+func (c *Curve) gap(t float64) float64 {
+	p, x := c.on(t)
+	r, _, _ := p.radius(x)
+	z := p.height(x)
+	// apart is half the squared distance at τ further on, and its first two
+	// derivatives.
+	apart := func(tau float64) (f, df, ddf float64) {
+		q, y := c.on(t + tau)
+		s, ds, dds := q.radius(y)
+		h, dh, ddh := q.rise(y)
+		h -= z
+		const w = 2 * math.Pi
+		sin, cos := math.Sincos(w * (tau - math.Floor(tau)))
+		f = (r*r+s*s+h*h)/2 - r*s*cos
+		df = s*ds + h*dh - r*ds*cos + w*r*s*sin
+		ddf = ds*ds + s*dds + dh*dh + h*ddh - r*dds*cos + 2*w*r*ds*sin + w*w*r*s*cos
+		return f, df, ddf
+	}
+	lo, hi := nearest, min(farthest, c.turns-t)
+	best, _, _ := apart(lo)
+	tau := min(1, hi)
+	for range 30 {
+		f, df, ddf := apart(tau)
+		best = min(best, f)
+		if df > 0 {
+			hi = tau
+		} else {
+			lo = tau
+		}
+		step := tau - df/ddf
+		if ddf <= 0 || step < lo || step > hi {
+			step = (lo + hi) / 2
+		}
+		if math.Abs(step-tau) < 1e-7 {
+			break
+		}
+		tau = step
+	}
+	return math.Sqrt(2 * max(best, 0))
+}

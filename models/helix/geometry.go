@@ -1,0 +1,108 @@
+package helix
+
+import (
+	"math"
+
+	"turnwise/models"
+)
+
+// Geometry is what the winding alone decides, SI.
+type Geometry struct {
+	Length     float64 // m, z of the highest point of the centre line
+	WireLength float64 // m, riser included
+	// Widest is the overall diameter, m: the winding's greatest with its
+	// conductor (a coat and a strip counted), or the plate or cup if that is
+	// wider.
+	Widest float64
+	// Mass is the conductor's, kg, as a solid round wire: the winding at the
+	// conductor's diameter, the riser at the pin's. Coat, plate, former and
+	// what a strip differs from wire are not in it.
+	Mass float64
+	// BendRadius is the least along the winding, m; the corner on the riser
+	// is a joint and does not count.
+	BendRadius float64
+}
+
+// Geometry gives the overall figures of the curve.
+func (c *Curve) Geometry() Geometry {
+	area := math.Pi / 4 * c.conductor * c.conductor
+	foot := math.Pi / 4 * c.pin * c.pin
+	return Geometry{
+		Length:     c.Top(),
+		WireLength: c.wire,
+		Widest:     c.widest(),
+		Mass:       c.density * (area*(c.wire-c.height) + foot*c.height),
+		BendRadius: 1 / c.sharpest(),
+	}
+}
+
+// widest looks at the ends of pieces only: a law never leaves the range of
+// its knots.
+func (c *Curve) widest() float64 {
+	w := 2*c.pieces[0].r[0] + c.pin
+	for i := range c.pieces {
+		p := &c.pieces[i]
+		thick := c.conductor + 2*c.coat
+		if p.from < c.strip.Turns-sameBreak {
+			thick = max(thick, c.strip.Width)
+		}
+		a, _, _ := p.radius(0)
+		b, _, _ := p.radius(p.to - p.from)
+		w = max(w, 2*a+thick, 2*b+thick)
+	}
+	if c.ground.Kind == models.Disc || c.ground.Kind == models.Cup {
+		w = max(w, c.ground.Diameter)
+	}
+	return w
+}
+
+// sharpest is the greatest curvature of the winding.
+func (c *Curve) sharpest() float64 {
+	most := 0.0
+	for i := range c.pieces {
+		p := &c.pieces[i]
+		if p.uniform {
+			most = max(most, p.curvature(0))
+			continue
+		}
+		least := lowest(0, p.to-p.from, func(x float64) float64 { return -p.curvature(x) })
+		most = max(most, -least)
+	}
+	return most
+}
+
+// probes is how finely lowest looks before it closes in.
+const probes = 8
+
+// lowest is the least value of a smooth f between a and b, both included:
+// evenly spread probes, then golden sections about the best of them.
+func lowest(a, b float64, f func(float64) float64) float64 {
+	step := (b - a) / probes
+	at, best := a, math.Inf(1)
+	for i := range probes + 1 {
+		x := a + step*float64(i)
+		if i == probes {
+			x = b
+		}
+		if y := f(x); y < best {
+			at, best = x, y
+		}
+	}
+	lo, hi := max(at-step, a), min(at+step, b)
+	const ratio = 0.6180339887498949
+	u, v := hi-ratio*(hi-lo), lo+ratio*(hi-lo)
+	fu, fv := f(u), f(v)
+	// The value is stationary: a bracket 1e-4 of a step wide holds it to 1e-8.
+	for range 18 {
+		if fu < fv {
+			hi, v, fv = v, u, fu
+			u = hi - ratio*(hi-lo)
+			fu = f(u)
+		} else {
+			lo, u, fu = u, v, fv
+			v = lo + ratio*(hi-lo)
+			fv = f(v)
+		}
+	}
+	return min(best, fu, fv)
+}
