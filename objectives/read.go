@@ -4,6 +4,7 @@ import (
 	"math"
 
 	"turnwise/models"
+	"turnwise/models/helix"
 )
 
 // Row holds one value per figure, in the units of their columns; NaN where a
@@ -152,4 +153,13 @@ func vswrBandwidth(d *models.Design, r *models.Response, most float64) float64 {
 		level[i] = limit - (1 - Transmission(models.VSWR(r.Samples[i].Input, d.Feed.Impedance)))
 	}
 	return 100 * interval(hz, level) / hz[n/2]
+}
+
+// Read gives the figures that one sweep over a design's band decides, and
+// those of its geometry.
+func Read(d *models.Design, g helix.Geometry, r *models.Response) Row {
+	row := emptyRow()
+	readGeometry(&row, g)
+	readBand(&row, d, r)
+	return row
 }

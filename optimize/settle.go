@@ -94,30 +94,12 @@ func (s *settling) members() []int {
 	for k, i := range members {
 		points[k] = s.values[i].Aims
 	}
-	keep := front.Thin(points, beyond(points), s.o.Most)
+	axes := front.Span(points)
+	keep := front.Thin(axes.Units(points), front.UnitReference(len(points[0])), s.o.Most)
 	for k, j := range keep {
 		keep[k] = members[j]
 	}
 	return keep
-}
-
-// beyond is a reference a tenth of the points' range beyond their worst.
-func beyond(points [][]float64) []float64 {
-	worst := append([]float64(nil), points[0]...)
-	best := append([]float64(nil), points[0]...)
-	for _, p := range points {
-		for a, x := range p {
-			worst[a], best[a] = max(worst[a], x), min(best[a], x)
-		}
-	}
-	for a := range worst {
-		if width := worst[a] - best[a]; width > 0 {
-			worst[a] += 0.1 * width
-		} else {
-			worst[a]++
-		}
-	}
-	return worst
 }
 
 // open lists the members that the next round has to confirm, and how far:
