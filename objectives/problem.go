@@ -100,11 +100,14 @@ func (p *Problem) Evaluate(ctx context.Context, c optimize.Candidate) (optimize.
 }
 
 // Confirm answers a point with the finest model over a sweep in steps of at
-// most 0.25 % of mid-band, with every figure and the power balance: what a
-// member of the final front is known by.
-func (p *Problem) Confirm(ctx context.Context, pt space.Point) (optimize.Score, error) {
-	all := figureSet(1<<FigureCount - 1)
-	return p.score(ctx, pt, p.finest(), FineSweep(p.Band), all)
+// most 0.25 % of mid-band: what ranks it, or when whole every figure and the
+// power balance, as a member of the final front is known.
+func (p *Problem) Confirm(ctx context.Context, pt space.Point, whole bool) (optimize.Score, error) {
+	want := p.needed()
+	if whole {
+		want = everyFigure
+	}
+	return p.score(ctx, pt, p.finest(), FineSweep(p.Band), want)
 }
 
 // fineStep is the widest step of a confirming sweep, as a share of mid-band.
@@ -124,6 +127,8 @@ func FineSweep(b models.Band) []float64 {
 
 // figureSet is a set of figures, a bit each.
 type figureSet uint
+
+const everyFigure figureSet = 1<<FigureCount - 1
 
 func (s figureSet) has(f Figure) bool { return s>>f&1 == 1 }
 
@@ -148,7 +153,7 @@ func (s figureSet) outputs() models.Outputs {
 	if s.has(Beamwidth) || s.has(Sidelobe) || s.has(FrontToBack) {
 		o |= models.Cuts
 	}
-	if s == 1<<FigureCount-1 {
+	if s == everyFigure {
 		o |= models.Balance
 	}
 	return o
