@@ -2,18 +2,37 @@ package models
 
 import "encoding/json"
 
-// sampleText is how a sample is stored: its impedances split into parts,
-// since JSON has no complex numbers.
+// sampleText is how a sample is stored: impedances split into parts, since
+// JSON has no complex numbers; what was not answered is left out, since a
+// night stores millions.
 type sampleText struct {
-	plainSample
-	Port, Input, SpreadPort [2]float64
+	Hz              float64    `json:"hz"`
+	Port            [2]float64 `json:"port_ohm"`
+	Input           [2]float64 `json:"input_ohm"`
+	Gain            Circular   `json:"gain"`
+	AxialRatio      float64    `json:"axial_ratio_db"`
+	Sense           Sense      `json:"sense,omitzero"`
+	Directivity     float64    `json:"directivity"`
+	Efficiency      float64    `json:"efficiency"`
+	ConeAxialRatio  Circular   `json:"cone_axial_ratio_db,omitzero"`
+	EdgeGain        Circular   `json:"edge_gain,omitzero"`
+	PeakDirectivity float64    `json:"peak_directivity,omitzero"`
+	Beamwidth       float64    `json:"beamwidth_rad,omitzero"`
+	Sidelobe        float64    `json:"sidelobe_db,omitzero"`
+	RearGain        float64    `json:"rear_gain,omitzero"`
+	PowerBalance    float64    `json:"power_balance,omitzero"`
+	SpreadPort      [2]float64 `json:"spread_port_ohm,omitzero"`
+	Pattern         []Cut      `json:"pattern,omitempty"`
 }
-
-type plainSample Sample
 
 // MarshalJSON stores a sample so that it reads back to the same bits.
 func (s Sample) MarshalJSON() ([]byte, error) {
-	return json.Marshal(sampleText{plainSample(s), split(s.Port), split(s.Input), split(s.SpreadPort)})
+	return json.Marshal(sampleText{
+		Hz: s.Hz, Port: split(s.Port), Input: split(s.Input), Gain: s.Gain, AxialRatio: s.AxialRatio, Sense: s.Sense,
+		Directivity: s.Directivity, Efficiency: s.Efficiency, ConeAxialRatio: s.ConeAxialRatio, EdgeGain: s.EdgeGain,
+		PeakDirectivity: s.PeakDirectivity, Beamwidth: s.Beamwidth, Sidelobe: s.Sidelobe, RearGain: s.RearGain,
+		PowerBalance: s.PowerBalance, SpreadPort: split(s.SpreadPort), Pattern: s.Pattern,
+	})
 }
 
 // UnmarshalJSON reads what MarshalJSON wrote.
@@ -22,8 +41,12 @@ func (s *Sample) UnmarshalJSON(text []byte) error {
 	if err := json.Unmarshal(text, &t); err != nil {
 		return err
 	}
-	*s = Sample(t.plainSample)
-	s.Port, s.Input, s.SpreadPort = join(t.Port), join(t.Input), join(t.SpreadPort)
+	*s = Sample{
+		Hz: t.Hz, Port: join(t.Port), Input: join(t.Input), Gain: t.Gain, AxialRatio: t.AxialRatio, Sense: t.Sense,
+		Directivity: t.Directivity, Efficiency: t.Efficiency, ConeAxialRatio: t.ConeAxialRatio, EdgeGain: t.EdgeGain,
+		PeakDirectivity: t.PeakDirectivity, Beamwidth: t.Beamwidth, Sidelobe: t.Sidelobe, RearGain: t.RearGain,
+		PowerBalance: t.PowerBalance, SpreadPort: join(t.SpreadPort), Pattern: t.Pattern,
+	}
 	return nil
 }
 

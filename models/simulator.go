@@ -37,21 +37,25 @@ type Simulator interface {
 // Response is an answer: one sample per frequency of the question, in its
 // order.
 type Response struct {
-	Samples []Sample
+	Samples []Sample `json:"samples"`
 	// Answered names the outputs that the samples hold; fields of an output
 	// that was not answered are zero and mean nothing.
-	Answered Outputs
+	Answered Outputs `json:"answered"`
 	// Indicative is set where impedance and axial ratio are rules of thumb:
 	// shown, but no aim or limit may stand on them unasked.
-	Indicative bool
+	Indicative bool `json:"indicative,omitzero"`
 	// Statement says in a sentence what the model is and what it is worth.
-	Statement string
+	// It goes with the model's identity and is not stored with each answer.
+	Statement string `json:"-"`
 	// Warnings name every way in which the design leaves the model's range.
-	Warnings []string
+	Warnings []string `json:"warnings,omitempty"`
 }
 
 // Circular holds one quantity for each sense of circular polarisation.
-type Circular struct{ Right, Left float64 }
+type Circular struct {
+	Right float64 `json:"right"`
+	Left  float64 `json:"left"`
+}
 
 // Of picks the value of one sense; the unset sense counts as right.
 func (c Circular) Of(s Sense) float64 {
