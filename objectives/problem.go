@@ -256,3 +256,15 @@ func (r *Row) hideMatch() {
 		}
 	}
 }
+
+// Judged lists the figures under aims and limits, in their order.
+func (p *Problem) Judged() []Figure {
+	var fs []Figure
+	need := p.needed()
+	for f := range Figures {
+		if need.has(Figure(f)) {
+			fs = append(fs, Figure(f))
+		}
+	}
+	return fs
+}

@@ -85,22 +85,7 @@ type settling struct {
 }
 
 // members is the thinned front of all values as they stand.
-func (s *settling) members() []int {
-	members := front.Front(s.values)
-	if s.o.Most <= 0 || len(members) <= s.o.Most {
-		return members
-	}
-	points := make([][]float64, len(members))
-	for k, i := range members {
-		points[k] = s.values[i].Aims
-	}
-	axes := front.Span(points)
-	keep := front.Thin(axes.Units(points), front.UnitReference(len(points[0])), s.o.Most)
-	for k, j := range keep {
-		keep[k] = members[j]
-	}
-	return keep
-}
+func (s *settling) members() []int { return front.Thinned(s.values, s.o.Most) }
 
 // open lists the members that the next round has to confirm, and how far:
 // first all that were never confirmed, then the rest of their figures.

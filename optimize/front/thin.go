@@ -166,3 +166,22 @@ func (t *thinner) strip(i int, before, after []int) float64 {
 	}
 	return (right - t.points[i][0]) * (top - t.points[i][1])
 }
+
+// Thinned is the front of the values, thinned to most members where it has
+// more (0: all), on axes scaled to the front's own span; indices ascending.
+func Thinned(values []Value, most int) []int {
+	members := Front(values)
+	if most <= 0 || len(members) <= most {
+		return members
+	}
+	points := make([][]float64, len(members))
+	for k, i := range members {
+		points[k] = values[i].Aims
+	}
+	axes := Span(points)
+	keep := Thin(axes.Units(points), UnitReference(len(points[0])), most)
+	for k, j := range keep {
+		keep[k] = members[j]
+	}
+	return keep
+}
