@@ -337,10 +337,10 @@ func TestScreenReasons(t *testing.T) {
 
 func TestScreenOfWhatCannotBeWound(t *testing.T) {
 	s := spec()
-	s.Stock[1].Diameter = 12e-3
+	s.Stock[1].Diameter = 11e-3
 	s.Vary[2].From = 0.005
 	p := problem(t, s, tones{gain: flat(10)})
-	v, reason := p.Screen(space.Point{6, 0.095, 0.095, 0.095, 0.008, 0.008, 1, 5e-3})
+	v, reason := p.Screen(space.Point{6, 0.095, 0.095, 0.095, 0.012, 0.012, 1, 15e-3})
 	if v <= 0 || !strings.Contains(reason, "neighbouring turns") {
 		t.Errorf("touching turns: violation %g, reason %q", v, reason)
 	}
