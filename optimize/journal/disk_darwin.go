@@ -2,8 +2,8 @@ package journal
 
 import "golang.org/x/sys/unix"
 
-// network reports whether dir lies on another machine, and on what.
-func network(dir string) (kind string, remote bool) {
+// networkOf reports whether dir lies on another machine, and on what.
+func networkOf(dir string) (kind string, remote bool) {
 	var st unix.Statfs_t
 	if unix.Statfs(dir, &st) != nil {
 		return "", false

@@ -34,8 +34,8 @@ const fuseMagic = 0x65735546
 var remoteFuse = []string{"sshfs", "smbnetfs", "curlftpfs", "s3fs", "rclone", "davfs", "davfs2", "glusterfs",
 	"ceph-fuse", "gcsfuse", "goofys", "mount-s3", "blobfuse", "blobfuse2", "afpfs", "juicefs", "cvmfs2", "moosefs"}
 
-// network reports whether dir lies on another machine, and on what.
-func network(dir string) (kind string, remote bool) {
+// networkOf reports whether dir lies on another machine, and on what.
+func networkOf(dir string) (kind string, remote bool) {
 	var st unix.Statfs_t
 	if unix.Statfs(dir, &st) != nil {
 		return "", false

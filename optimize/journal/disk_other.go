@@ -2,5 +2,5 @@
 
 package journal
 
-// network cannot be told here; the folder is taken to be local.
-func network(string) (kind string, remote bool) { return "", false }
+// networkOf cannot tell here: the folder is taken to be local.
+func networkOf(string) (kind string, remote bool) { return "", false }

@@ -7,8 +7,8 @@ import (
 	"golang.org/x/sys/windows"
 )
 
-// network reports whether dir lies on another machine, and on what.
-func network(dir string) (kind string, remote bool) {
+// networkOf reports whether dir lies on another machine, and on what.
+func networkOf(dir string) (kind string, remote bool) {
 	abs, err := filepath.Abs(dir)
 	if err != nil {
 		return "", false

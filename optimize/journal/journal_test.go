@@ -316,7 +316,7 @@ func TestForeignFiles(t *testing.T) {
 // TestRoundTrip records random groups, reopening at random, and compares
 // what comes back.
 func TestRoundTrip(t *testing.T) {
-	dir := t.TempDir()
+	dir := memory(t)
 	runs := 0
 	number := rapid.OneOf(rapid.Float64(), rapid.SampledFrom([]float64{0, math.Copysign(0, -1), math.NaN(), 1, -7, 1e300}))
 	vector := func(n int) *rapid.Generator[[]float64] { return rapid.SliceOfN(number, n, n) }

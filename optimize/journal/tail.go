@@ -3,7 +3,6 @@ package journal
 import (
 	"cmp"
 	"context"
-	"path/filepath"
 	"slices"
 	"time"
 
@@ -76,7 +75,7 @@ func (r *Reader) Tail() *Tail {
 
 // Poll takes in what is new and says how the search stands.
 func (t *Tail) Poll(ctx context.Context) (Progress, error) {
-	t.p.Holder, t.p.Alive = Search(filepath.Dir(t.r.path))
+	t.p.Holder, t.p.Alive = Search(t.r.dir())
 	for e, err := range t.r.Since(ctx, t.seq) {
 		if err != nil {
 			return Progress{}, err

@@ -2,7 +2,10 @@ package journal
 
 import (
 	"database/sql"
+	"errors"
 	"fmt"
+	"os"
+	"path/filepath"
 	"slices"
 	"testing"
 
@@ -109,10 +112,18 @@ func TestFinalEvaluationsDecideTheFront(t *testing.T) {
 // TestFrontAgainstDefinition compares the view with the definition, over
 // reopened journals and refused groups.
 func TestFrontAgainstDefinition(t *testing.T) {
+	dir := memory(t)
 	rapid.Check(t, func(rt *rapid.T) {
 		h := Header{Aims: []string{"a", "b", "c"}, Limits: []string{"l"}, Models: []string{"m0", "m1"}}
-		w := create(t, h)
-		defer func() { w.Close() }()
+		w, err := Create(filepath.Join(dir, File), h)
+		if err != nil {
+			rt.Fatal(err)
+		}
+		defer func() {
+			if err := errors.Join(w.Close(), os.Remove(w.Path())); err != nil {
+				rt.Fatal(err)
+			}
+		}()
 		var all []optimize.Evaluation
 		grid := rapid.Map(rapid.IntRange(-3, 3), func(i int) float64 { return float64(i) })
 		ids := rapid.Permutation([]int{0, 1, 2, 3, 4, 5, 6, 7, 8, 9, 10, 11, 12, 13, 14, 15}).Draw(rt, "order")
@@ -141,7 +152,6 @@ func TestFrontAgainstDefinition(t *testing.T) {
 				if err := w.Close(); err != nil {
 					rt.Fatal(err)
 				}
-				var err error
 				if w, err = Open(w.Path()); err != nil {
 					rt.Fatal(err)
 				}
