@@ -14,21 +14,21 @@ type Dimension int
 
 // The dimensions, with the unit that their values have inside the program.
 const (
-	Length           Dimension = iota // m
-	Frequency                         // Hz
-	Angle                             // degrees
-	Revolution                        // turns
-	Decibel                           // dB
-	CircularDecibel                   // dBic
-	Impedance                         // Ω
-	Power                             // W
-	Time                              // s
-	Percent                           // per cent
-	Conductivity                      // S/m
-	Density                           // kg/m³
-	Mass                              // kg
-	Plain                             // a number without unit
-	dimensionCount   int       = iota // for the tests
+	Length          Dimension = iota // m
+	Frequency                        // Hz
+	Angle                            // degrees
+	Revolution                       // turns
+	Decibel                          // dB
+	CircularDecibel                  // dBic
+	Impedance                        // Ω
+	Power                            // W
+	Time                             // s
+	Percent                          // per cent
+	Conductivity                     // S/m
+	Density                          // kg/m³
+	Mass                             // kg
+	Plain                            // a number without unit
+	dimensionCount  int       = iota // for the tests
 )
 
 // unit is one way to write a dimension. The scale takes a number of them to

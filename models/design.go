@@ -4,6 +4,7 @@ import (
 	"crypto/sha256"
 	"encoding/hex"
 	"fmt"
+	"math"
 	"strconv"
 	"strings"
 )
@@ -60,7 +61,17 @@ type Design struct {
 type Conductor struct {
 	Stock    string
 	Diameter float64 // m, outer
+	Wall     float64 // m, of a tube; 0: solid
 	Material Material
+}
+
+// Section is the cross-section of the metal, m².
+func (c *Conductor) Section() float64 {
+	inner := 0.0
+	if c.Wall > 0 {
+		inner = max(c.Diameter-2*c.Wall, 0)
+	}
+	return math.Pi / 4 * (c.Diameter*c.Diameter - inner*inner)
 }
 
 // Material is a conductor's bulk behaviour. Name is empty for one given by
@@ -193,6 +204,9 @@ func (d *Design) Canonical() string {
 	fmt.Fprintf(&b, "handedness %s\n", d.Handedness)
 	m := d.Conductor.Material
 	num("conductor", d.Conductor.Diameter, m.Conductivity, m.Density, max(m.Permeability, 0)+b2f(m.Permeability == 0))
+	if d.Conductor.Wall > 0 {
+		num("wall", d.Conductor.Wall)
+	}
 	if d.Insulation.Thickness > 0 {
 		num("insulation", d.Insulation.Thickness, d.Insulation.Permittivity)
 	}

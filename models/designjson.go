@@ -28,6 +28,7 @@ type designText struct {
 type conductorText struct {
 	Stock        string  `json:"stock,omitempty"`
 	Diameter     float64 `json:"diameter_m"`
+	Wall         float64 `json:"wall_m,omitempty"`
 	Material     string  `json:"material,omitempty"`
 	Conductivity float64 `json:"conductivity_s_per_m"`
 	Density      float64 `json:"density_kg_per_m3"`
@@ -94,7 +95,7 @@ func (d Design) MarshalJSON() ([]byte, error) {
 		Spacing:    d.Spacing,
 		Handedness: d.Handedness.String(),
 		Conductor: conductorText{
-			Stock: d.Conductor.Stock, Diameter: d.Conductor.Diameter, Material: m.Name,
+			Stock: d.Conductor.Stock, Diameter: d.Conductor.Diameter, Wall: d.Conductor.Wall, Material: m.Name,
 			Conductivity: m.Conductivity, Density: m.Density, Permeability: orOne(m.Permeability),
 		},
 		Feed:           feedText{Height: d.Feed.Height, Pin: d.PinDiameter(), Impedance: d.Feed.Impedance},
@@ -179,6 +180,7 @@ func readConductor(f *jsontree.Fields) Conductor {
 	c := Conductor{
 		Stock:    f.TextOr("stock", 1000),
 		Diameter: f.Number("diameter_m", finite("m")),
+		Wall:     f.NumberOr("wall_m", finite("m"), 0),
 		Material: Material{
 			Name:         f.TextOr("material", 1000),
 			Conductivity: f.Number("conductivity_s_per_m", finite("S/m")),

@@ -121,7 +121,7 @@ func (l *Layout) Design(p space.Point) models.Design {
 
 // Conductor is the stock as a design names it.
 func (s *Stock) Conductor() models.Conductor {
-	return models.Conductor{Stock: s.Name, Diameter: s.Diameter, Material: s.Material}
+	return models.Conductor{Stock: s.Name, Diameter: s.Diameter, Wall: s.Wall, Material: s.Material}
 }
 
 // Stock is what the antenna at a point is wound from.

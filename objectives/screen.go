@@ -18,6 +18,12 @@ const (
 	lengthOfMatter = 0.01 // m: scales the screens that no figure scales
 )
 
+// LeastFeedHeight is the lowest riser, m, that a conductor of a diameter may
+// have: 2.5 radii, and 1 mm of air under the conductor.
+func LeastFeedHeight(diameter float64) float64 {
+	return math.Max(leastRiser*diameter/2, diameter/2+leastAirBelow)
+}
+
 // Screen is the free check of a canonical point: geometry alone. It sums the
 // scaled amounts by which the winding cannot be made or breaks a geometric
 // limit, and says the first reason; 0 passes.

@@ -66,6 +66,7 @@ type Vary struct {
 type Stock struct {
 	Name            string
 	Diameter        float64 // m
+	Wall            float64 // m, of a tube; 0: solid
 	Material        models.Material
 	Insulation      models.Insulation
 	Coil            float64 // m of wire in one piece

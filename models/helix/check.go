@@ -110,6 +110,9 @@ func (f *faults) conductor(d *models.Design) {
 		f.add("conductor.diameter", "%s m is as wide as the winding's least diameter, %s m; a thinner conductor or a wider winding is due",
 			text(c.Diameter), text(narrowest(d.Diameter)))
 	}
+	if w := c.Wall; bad(w) || w < 0 || w > 0 && 2*w > c.Diameter {
+		f.add("conductor.wall", "%s m cannot be; at most half the diameter is due, or 0 for a solid wire", text(w))
+	}
 	m := &c.Material
 	if bad(m.Conductivity) || m.Conductivity <= 0 {
 		f.add("conductor.conductivity", "%s S/m cannot be; a value above zero is due, such as 58 MS/m (copper)", text(m.Conductivity))

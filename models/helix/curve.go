@@ -24,6 +24,7 @@ type Curve struct {
 	wire          float64 // arc length from the foot of the riser to the open end
 
 	conductor, coat, pin float64 // m: diameter, thickness, riser's diameter
+	section              float64 // m², of the conductor's metal
 	density              float64
 	strip                models.Strip
 	ground               models.Ground
@@ -70,6 +71,7 @@ func (c *Curve) Wind(d *models.Design) error {
 	}
 	c.turns, c.height, c.hand = d.Turns, d.Feed.Height, float64(d.Handedness)
 	c.conductor, c.coat, c.pin = d.Conductor.Diameter, max(d.Insulation.Thickness, 0), d.PinDiameter()
+	c.section = d.Conductor.Section()
 	c.density, c.strip, c.ground = d.Conductor.Material.Density, d.Feed.Strip, d.Ground
 	c.diameter = c.fitter.fit(c.diameter[:0], d.Diameter, d.Turns)
 	c.spacing = c.fitter.fit(c.spacing[:0], d.Spacing, d.Turns)

@@ -14,8 +14,8 @@ type Geometry struct {
 	// conductor (a coat and a strip counted), or the plate or cup if that is
 	// wider.
 	Widest float64
-	// Mass is the conductor's, kg, as a solid round wire: the winding at the
-	// conductor's diameter, the riser at the pin's. Coat, plate, former and
+	// Mass is the conductor's, kg: the winding as round wire or tube, a riser
+	// of another diameter as solid wire. Coat, plate, former and
 	// what a strip differs from wire are not in it.
 	Mass float64
 	// BendRadius is the least along the winding, m; the corner on the riser
@@ -25,13 +25,15 @@ type Geometry struct {
 
 // Geometry gives the overall figures of the curve.
 func (c *Curve) Geometry() Geometry {
-	area := math.Pi / 4 * c.conductor * c.conductor
-	foot := math.Pi / 4 * c.pin * c.pin
+	foot := c.section
+	if c.pin != c.conductor {
+		foot = math.Pi / 4 * c.pin * c.pin
+	}
 	return Geometry{
 		Length:     c.Top(),
 		WireLength: c.wire,
 		Widest:     c.widest(),
-		Mass:       c.density * (area*(c.wire-c.height) + foot*c.height),
+		Mass:       c.density * (c.section*(c.wire-c.height) + foot*c.height),
 		BendRadius: 1 / c.sharpest(),
 	}
 }

@@ -65,3 +65,28 @@ func TestUniformWindingIsTheClosedForm(t *testing.T) {
 	quarter := c.At(0.25)
 	near(t, "right-handed quarter turn y", quarter.Pos.Y, 0.029, 1e-15)
 }
+
+// A tube of the same outside weighs what its ring of metal weighs.
+func TestTubeIsLighter(t *testing.T) {
+	d := plain()
+	solid, err := Wind(&d)
+	if err != nil {
+		t.Fatal(err)
+	}
+	outer := d.Conductor.Diameter
+	d.Conductor.Wall = outer / 8
+	tube, err := Wind(&d)
+	if err != nil {
+		t.Fatal(err)
+	}
+	want := 1 - math.Pow(1-2.0/8, 2)
+	if got := tube.Geometry().Mass / solid.Geometry().Mass; math.Abs(got-want) > 1e-12 {
+		t.Errorf("tube to solid %g, want %g", got, want)
+	}
+	for _, wall := range []float64{-1e-3, outer, math.NaN()} {
+		d.Conductor.Wall = wall
+		if _, err := Wind(&d); err == nil {
+			t.Errorf("wall %g: no error", wall)
+		}
+	}
+}

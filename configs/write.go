@@ -1,0 +1,420 @@
+package configs
+
+import (
+	"bytes"
+	"crypto/sha256"
+	"encoding/hex"
+	"fmt"
+	"math"
+	"sort"
+	"strings"
+
+	"go.yaml.in/yaml/v3"
+
+	"turnwise/models"
+	"turnwise/objectives"
+)
+
+// page is a YAML file being written.
+type page struct {
+	b      bytes.Buffer
+	indent int
+}
+
+func (p *page) line(format string, a ...any) {
+	p.b.WriteString(strings.Repeat("  ", p.indent))
+	fmt.Fprintf(&p.b, format, a...)
+	p.b.WriteByte('\n')
+}
+
+// block writes a key whose lines stand further in.
+func (p *page) block(key string, inside func()) {
+	p.line("%s:", key)
+	p.indent++
+	inside()
+	p.indent--
+}
+
+// WriteDesign is a design file: metric, on the grid of written designs. A
+// design whose dimensions lie on that grid reads back exactly.
+func WriteDesign(d models.Design) []byte {
+	var p page
+	if d.Title != "" {
+		p.line("title: %s", quote(d.Title))
+	}
+	p.winding(&d, true)
+	if g := d.Ground; g.Kind == models.Disc || g.Kind == models.Cup {
+		p.line("ground: %s", groundText(g))
+	} else {
+		p.line("ground: {kind: infinite}")
+	}
+	if d.Band != (models.Band{}) {
+		p.line("band: %s", bandText(d.Band))
+	}
+	if d.Sense != 0 {
+		p.line("sense: %s", d.Sense)
+	}
+	if d.FeedsReflector {
+		p.line("feeds_reflector: true")
+	}
+	return p.b.Bytes()
+}
+
+func rounded(x float64, d Dimension) string { return show(onGrid(x, d), d) }
+
+func lawText(l models.Law) string {
+	texts := make([]string, len(l))
+	for i, x := range l {
+		texts[i] = rounded(x, Length)
+	}
+	return "[" + strings.Join(texts, ", ") + "]"
+}
+
+func bandText(b models.Band) string {
+	return fmt.Sprintf("{from: %s, to: %s, samples: %d}", show(b.From, Frequency), show(b.To, Frequency), b.Samples)
+}
+
+func groundText(g models.Ground) string {
+	text := "{kind: " + string(g.Kind)
+	if g.Diameter > 0 {
+		text += ", diameter: " + rounded(g.Diameter, Length)
+	}
+	if g.Rim > 0 {
+		text += ", rim: " + rounded(g.Rim, Length)
+	}
+	return text + "}"
+}
+
+func materialText(m models.Material) string {
+	if known, ok := material(m.Name); ok && known == m {
+		return "material: " + m.Name
+	}
+	text := "conductivity: " + show(m.Conductivity, Conductivity) + ", density: " + show(m.Density, Density)
+	if m.Permeability != 0 && m.Permeability != 1 {
+		text += ", permeability: " + decimal(m.Permeability, 0)
+	}
+	return text
+}
+
+func insulationText(i models.Insulation) string {
+	return fmt.Sprintf("{thickness: %s, permittivity: %s}", rounded(i.Thickness, Length), decimal(i.Permittivity, 0))
+}
+
+// winding writes what a brief may fix of a design, as far as it is there.
+func (p *page) winding(d *models.Design, whole bool) {
+	if d.Turns > 0 {
+		p.line("turns: %s", rounded(d.Turns, Revolution))
+	}
+	if len(d.Diameter) > 0 {
+		p.line("diameter: %s", lawText(d.Diameter))
+	}
+	if len(d.Spacing) > 0 {
+		p.line("spacing: %s", lawText(d.Spacing))
+	}
+	if d.Handedness != 0 {
+		p.line("handedness: %s", d.Handedness)
+	}
+	if c := d.Conductor; c.Diameter > 0 {
+		text := "{"
+		if c.Stock != "" {
+			text += "stock: " + quote(c.Stock) + ", "
+		}
+		text += "diameter: " + rounded(c.Diameter, Length)
+		if c.Wall > 0 {
+			text += ", wall: " + rounded(c.Wall, Length)
+		}
+		p.line("conductor: %s, %s}", text, materialText(c.Material))
+	}
+	if d.Insulation.Thickness > 0 {
+		p.line("insulation: %s", insulationText(d.Insulation))
+	}
+	f := d.Feed
+	if !whole {
+		f.Impedance = 0
+	}
+	if f != (models.Feed{}) {
+		p.block("feed", func() { p.feed(&f) })
+	}
+}
+
+func (p *page) feed(f *models.Feed) {
+	if f.Height > 0 {
+		p.line("height: %s", rounded(f.Height, Length))
+	}
+	if f.Pin > 0 {
+		p.line("pin: %s", rounded(f.Pin, Length))
+	}
+	if f.Impedance > 0 {
+		p.line("impedance: %s", rounded(f.Impedance, Impedance))
+	}
+	inline := func(key string, parts ...string) {
+		var there []string
+		for _, part := range parts {
+			if part != "" {
+				there = append(there, part)
+			}
+		}
+		if len(there) > 0 {
+			p.line("%s: {%s}", key, strings.Join(there, ", "))
+		}
+	}
+	part := func(key string, x float64, d Dimension) string {
+		if x <= 0 {
+			return ""
+		}
+		return key + ": " + rounded(x, d)
+	}
+	shape := ""
+	if f.Lead.Shape != "" {
+		shape = "shape: " + string(f.Lead.Shape)
+	}
+	if f.Lead != (models.Lead{}) {
+		inline("lead", part("turns", f.Lead.Turns, Revolution), part("spacing", f.Lead.Spacing, Length), shape)
+	}
+	inline("strip", part("turns", f.Strip.Turns, Revolution), part("width", f.Strip.Width, Length))
+	velocity := ""
+	if f.Transformer.Velocity > 0 {
+		velocity = "velocity: " + decimal(f.Transformer.Velocity, 0)
+	}
+	inline("transformer", part("impedance", f.Transformer.Impedance, Impedance), part("length", f.Transformer.Length, Length), velocity)
+}
+
+// Write is the brief as a file: resolved, defaults filled in. It reads back
+// to the same brief.
+func (br *Brief) Write() []byte {
+	var p page
+	s := &br.Spec
+	if s.Title != "" {
+		p.line("title: %s", quote(s.Title))
+	}
+	p.line("band: %s", bandText(s.Band))
+	space := s.Base.Sense
+	if s.Base.FeedsReflector {
+		space = -space
+	}
+	p.line("sense: %s", space)
+	p.line("feeds_reflector: %t", s.Base.FeedsReflector)
+	p.line("feed: {impedance: %s}", rounded(s.Base.Feed.Impedance, Impedance))
+	p.line("ground: %s", groundText(s.Base.Ground))
+	p.model(br)
+	p.stock(s)
+	p.block("vary", func() {
+		for _, v := range s.Vary {
+			p.line("%s: %s", v.Quantity, varyText(v))
+		}
+	})
+	base := s.Base
+	base.Handedness = s.Base.Handedness
+	p.block("design", func() { p.winding(&base, false) })
+	p.block("aims", func() {
+		for _, a := range s.Aims {
+			want := "least"
+			if a.Most {
+				want = "most"
+			}
+			p.line("- {figure: %s, want: %s}", a.Figure, want)
+		}
+	})
+	p.limits(s.Limits)
+	p.line("cone: %s", show(degrees(s.Cone), Angle))
+	p.line("trust_indicative: %t", s.TrustIndicative)
+	if m := s.Margins; m.Any() {
+		at := "worst"
+		if m.Percentile > 0 {
+			at = show(m.Percentile, Percent)
+		}
+		p.line("margins: {diameter: %s, spacing: %s, feed_height: %s, at: %s}", rounded(m.Diameter, Length), rounded(m.Spacing, Length), rounded(m.FeedHeight, Length), at)
+	}
+	p.line("search: {sample: %s, genetic: %s, simplex: %s}", share(br.Search.Sample), share(br.Search.Genetic), share(br.Search.Simplex))
+	if len(br.StartFrom) > 0 {
+		texts := make([]string, len(br.StartFrom))
+		for i, path := range br.StartFrom {
+			texts[i] = quote(path)
+		}
+		p.line("start_from: [%s]", strings.Join(texts, ", "))
+	}
+	p.budget(&br.Budget)
+	p.line("front: {at_most: %d}", br.FrontAtMost)
+	p.line("seed: %d", br.Seed)
+	return p.b.Bytes()
+}
+
+// degrees is an angle in degrees without the last bits of the conversion.
+func degrees(rad float64) float64 { return math.Round(rad*180/math.Pi*1e9) / 1e9 }
+
+// share is a part in per cent, without the last bits of the conversion.
+func share(x float64) string { return show(math.Round(x*1e11)/1e9, Percent) }
+
+func varyText(v objectives.Vary) string {
+	if v.Quantity == objectives.Conductor {
+		return "stock"
+	}
+	d := varied[v.Quantity].d
+	text := "{from: " + show(v.From, d) + ", to: " + show(v.To, d)
+	if v.Step > 0 {
+		text += ", step: " + show(v.Step, d)
+	}
+	if v.Quantity.IsLaw() {
+		text += fmt.Sprintf(", knots: %d", v.Knots)
+	}
+	return text + "}"
+}
+
+func (p *page) model(br *Brief) {
+	fidelity := ""
+	for _, r := range br.Ladder {
+		if r.Fidelity != "" {
+			fidelity = r.Fidelity
+		}
+	}
+	switch {
+	case br.Ladder[0].Model == ExternalModel:
+		texts := make([]string, len(br.External.Command))
+		for i, word := range br.External.Command {
+			texts[i] = quote(word)
+		}
+		p.line("model: {external: [%s], timeout: %s}", strings.Join(texts, ", "), showTime(br.External.Timeout))
+	case len(br.Ladder) == 1:
+		p.line("model: %s", br.Ladder[0].Model)
+	default:
+		texts := make([]string, len(br.Ladder))
+		for i, r := range br.Ladder {
+			texts[i] = strings.TrimSpace(r.Model + " " + r.Fidelity)
+		}
+		p.line("model: {ladder: [%s]}", strings.Join(texts, ", "))
+	}
+	if fidelity != "" {
+		p.line("fidelity: %s", fidelity)
+	}
+}
+
+// stock writes every row as a conductor of its own. A conductor that the
+// design fixes is written there.
+func (p *page) stock(s *objectives.Spec) {
+	p.block("stock", func() {
+		for i := range s.Stock {
+			row := &s.Stock[i]
+			text := "name: " + quote(row.Name) + ", diameter: " + rounded(row.Diameter, Length)
+			if row.Wall > 0 {
+				text += ", wall: " + rounded(row.Wall, Length)
+			}
+			text += ", " + materialText(row.Material)
+			if row.Insulation.Thickness > 0 {
+				text += ", insulation: " + insulationText(row.Insulation)
+			}
+			if row.Coil > 0 {
+				text += ", coil: " + rounded(row.Coil, Length)
+			}
+			if row.LeastBendRadius > 0 {
+				text += ", least_bend_radius: " + rounded(row.LeastBendRadius, Length)
+			}
+			p.line("- {%s}", text)
+		}
+	})
+}
+
+func (p *page) limits(ls []objectives.Limit) {
+	if len(ls) == 0 {
+		return
+	}
+	p.block("limits", func() {
+		for i := 0; i < len(ls); i++ {
+			l := ls[i]
+			text := boundText(l)
+			if i+1 < len(ls) && ls[i+1].Figure == l.Figure {
+				i++
+				text += ", " + boundText(ls[i])
+			}
+			p.line("%s: {%s}", l.Figure, text)
+		}
+	})
+}
+
+func boundText(l objectives.Limit) string {
+	key := "at_most"
+	if l.AtLeast {
+		key = "at_least"
+	}
+	return key + ": " + show(l.Value, dimensionOf(l.Figure))
+}
+
+func (p *page) budget(b *Budget) {
+	var parts []string
+	if b.Evaluations > 0 {
+		parts = append(parts, fmt.Sprintf("evaluations: %d", b.Evaluations))
+	}
+	if b.Time > 0 {
+		parts = append(parts, "time: "+showTime(b.Time))
+	}
+	if b.Stagnation.Evaluations > 0 {
+		parts = append(parts, fmt.Sprintf("stagnation: {evaluations: %d, share: %s}", b.Stagnation.Evaluations, share(b.Stagnation.Share)))
+	}
+	if len(parts) > 0 {
+		p.line("budget: {%s}", strings.Join(parts, ", "))
+	}
+}
+
+// free are the keys that a run may be resumed with other values of.
+var free = map[string]bool{"budget": true}
+
+// Digest is the SHA-256 of everything in the brief that decides an answer:
+// all but the budget. Designs to start from count with what they hold.
+func (br *Brief) Digest() string {
+	h := sha256.New()
+	own := *br
+	own.Budget = Budget{}
+	h.Write(own.Write())
+	for i := range br.Starts {
+		h.Write([]byte(br.Starts[i].Canonical()))
+	}
+	return hex.EncodeToString(h.Sum(nil))
+}
+
+// Diff names the keys in which two briefs differ, the budget's not among
+// them.
+func Diff(a, b *Brief) []string {
+	x, y := a.keys(), b.keys()
+	var names []string
+	for k := range x {
+		if _, ok := y[k]; !ok || x[k] != y[k] {
+			names = append(names, k)
+		}
+	}
+	for k := range y {
+		if _, ok := x[k]; !ok {
+			names = append(names, k)
+		}
+	}
+	sort.Strings(names)
+	return names
+}
+
+// keys are the top keys and one level below, each with its text.
+func (br *Brief) keys() map[string]string {
+	var doc map[string]yaml.Node
+	if err := yaml.Unmarshal(br.Write(), &doc); err != nil {
+		panic("configs: a brief was written that does not read: " + err.Error())
+	}
+	out := map[string]string{}
+	for k, n := range doc {
+		if free[k] {
+			continue
+		}
+		if n.Kind != yaml.MappingNode {
+			out[k] = nodeText(&n)
+			continue
+		}
+		for i := 0; i+1 < len(n.Content); i += 2 {
+			out[join(k, n.Content[i].Value)] = nodeText(n.Content[i+1])
+		}
+	}
+	return out
+}
+
+func nodeText(n *yaml.Node) string {
+	text, err := yaml.Marshal(n)
+	if err != nil {
+		panic("configs: a brief was written that does not read: " + err.Error())
+	}
+	return string(text)
+}
