@@ -26,6 +26,7 @@ type genome struct {
 	value front.Value
 	rank  int     // layer of domination
 	room  float64 // distance to its neighbours in the layer
+	from  variation
 }
 
 var _ eaopt.Genome = (*genome)(nil)
@@ -95,6 +96,10 @@ func (g *genome) Mutate(rng *rand.Rand) {
 		if v.From == v.To || rng.Float64() >= rate {
 			continue
 		}
+		if g.from != crossing && v.Kind == space.Real {
+			g.point[i] = nudge(g.point[i], v.From, v.To, rng)
+			continue
+		}
 		switch v.Kind {
 		case space.Choice:
 			n := v.Levels()
@@ -129,4 +134,14 @@ func mutate(x, low, high float64, rng *rand.Rand) float64 {
 		step = 1 - math.Pow(2*(1-u)+(2*u-1)*math.Pow(near, mutationIndex+1), 1.0/(mutationIndex+1))
 	}
 	return math.Min(math.Max(x+step*width, low), high)
+}
+
+// finest is the power of ten of the smallest nudge, in parts of a range.
+const finest = 8
+
+// nudge moves x by a step whose size is spread evenly over the powers of ten
+// below the range: some step always fits how near the optimum is.
+func nudge(x, low, high float64, rng *rand.Rand) float64 {
+	step := (high - low) * math.Pow(10, -finest*rng.Float64()) * rng.NormFloat64() * 0.3
+	return inside(x+step, x, low, high, rng)
 }

@@ -23,6 +23,10 @@ type Config struct {
 	Seed        uint64
 }
 
+// disturbance is how often a child of differential variation is mutated too:
+// seldom, or it would lose the precision that its parents have.
+const disturbance = 0.2
+
 // mostRejections is how many points a screen may reject for each that it
 // passes before the search gives up.
 const mostRejections = 1000
@@ -36,6 +40,7 @@ type Search struct {
 	free   int
 	seen   map[string]bool // every point that was answered or asked
 	asked  eaopt.Individuals
+	shares shares
 	spent  int
 	why    string
 }
@@ -49,7 +54,7 @@ func New(d optimize.Domain, c Config, start []optimize.Evaluation) *Search {
 	if c.Population <= 0 {
 		c.Population = 100
 	}
-	s := &Search{domain: d, c: c, model: survival{size: c.Population}, seen: map[string]bool{}}
+	s := &Search{domain: d, c: c, model: survival{size: c.Population}, shares: evenShares(), seen: map[string]bool{}}
 	for i := range d.Space {
 		if d.Space[i].From < d.Space[i].To {
 			s.free++
@@ -135,15 +140,55 @@ func (s *Search) family() [2]eaopt.Individual {
 	for k := range pair {
 		pair[k] = s.parent().Clone(rng)
 	}
-	if rng.Float64() < crossoverRate {
+	how := s.shares.pick(rng)
+	if how == differing {
+		for k := range pair {
+			s.differ(pair[k].Genome.(*genome))
+		}
+	} else if rng.Float64() < crossoverRate {
 		pair[0].Crossover(pair[1], rng)
 	}
 	for k := range pair {
-		pair[k].Mutate(rng)
 		g := pair[k].Genome.(*genome)
+		g.from = how
+		if how != differing || rng.Float64() < disturbance {
+			pair[k].Mutate(rng)
+		}
 		g.point = s.domain.Space.Canonical(g.point)
 	}
 	return pair
+}
+
+// differ moves a point by a part of the difference of two others of the
+// population: differential variation, whose steps shrink with the population
+// along every direction. Storn, Price, J. Global Optim. 11, 341, 1997.
+func (s *Search) differ(g *genome) {
+	rng, all := s.pop.RNG, s.pop.Individuals
+	a, b := all[rng.Intn(len(all))].Genome.(*genome).point, all[rng.Intn(len(all))].Genome.(*genome).point
+	factor := 0.9 * rng.Float64()
+	take := rng.Float64()
+	for i := range g.space {
+		v := &g.space[i]
+		switch {
+		case rng.Float64() >= take:
+		case v.Kind == space.Choice:
+			g.point[i] = a[i]
+		default:
+			g.point[i] = inside(g.point[i]+factor*(a[i]-b[i]), g.point[i], v.From, v.To, rng)
+		}
+	}
+}
+
+// inside brings a value that left its bounds back to a place between the
+// bound and where it came from.
+func inside(x, was, low, high float64, rng *rand.Rand) float64 {
+	switch {
+	case x < low:
+		return low + rng.Float64()*(was-low)
+	case x > high:
+		return high - rng.Float64()*(high-was)
+	}
+	return x
 }
 
 // parent wins a tournament of two.
@@ -161,9 +206,11 @@ func (s *Search) Tell(batch []optimize.Evaluation) {
 	for i := range batch {
 		s.asked[i].Genome.(*genome).value = batch[i].Value()
 	}
-	s.pop.Individuals = append(s.pop.Individuals, s.asked[:len(batch)]...)
-	s.asked = nil
+	fresh := s.asked[:len(batch)]
+	s.pop.Individuals = append(s.pop.Individuals, fresh...)
 	s.apply()
+	s.shares.learn(fresh, s.pop.Individuals)
+	s.asked = nil
 }
 
 // Explain says why the search is done.
