@@ -37,7 +37,7 @@ func newProgress(s streams) *progress {
 			progressbar.OptionSetWriter(s.err), progressbar.OptionSetWidth(20), progressbar.OptionThrottle(100*time.Millisecond),
 			progressbar.OptionClearOnFinish(), progressbar.OptionSetPredictTime(false), progressbar.OptionSetElapsedTime(false))
 	}
-	p.next = p.now().Add(10 * time.Second)
+	p.next = p.now().Add(2 * time.Second)
 	return p
 }
 

@@ -80,11 +80,15 @@ func simulate(c *cobra.Command, s streams, o simulation) error {
 		}
 		return failed(fmt.Errorf("%s: %w", o.design, err))
 	}
+	hand, err := closedform.HandFormulas(&d, band.Mid())
+	if err != nil {
+		return failed(err)
+	}
 	d.Band = band
 	sim := report.Simulation{
 		Design: d, Model: rung.Model, Fidelity: rung.Fidelity, Response: r,
 		Geometry: curve.Geometry(), Figures: objectives.Read(&d, curve.Geometry(), &r),
-		Hand: closedform.HandFormulas(&d, band.Mid()),
+		Hand: report.HandFigures(hand), DesignJSON: d,
 	}
 	if err := o.writeFiles(&sim); err != nil {
 		return failed(err)

@@ -1,0 +1,247 @@
+package main
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"io"
+	"math"
+	"runtime"
+	"strings"
+	"time"
+
+	"github.com/spf13/cobra"
+
+	"turnwise/cmd/internal/report"
+	"turnwise/configs"
+	"turnwise/objectives"
+	"turnwise/optimize"
+	"turnwise/optimize/space"
+)
+
+func checkCommand(s streams) *cobra.Command {
+	return &cobra.Command{
+		Use:   "check BRIEF",
+		Short: "Says what is wrong with a brief, or what it will do",
+		Long: `Reads a brief and says everything that is wrong with it at once; or, when
+nothing is, what the search will do: the space and its size, aims and limits,
+a timed estimate of one evaluation and of the whole run on this machine.`,
+		Args: arguments(cobra.ExactArgs(1)),
+		RunE: func(c *cobra.Command, args []string) error { return check(c.Context(), s, args[0]) },
+	}
+}
+
+func check(ctx context.Context, s streams, path string) error {
+	b, err := configs.ReadBrief(path)
+	if err != nil {
+		return wrong(err)
+	}
+	p, err := newProblem(b, b.Spec)
+	if err != nil {
+		return wrong(fmt.Errorf("%s: %w", path, err))
+	}
+	w := s.out
+	fmt.Fprintf(w, "%s: nothing is wrong\n\n", path)
+	describeBrief(w, &b, p)
+	passing := screenedShare(p)
+	fmt.Fprintf(w, "screens       %s of the space can be wound and fits\n", percent(passing))
+	if passing == 0 {
+		fmt.Fprintf(w, "              in 2000 tries nothing did; look at the limits on dimensions, the coils and the bend radii\n")
+	}
+	one, err := timeEvaluation(ctx, p)
+	if err != nil {
+		return failed(fmt.Errorf("the model answers none of the first designs: %w", err))
+	}
+	planned := plannedEvaluations(&b, one, runtime.NumCPU())
+	whole := time.Duration(float64(one) * float64(planned) / float64(runtime.NumCPU()))
+	fmt.Fprintf(w, "time          one evaluation %s here; %d of them on %d workers about %s\n", brief(one), planned, runtime.NumCPU(), brief(whole))
+	_, err = fmt.Fprintf(w, "journal       about %s\n", bytesText(float64(planned)*journalBytes(p)))
+	return failed(err)
+}
+
+// describeBrief says what a brief asks for.
+func describeBrief(w io.Writer, b *configs.Brief, p *objectives.Problem) {
+	s := &p.Spec
+	fmt.Fprintf(w, "title         %s\n", s.Title)
+	fmt.Fprintf(w, "band          %.6g to %.6g MHz, %d samples\n", s.Band.From/1e6, s.Band.To/1e6, s.Band.Samples)
+	hand := s.Base.Handedness
+	like := map[bool]string{true: "like", false: "opposite to"}[hand > 0]
+	fmt.Fprintf(w, "winding       %s-handed, %s an ordinary screw thread\n", hand, like)
+	if s.Base.FeedsReflector {
+		fmt.Fprintf(w, "              it feeds a reflector, which turns its %s-hand circular into the other\n", s.Base.Sense)
+	}
+	for _, r := range b.Ladder {
+		fmt.Fprintf(w, "model         %s\n", strings.TrimSpace(r.Model+" "+r.Fidelity))
+	}
+	describeSpace(w, p)
+	for _, a := range s.Aims {
+		want := "least"
+		if a.Most {
+			want = "most"
+		}
+		fmt.Fprintf(w, "aim           %s %s: %s\n", want, a.Figure, objectives.Figures[a.Figure].Words)
+	}
+	for _, l := range s.Limits {
+		bound := "at most"
+		if l.AtLeast {
+			bound = "at least"
+		}
+		fmt.Fprintf(w, "limit         %s %s %s\n", l.Figure, bound, report.Quantity(l.Figure, l.Value))
+	}
+	for _, u := range p.Unapplied {
+		fmt.Fprintf(w, "set aside     %s: the model only indicates it (trust_indicative: true applies it)\n", u)
+	}
+	if n := samplesWanted(s); n > s.Band.Samples {
+		fmt.Fprintf(w, "warning       the band's samples are more than 1 %% of mid-band apart; %d would be closer\n", n)
+	}
+}
+
+// samplesWanted is how many samples keep a band's steps to 1 % of mid-band.
+func samplesWanted(s *objectives.Spec) int {
+	return int(math.Ceil((s.Band.To-s.Band.From)/(0.01*s.Band.Mid())-1e-9)) + 1
+}
+
+// describeSpace names the variables and how many points they span.
+func describeSpace(w io.Writer, p *objectives.Problem) {
+	size := 0.0
+	for i := range p.Layout.Space {
+		v := &p.Layout.Space[i]
+		n := v.Levels()
+		if n == 0 {
+			n = int(math.Round((v.To-v.From)/v.Grid)) + 1
+		}
+		size += math.Log10(float64(n))
+		switch v.Kind {
+		case space.Choice:
+			fmt.Fprintf(w, "varies        %s: %d choices\n", v.Name, n)
+		case space.Stepped:
+			fmt.Fprintf(w, "varies        %s: %s to %s in %d values\n", v.Name, shownValue(v.Name, v.From), shownValue(v.Name, v.To), n)
+		default:
+			fmt.Fprintf(w, "varies        %s: %s to %s\n", v.Name, shownValue(v.Name, v.From), shownValue(v.Name, v.To))
+		}
+	}
+	fmt.Fprintf(w, "space         %d variables, about 10^%.0f designs\n", len(p.Layout.Space), size)
+}
+
+// shownValue is a variable's value as a person reads it.
+func shownValue(name string, x float64) string {
+	switch {
+	case strings.HasSuffix(name, "_m"):
+		return fmt.Sprintf("%.4g mm", x*1e3)
+	case strings.HasSuffix(name, "_ohm"):
+		return fmt.Sprintf("%.4g Ω", x)
+	}
+	return fmt.Sprintf("%.4g", x)
+}
+
+// screenedShare is the part of the space that passes the screens.
+func screenedShare(p *objectives.Problem) float64 {
+	const tries = 2000
+	rng := optimize.Stream(1, "check", 0)
+	passed := 0
+	for range tries {
+		if v, _ := p.Screen(randomPoint(p, rng.Float64)); v <= 0 {
+			passed++
+		}
+	}
+	return float64(passed) / tries
+}
+
+func randomPoint(p *objectives.Problem, random func() float64) space.Point {
+	u := make([]float64, len(p.Layout.Space))
+	for i := range u {
+		u[i] = random()
+	}
+	return p.Layout.Space.FromUnit(u)
+}
+
+// timeEvaluation is how long one evaluation takes here: the mean over some
+// designs of hand rules and some drawn at random, the first of all left out.
+func timeEvaluation(ctx context.Context, p *objectives.Problem) (time.Duration, error) {
+	const most = 12
+	points := p.HandSeeds(most / 2)
+	rng := optimize.Stream(1, "timing", 0)
+	domain := p.Domain()
+	for tries := 0; len(points) < most && tries < 2000; tries++ {
+		if pt := randomPoint(p, rng.Float64); domain.Passes(pt) {
+			points = append(points, pt)
+		}
+	}
+	if len(points) == 0 {
+		points = append(points, randomPoint(p, rng.Float64))
+	}
+	var faults []error
+	var sum time.Duration
+	answered := 0
+	for i, pt := range append(points[:1:1], points...) {
+		began := time.Now()
+		_, err := p.Evaluate(ctx, optimize.Candidate{Point: pt})
+		if err != nil {
+			faults = append(faults, err)
+			continue
+		}
+		if i > 0 {
+			sum += time.Since(began)
+			answered++
+		}
+	}
+	if answered == 0 {
+		return 0, errors.Join(faults...)
+	}
+	return max(sum/time.Duration(answered), time.Microsecond), nil
+}
+
+// plannedEvaluations is what a search of a brief plans: what the brief says,
+// else as many as its time allows, else the default.
+func plannedEvaluations(b *configs.Brief, one time.Duration, workers int) int {
+	switch {
+	case b.Budget.Evaluations > 0:
+		return b.Budget.Evaluations
+	case b.Budget.Time > 0:
+		return timedPlan(b.Budget.Time, one, workers)
+	}
+	return configs.DefaultEvaluations
+}
+
+// timedPlan is how many evaluations fit into a time, a tenth of it kept for
+// the final front.
+func timedPlan(t, one time.Duration, workers int) int {
+	n := 0.9 * float64(t) / float64(one) * float64(workers)
+	return int(math.Min(math.Max(n, 100), 100_000_000))
+}
+
+// journalBytes is about how many bytes an evaluation takes on disk, measured
+// on journals of the built-in briefs.
+func journalBytes(p *objectives.Problem) float64 {
+	return 900 + 230*float64(p.Band.Samples)
+}
+
+func bytesText(n float64) string {
+	switch {
+	case n >= 1e9:
+		return fmt.Sprintf("%.1f GB", n/1e9)
+	case n >= 1e6:
+		return fmt.Sprintf("%.0f MB", n/1e6)
+	}
+	return fmt.Sprintf("%.0f kB", n/1e3)
+}
+
+func percent(share float64) string {
+	if share > 0 && share < 0.01 {
+		return fmt.Sprintf("%.2f %%", 100*share)
+	}
+	return fmt.Sprintf("%.0f %%", 100*share)
+}
+
+// brief is a duration in three digits.
+func brief(d time.Duration) string {
+	switch {
+	case d < time.Millisecond:
+		return fmt.Sprintf("%.3g µs", float64(d)/1e3)
+	case d < time.Second:
+		return fmt.Sprintf("%.3g ms", float64(d)/1e6)
+	case d < time.Minute:
+		return fmt.Sprintf("%.3g s", d.Seconds())
+	}
+	return clock(d)
+}

@@ -1,0 +1,198 @@
+// Package programme runs the stages of a search as one searcher: a first
+// sample, the genetic searcher on what it found, then simplexes on the front.
+// Shares are of the evaluations planned at the start and never change; what a
+// stage leaves goes to the next, and what the last leaves to another round of
+// the genetic searcher and the simplexes.
+package programme
+
+import (
+	"io"
+	"math"
+	"strings"
+
+	"turnwise/optimize"
+	"turnwise/optimize/genetic"
+	"turnwise/optimize/simplex"
+	"turnwise/optimize/space"
+)
+
+// Names of the stages, as candidates carry them. Start marks designs that the
+// user gave.
+const (
+	Start   = "start"
+	Sample  = "sample"
+	Genetic = "genetic"
+	Simplex = "simplex"
+)
+
+// Config says how to search.
+type Config struct {
+	// Plan lists the evaluations planned: of the run first, then of each
+	// extension. An extension is a further genetic and simplex stage, so that
+	// a run extended at a count is the same run however often it was stopped.
+	Plan []int
+	// Shares of each plan; an extension leaves the sample's to the others.
+	Sample, Genetic, Simplex float64
+	// Population of the genetic searcher; 0: fitted to the plan.
+	Population int
+	Seed       uint64
+	// Start are points of the user's own; Seeds are those of hand rules, at
+	// most half of the sample.
+	Start, Seeds []space.Point
+}
+
+// segment is one stage with its part of the plan.
+type segment struct {
+	stage string
+	end   int // evaluations of the whole programme at which it ends
+	id    int // distinguishes the random streams of stages of a kind
+}
+
+// Search is the programme as a searcher. Close it when it is no longer asked.
+type Search struct {
+	domain   optimize.Domain
+	c        Config
+	segments []segment
+	at       int
+	stage    optimize.Searcher
+	told     []optimize.Evaluation
+	asked    int
+	why      []string
+	idle     int // stages in a row that asked nothing
+}
+
+var _ optimize.Searcher = (*Search)(nil)
+var _ optimize.Explainer = (*Search)(nil)
+var _ io.Closer = (*Search)(nil)
+
+// New is the programme of a config. It panics on a plan of nothing.
+func New(d optimize.Domain, c Config) *Search {
+	if len(c.Plan) == 0 || c.Plan[0] < 1 {
+		panic("programme: a plan without evaluations")
+	}
+	s := &Search{domain: d, c: c}
+	end := 0
+	for k, n := range c.Plan {
+		begin := end
+		end += n
+		sample := 0
+		if k == 0 {
+			sample = max(1, int(math.Round(c.Sample*float64(n))))
+			s.segments = append(s.segments, segment{Sample, begin + min(sample, n), k})
+		}
+		walks := int(math.Round(c.Simplex * float64(n)))
+		s.segments = append(s.segments, segment{Genetic, end - walks, k}, segment{Simplex, end, k})
+	}
+	return s
+}
+
+// Planned is the sum of the plan.
+func (s *Search) Planned() int { return s.segments[len(s.segments)-1].end }
+
+// Ask gives the next batch of the stage that is on.
+func (s *Search) Ask() []optimize.Candidate {
+	for s.asked < s.Planned() {
+		if s.stage == nil && !s.open() {
+			return nil
+		}
+		batch := s.stage.Ask()
+		if len(batch) > 0 {
+			s.idle = 0
+			s.asked += len(batch)
+			for i := range batch {
+				if batch[i].From == "" {
+					batch[i].From = s.segments[s.at].stage
+				}
+			}
+			return batch
+		}
+		s.close()
+	}
+	return nil
+}
+
+// open makes the searcher of the next stage that has something to do.
+func (s *Search) open() bool {
+	for ; s.at < len(s.segments); s.at++ {
+		g := s.segments[s.at]
+		n := g.end - s.asked
+		if n <= 0 {
+			continue
+		}
+		switch g.stage {
+		case Sample:
+			seeds := s.c.Seeds[:min(len(s.c.Seeds), (n+1)/2)]
+			s.stage = newSample(s.domain, s.c.Seed, n, s.c.Start, seeds)
+		case Genetic:
+			if s.c.Genetic > 0 {
+				s.stage = genetic.New(s.domain, genetic.Config{Population: s.population(n), Evaluations: n, Seed: s.c.Seed + uint64(g.id)}, s.told)
+			}
+		case Simplex:
+			if s.c.Simplex > 0 {
+				s.stage = simplex.New(s.domain, simplex.Config{Evaluations: n}, s.told)
+			}
+		}
+		if s.stage != nil {
+			return true
+		}
+	}
+	return s.again()
+}
+
+// again starts another round with what is left of the plan, unless the last
+// round found nothing to ask.
+func (s *Search) again() bool {
+	left := s.Planned() - s.asked
+	if left <= 0 || s.idle >= 3 || s.c.Genetic+s.c.Simplex <= 0 {
+		return false
+	}
+	id := s.segments[len(s.segments)-1].id + 1000
+	end := s.Planned()
+	walks := int(math.Round(float64(left) * s.c.Simplex / (s.c.Genetic + s.c.Simplex)))
+	s.segments = append(s.segments, segment{Genetic, end - walks, id}, segment{Simplex, end, id})
+	return s.open()
+}
+
+// population fits the genetic searcher's population to its evaluations: some
+// thirty generations, 20 to 100 members.
+func (s *Search) population(evaluations int) int {
+	if s.c.Population > 0 {
+		return s.c.Population
+	}
+	return min(max(evaluations/30, 20), 100)
+}
+
+// close ends the stage that is on, with its word.
+func (s *Search) close() {
+	if s.stage == nil {
+		return
+	}
+	if e, ok := s.stage.(optimize.Explainer); ok {
+		if word := e.Explain(); !strings.Contains(word, "evaluations are spent") {
+			s.why = append(s.why, word)
+		}
+	}
+	if c, ok := s.stage.(io.Closer); ok {
+		c.Close()
+	}
+	s.stage = nil
+	s.at++
+	s.idle++
+}
+
+// Tell hands on what came back.
+func (s *Search) Tell(batch []optimize.Evaluation) {
+	s.told = append(s.told, batch...)
+	if s.stage != nil {
+		s.stage.Tell(batch)
+	}
+}
+
+// Explain says what each stage that ended early said.
+func (s *Search) Explain() string { return strings.Join(s.why, "; ") }
+
+// Close ends the stage that is on.
+func (s *Search) Close() error {
+	s.close()
+	return nil
+}
