@@ -18,7 +18,7 @@ type workers struct {
 	wg     sync.WaitGroup
 	timers []*time.Timer
 	off    func() bool
-	mu     sync.Mutex
+	mu     sync.Mutex // over reason and timers
 }
 
 // hire starts the workers. A signal or a clock stops them softly: nothing new
@@ -26,6 +26,8 @@ type workers struct {
 func (r *run) hire(ctx context.Context, out []Evaluation, open []int) *workers {
 	w := &workers{r: r, halt: make(chan struct{}), back: make(chan finished, len(open))}
 	w.hard, w.cancel = context.WithCancel(context.WithoutCancel(ctx))
+	w.mu.Lock()
+	defer w.mu.Unlock()
 	w.off = context.AfterFunc(ctx, func() { w.end(Stopped) })
 	if r.o.For > 0 {
 		w.timers = append(w.timers, time.AfterFunc(r.o.For-time.Since(r.began), func() { w.end(TimeSpent) }))

@@ -9,6 +9,7 @@ import (
 	"time"
 
 	"turnwise/optimize"
+	"turnwise/optimize/searchtest"
 	"turnwise/optimize/simplex"
 	"turnwise/optimize/space"
 )
@@ -86,6 +87,12 @@ func polish(t *testing.T, d optimize.Domain, c simplex.Config, start space.Point
 
 // far asks for precision, not for economy.
 var far = simplex.Config{Evaluations: 6000, Parallel: 1, Each: -1, Tolerance: 1e-15, Size: 0.1}
+
+func TestContract(t *testing.T) {
+	searchtest.Run(t, func(d optimize.Domain, n int, _ uint64, past []optimize.Evaluation) optimize.Searcher {
+		return simplex.New(d, simplex.Config{Evaluations: n}, past)
+	})
+}
 
 func TestReachesStandardMinima(t *testing.T) {
 	for _, v := range valleys {
