@@ -1,5 +1,7 @@
 package moment
 
+import "math"
+
 // Fidelity is how finely the current and its fields are resolved.
 type Fidelity string
 
@@ -35,4 +37,11 @@ func (f Fidelity) settings() (settings, bool) {
 		return settings{degree: 4, turn: 9, wave: 8, least: 2, points: 4, edge: 5, near: 1.6, graded: 16, smooth: 8}, true
 	}
 	return settings{}, false
+}
+
+// elements is how many a piece of wire needs that turns so often and is so
+// many wavelengths long.
+func (s *settings) elements(turns, wavelengths float64) int {
+	n := max(s.turn*turns, s.wave*wavelengths)
+	return max(s.least, int(math.Ceil(n-1e-6)))
 }

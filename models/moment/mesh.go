@@ -231,8 +231,7 @@ func (m *mesh) count(w *Wire, k float64) int {
 		turn += math.Acos(min(1, max(-1, r3.Dot(dir, next))))
 		last, dir = p, next
 	}
-	n := max(m.set.turn*turn/(2*math.Pi), m.set.wave*length*k/(2*math.Pi))
-	return max(m.set.least, int(math.Ceil(n-1e-6)))
+	return m.set.elements(turn/(2*math.Pi), length*k/(2*math.Pi))
 }
 
 // measure lays n panels along a wire and gives its length.
@@ -291,6 +290,10 @@ func (m *mesh) parameter(s float64, hint int) (t float64, at int) {
 	return p.from + (p.to-p.from)*(x+1)/2, hint
 }
 
+// sameRadius is the relative difference below which a radius counts as even:
+// it moves an impedance by a tenth as much.
+const sameRadius = 1e-5
+
 // shape lays the polynomials of an element that starts at arc length s.
 func (m *mesh) shape(e *element, w *Wire, s, h float64) {
 	var v [4][samples]float64
@@ -303,7 +306,7 @@ func (m *mesh) shape(e *element, w *Wire, s, h float64) {
 	}
 	e.even = true
 	for _, a := range v[3] {
-		e.even = e.even && math.Abs(a-v[3][0]) <= 1e-9*v[3][0]
+		e.even = e.even && math.Abs(a-v[3][0]) <= sameRadius*v[3][0]
 	}
 	for i := range v {
 		e.shape[i] = fitted(&v[i])

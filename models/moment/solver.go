@@ -1,0 +1,85 @@
+package moment
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"math"
+	"runtime"
+	"sync"
+
+	"turnwise/models"
+)
+
+// Statement is what the model says of itself with every answer.
+const Statement = "full wave, thin-wire method of moments on an infinite perfectly conducting plane: two such solutions agree to 0.03 dB, " +
+	"and inside its range the thin wire is worth about 0.05 dB and 10 % in impedance. The plane is assumed infinite: " +
+	"on a real plate the gain on the axis changes by −1.4 to −3.6 dB at 0.5 wavelengths across, −1.4 at 0.75, −0.7 to +0.2 at 1, " +
+	"+0.9 to +1.7 at 1.5, and still by 0.55 dB either way at 16"
+
+// Solver is the full-wave simulator of helical antennas. It is safe for
+// concurrent use: every question takes a worker of its own, with all the room
+// it needs, from those that have finished.
+type Solver struct {
+	fidelity Fidelity
+	set      settings
+	workers  sync.Pool
+}
+
+var _ models.Simulator = (*Solver)(nil)
+
+// New is the solver of a fidelity; the empty one is [Standard].
+func New(f Fidelity) (*Solver, error) {
+	if f == "" {
+		f = Standard
+	}
+	set, ok := f.settings()
+	if !ok {
+		return nil, fmt.Errorf("fidelity %q: there is none such; write draft, standard or fine", string(f))
+	}
+	return &Solver{fidelity: f, set: set, workers: sync.Pool{New: func() any { return newWorker() }}}, nil
+}
+
+// Identity names the version, the fidelity and the instructions, whose
+// roundings may differ.
+func (s *Solver) Identity() string {
+	return "full-wave 1 " + string(s.fidelity) + " " + runtime.GOARCH
+}
+
+// Simulate answers everything that an infinite plane lets one ask. A fine
+// answer always holds the power balance. An answer whose balance misses by
+// more than 1 % is an error.
+func (s *Solver) Simulate(ctx context.Context, d models.Design, q models.Question) (models.Response, error) {
+	if err := checkQuestion(q); err != nil {
+		return models.Response{}, err
+	}
+	if s.fidelity == Fine {
+		q.Outputs |= models.Balance
+	}
+	w := s.workers.Get().(*worker)
+	defer s.workers.Put(w)
+	r := models.Response{Samples: make([]models.Sample, len(q.Hz)), Answered: q.Outputs | models.Axis, Statement: Statement}
+	if err := w.answer(ctx, s.set, &d, q, r.Samples); err != nil {
+		return models.Response{}, err
+	}
+	r.Warnings = w.warnings(q.Hz)
+	return r, nil
+}
+
+// checkQuestion refuses frequencies that are none.
+func checkQuestion(q models.Question) error {
+	if len(q.Hz) == 0 {
+		return errors.New("full wave: no frequency was asked for; give at least one")
+	}
+	last := 0.0
+	for _, hz := range q.Hz {
+		if !(hz > last) || math.IsInf(hz, 0) {
+			return fmt.Errorf("full wave: a frequency of %g Hz after %g Hz cannot be answered; positive ones, rising, are due", hz, last)
+		}
+		last = hz
+	}
+	if q.Outputs&models.Cone != 0 && !(q.Cone > 0 && q.Cone <= math.Pi/2) {
+		return fmt.Errorf("full wave: a cone of %g rad about the axis cannot be answered; above 0 and at most π/2 is due", q.Cone)
+	}
+	return nil
+}
