@@ -19,7 +19,7 @@ type element struct {
 	// even is set where the radius is the same all along.
 	even   bool
 	radius float64 // in the middle, m
-	middle vec
+	tips   [3]vec  // start, middle, finish
 	// value holds the functions that live here, and slope their derivatives
 	// by x; fn their numbers, −1 for one that does not exist (an open end);
 	// functions carry their sign already.
@@ -80,9 +80,17 @@ type mesh struct {
 	node       []float64 // local coordinate x
 	owner      []int     // element
 
+	spots []spot // set.apart a element: nodes of the rule for pairs that stand apart
+
 	raw    []rawFunction
 	panels []panel
 	ends   []wireEnd
+}
+
+// spot is a point of a wire.
+type spot struct {
+	at, tangent vec
+	radius      float64
 }
 
 // span is one wire's share of the mesh.
@@ -317,7 +325,9 @@ func (m *mesh) shape(e *element, w *Wire, s, h float64) {
 	if e.even {
 		e.radius = v[3][0]
 	}
-	e.middle = vec{e.shape[0][0], e.shape[1][0], e.shape[2][0]}
+	for i, x := range [3]float64{-1, 0, 1} {
+		e.tips[i], _, _ = e.at(x)
+	}
 }
 
 // connect makes one function of two where wires are joined.
@@ -443,5 +453,12 @@ func (m *mesh) points() {
 			m.owner = append(m.owner, i)
 		}
 		e.end = len(m.x)
+	}
+	m.spots = m.spots[:0]
+	for i := range m.elements {
+		for _, x := range legendre[m.set.apart].x {
+			p, t, a := m.elements[i].at(x)
+			m.spots = append(m.spots, spot{p, t, a})
+		}
 	}
 }

@@ -28,7 +28,8 @@ type static struct {
 	n                int
 	both             bool // fill both triangles (to see their difference)
 
-	mom moments
+	mom  moments
+	kept []congruence // by how far the second element lies before the first
 }
 
 // reset clears the matrices for n functions.
@@ -66,20 +67,48 @@ func (s *static) add(p *pair, x, y, w float64, reduce bool) {
 
 // node is add with both points known.
 func (s *static) node(p *pair, pe, te *vec, ae, x float64, pf, tf *vec, af, y, w float64, reduce bool) {
-	dx, dy := pe[0]-pf[0], pe[1]-pf[1]
-	dz, flat, charge := pe[2]-pf[2], 1.0, 1.0
+	inverse, mean, dot := p.static(pe, te, ae, pf, tf, af, reduce)
+	charge := w * p.sign()
+	s.mom.collect(p.m.order, x, y, charge*inverse, charge*mean, w*dot*inverse, w*dot*mean)
+}
+
+// sign is that of the second element's charge.
+func (p *pair) sign() float64 {
 	if p.image {
-		dz, flat, charge = pe[2]+pf[2], -1, -1
+		return -1
 	}
-	dot := flat*(te[0]*tf[0]+te[1]*tf[1]) + te[2]*tf[2]
+	return 1
+}
+
+// static gives the kernel's static terms, 1/R and R, and the product of the
+// tangents between a point of e and one of f.
+func (p *pair) static(pe, te *vec, ae float64, pf, tf *vec, af float64, reduce bool) (inverse, mean, dot float64) {
+	dx, dy, dz := pe[0]-pf[0], pe[1]-pf[1], pe[2]-pf[2]
+	dot = te[0]*tf[0] + te[1]*tf[1]
+	if p.image {
+		dz, dot = pe[2]+pf[2], -dot
+	}
+	dot += te[2] * tf[2]
 	d2 := dx*dx + dy*dy + dz*dz
-	var inverse, mean float64
 	if reduce {
 		inverse, mean = reduced(d2, (ae*ae+af*af)/2)
 	} else {
 		inverse, mean = averaged(d2+(ae-af)*(ae-af), ae*af)
 	}
-	s.mom.collect(p.m.order, x, y, w*charge*inverse, w*charge*mean, w*dot*inverse, w*dot*mean)
+	return inverse, mean, dot
+}
+
+// symmetric adds to the moments those with x and y exchanged.
+func (m *moments) symmetric() {
+	for _, a := range [...]*[maxOrder][maxOrder]float64{&m.current0, &m.current1, &m.charge0, &m.charge1} {
+		for i := range a {
+			for j := range i {
+				a[i][j] += a[j][i]
+				a[j][i] = a[i][j]
+			}
+			a[i][i] *= 2
+		}
+	}
 }
 
 // collect adds powers of x and y times the kernels.
@@ -106,20 +135,16 @@ func (m *moments) collect(order int, x, y, q0, q1, c0, c1 float64) {
 	}
 }
 
-// begin clears the moments.
-func (s *static) begin() { s.mom = moments{} }
-
-// finish takes the grid's part off, turns moments of powers into those of
-// functions and puts them in their places.
-func (s *static) finish(p *pair) {
-	s.gridless(p)
+// place turns moments of powers into those of functions and puts them in
+// their places.
+func (s *static) place(p *pair) {
 	scale := p.e.length * p.f.length / 4
 	order := p.m.order
 	var one, three, zero [maxOrder][maxOrder]float64
-	contract(order, &s.mom.current0, &p.e.value, &p.f.value, scale, &one)
-	contract(order, &s.mom.current1, &p.e.value, &p.f.value, scale/2, &three)
-	contract(order-1, &s.mom.charge1, &p.e.slope, &p.f.slope, 0.5, &one)
-	contract(order-1, &s.mom.charge0, &p.e.slope, &p.f.slope, 1, &zero)
+	contract(order, order, &s.mom.current0, &p.e.value, &p.f.value, scale, &one)
+	contract(order, order, &s.mom.current1, &p.e.value, &p.f.value, scale/2, &three)
+	contract(order, order-1, &s.mom.charge1, &p.e.slope, &p.f.slope, 0.5, &one)
+	contract(order, order-1, &s.mom.charge0, &p.e.slope, &p.f.slope, 1, &zero)
 	for i := range order {
 		for j := range order {
 			s.put(p, p.e.fn[i], p.f.fn[j], zero[i][j], one[i][j], three[i][j])
@@ -152,27 +177,18 @@ func (s *static) put(p *pair, m, n int, zero, one, three float64) {
 	s.three[i] += three
 }
 
-// contract adds scale·Σ_ab e_i[a]·mom[a][b]·f_j[b] to out. Functions number
-// maxOrder at most; n is the number of powers.
-func contract(n int, mom *[maxOrder][maxOrder]float64, e, f *[maxOrder]poly, scale float64, out *[maxOrder][maxOrder]float64) {
-	var half [maxOrder][maxOrder]float64 // [a][j]
-	for a := range n {
-		row := &mom[a]
-		for j := range maxOrder {
-			c := &f[j]
-			sum := 0.0
-			for b := 0; b < n; b++ {
-				sum += row[b] * c[b]
-			}
-			half[a][j] = scale * sum
+// contract adds scale·Σ_ab e_i[a]·mom[a][b]·f_j[b] to out, for order
+// functions and n powers.
+func contract(order, n int, mom *[maxOrder][maxOrder]float64, e, f *[maxOrder]poly, scale float64, out *[maxOrder][maxOrder]float64) {
+	for i := range order {
+		var half [maxOrder]float64
+		for a := range n {
+			add(&half, &mom[a], scale*e[i][a])
 		}
-	}
-	for i := range maxOrder {
-		c := &e[i]
-		for j := range maxOrder {
-			sum := 0.0
-			for a := 0; a < n; a++ {
-				sum += c[a] * half[a][j]
+		for j := range order {
+			c, sum := &f[j], 0.0
+			for b := range n {
+				sum += half[b] * c[b]
 			}
 			out[i][j] += sum
 		}
@@ -196,6 +212,7 @@ func (s *static) gridless(p *pair) {
 // fill computes every near pair of the mesh.
 func (s *static) fill(m *mesh, over bool) {
 	s.reset(m.functions)
+	s.forget(len(m.elements))
 	for i := range m.elements {
 		e := &m.elements[i]
 		last := i
@@ -216,24 +233,45 @@ func (s *static) fill(m *mesh, over bool) {
 
 // direct corrects a pair of elements if it is near.
 func (s *static) direct(p *pair, i, j int) {
-	switch {
-	case i == j:
-		s.begin()
-		s.self(p)
-	case p.e.finish.kind == another && p.e.finish.element == j:
-		s.begin()
-		s.corner(p, 1, p.e.finish.side)
-	case p.e.start.kind == another && p.e.start.element == j:
-		s.begin()
-		s.corner(p, 0, p.e.start.side)
-	case p.close():
-		s.begin()
-		s.aside(p, !p.along(i, j))
-	default:
+	meet := i == j || p.e.finish.meets(j) || p.e.start.meets(j)
+	gap2, near := p.near()
+	if !meet && !near {
 		return
 	}
-	s.finish(p)
+	if s.recall(p, i-j) {
+		s.place(p)
+		return
+	}
+	s.mom = moments{}
+	switch {
+	case i == j:
+		s.self(p)
+	case p.e.finish.meets(j):
+		s.corner(p, 1, p.e.finish.side)
+	case p.e.start.meets(j):
+		s.corner(p, 0, p.e.start.side)
+	default:
+		s.between(p, i, j, gap2, !p.along(i, j))
+	}
+	s.gridless(p)
+	s.keep(p, i-j)
+	s.place(p)
 }
+
+func (n neighbour) meets(j int) bool { return n.kind == another && n.element == j }
+
+// between integrates a near pair that does not meet, by its least distance.
+func (s *static) between(p *pair, i, j int, gap2 float64, reduce bool) {
+	if l := apartFrom * max(p.e.length, p.f.length); gap2 > l*l {
+		s.apart(p, i, j, reduce)
+		return
+	}
+	s.aside(p, reduce)
+}
+
+// apartFrom is the distance in element lengths from which plain rules serve:
+// with n nodes a side they are good to (d + √(1 + d²))^−2n, d twice that.
+const apartFrom = 0.7
 
 // along tells whether two elements lie on one wire with one between them, or
 // on wires joined so: there the conductor is one and the kernel averaged.
@@ -252,18 +290,21 @@ func (p *pair) along(i, j int) bool {
 
 // mirrored corrects a pair of an element and an image if it is near.
 func (s *static) mirrored(p *pair, i, j int) {
-	s.begin()
+	gap2, near := p.near()
+	if !near {
+		return
+	}
+	s.mom = moments{}
 	switch {
 	case i == j && p.e.start.kind == plane:
 		s.corner(p, 0, 0)
 	case i == j && p.e.finish.kind == plane:
 		s.corner(p, 1, 1)
-	case p.close():
-		s.aside(p, !p.through(i, j))
 	default:
-		return
+		s.between(p, i, j, gap2, !p.through(i, j))
 	}
-	s.finish(p)
+	s.gridless(p)
+	s.place(p)
 }
 
 // through tells whether an element and the image of another follow each
@@ -276,29 +317,28 @@ func (p *pair) through(i, j int) bool {
 	return foot(p.e) && next(p.e, j) || foot(p.f) && next(p.f, i)
 }
 
-// close tells whether a pair is closer than the grid's rule likes.
-func (p *pair) close() bool {
+// near gives the squared distance of a pair, as the ends and middles have
+// it, and whether that is closer than the grid's rule likes.
+func (p *pair) near() (gap2 float64, near bool) {
 	limit := p.m.set.near * max(p.e.length, p.f.length)
 	reach := limit + (p.e.length+p.f.length)/2
-	a, b := p.e.middle, p.f.middle
+	if p.apart2(&p.e.tips[1], &p.f.tips[1]) > reach*reach {
+		return 0, false
+	}
+	gap2 = math.Inf(1)
+	for a := range p.e.tips {
+		for b := range p.f.tips {
+			gap2 = min(gap2, p.apart2(&p.e.tips[a], &p.f.tips[b]))
+		}
+	}
+	return gap2, gap2 < limit*limit
+}
+
+// apart2 is the squared distance of a point of e and one of f.
+func (p *pair) apart2(a, b *vec) float64 {
 	dx, dy, dz := a[0]-b[0], a[1]-b[1], a[2]-b[2]
 	if p.image {
 		dz = a[2] + b[2]
 	}
-	if dx*dx+dy*dy+dz*dz > reach*reach {
-		return false
-	}
-	least := math.Inf(1)
-	for _, x := range [3]float64{-1, 0, 1} {
-		pe, _, _ := p.e.at(x)
-		for _, y := range [3]float64{-1, 0, 1} {
-			pf, _, _ := p.f.at(y)
-			dx, dy, dz := pe[0]-pf[0], pe[1]-pf[1], pe[2]-pf[2]
-			if p.image {
-				dz = pe[2] + pf[2]
-			}
-			least = min(least, dx*dx+dy*dy+dz*dz)
-		}
-	}
-	return least < limit*limit
+	return dx*dx + dy*dy + dz*dz
 }

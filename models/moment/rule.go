@@ -23,9 +23,9 @@ var legendre = func() (g [mostNodes + 1]rule) {
 }()
 
 // samples is the number of points through which an element's centre line is
-// laid: a polynomial of degree samples−1 on a third of a turn is good to
-// 1e-10 of the radius.
-const samples = 10
+// laid: a polynomial of degree samples−1 on a fifth of a turn is good to
+// 3e-9 of the radius.
+const samples = 8
 
 // sampling holds the Chebyshev nodes on −1 to 1 and the matrix that takes
 // values on them to a polynomial's coefficients, lowest power first.

@@ -29,9 +29,9 @@ func (s *static) self(p *pair) {
 			weight := w * g.w[i] * room / 2 * 4 / (h * h)
 			x, y := 2*(low+u)/h-1, 2*low/h-1
 			s.add(p, x, y, weight, false)
-			s.add(p, y, x, weight, false)
 		}
 	})
+	s.mom.symmetric()
 }
 
 // corner integrates two elements that share a point, the ends se of e and sf
@@ -101,6 +101,43 @@ func (s *static) aside(p *pair, reduce bool) {
 			pf, tf, af := p.f.at(y)
 			s.node(p, &pe, &te, ae, x, &pf, &tf, af, y, w, reduce)
 		}
+	}
+}
+
+// apart integrates two elements with room between them: plain rules.
+func (s *static) apart(p *pair, i, j int, reduce bool) {
+	n, order := p.m.set.apart, p.m.order
+	g := &legendre[n]
+	es, fs := p.m.spots[i*n:(i+1)*n], p.m.spots[j*n:(j+1)*n]
+	for a := range es {
+		var c0, c1, q0, q1 [maxOrder]float64 // by the power of y
+		for b := range fs {
+			inverse, mean, dot := p.static(&es[a].at, &es[a].tangent, es[a].radius, &fs[b].at, &fs[b].tangent, fs[b].radius, reduce)
+			w, y := g.w[b], g.x[b]
+			q, r, c, d := w*inverse, w*mean, w*dot*inverse, w*dot*mean
+			for k := range order {
+				q0[k] += q
+				q1[k] += r
+				c0[k] += c
+				c1[k] += d
+				q, r, c, d = q*y, r*y, c*y, d*y
+			}
+		}
+		w := g.w[a]
+		for k := range order {
+			add(&s.mom.current0[k], &c0, w)
+			add(&s.mom.current1[k], &c1, w)
+			add(&s.mom.charge0[k], &q0, p.sign()*w)
+			add(&s.mom.charge1[k], &q1, p.sign()*w)
+			w *= g.x[a]
+		}
+	}
+}
+
+// add adds w·src to dst.
+func add(dst, src *[maxOrder]float64, w float64) {
+	for k := range dst {
+		dst[k] += w * src[k]
 	}
 }
 
