@@ -58,7 +58,7 @@ func (m *Model) Simulate(ctx context.Context, d models.Design, q models.Question
 	return r, nil
 }
 
-// checkQuestion refuses frequencies that are none.
+// checkQuestion refuses frequencies and cones that are none.
 func checkQuestion(q models.Question) error {
 	if len(q.Hz) == 0 {
 		return fmt.Errorf("closed form: no frequency was asked for; give at least one")
@@ -67,6 +67,9 @@ func checkQuestion(q models.Question) error {
 		if !(hz > 0) || math.IsInf(hz, 0) {
 			return fmt.Errorf("closed form: a frequency of %g Hz cannot be answered; give a positive one", hz)
 		}
+	}
+	if q.Outputs&models.Cone != 0 && !(q.Cone > 0 && q.Cone <= math.Pi/2) {
+		return fmt.Errorf("closed form: a cone of %g rad about the axis cannot be answered; above 0 and at most π/2 is due", q.Cone)
 	}
 	return nil
 }
