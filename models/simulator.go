@@ -98,13 +98,13 @@ type Sample struct {
 
 // Cut is a far-field cut through the axis.
 type Cut struct {
-	Plane float64 // rad, azimuth of the half-plane of positive angles
-	Rays  []Ray
+	Plane float64 `json:"plane_rad"` // azimuth of the half-plane of positive angles
+	Rays  []Ray   `json:"rays"`
 }
 
 // Ray is one direction of a cut.
 type Ray struct {
-	Angle      float64  // rad from the axis, negative on the far side
-	Gain       Circular // partial gains, power ratios
-	AxialRatio float64  // dB, 0 to 60
+	Angle      float64  `json:"angle_rad"`      // from the axis, negative on the far side
+	Gain       Circular `json:"gain"`           // partial gains, power ratios
+	AxialRatio float64  `json:"axial_ratio_db"` // 0 to 60
 }

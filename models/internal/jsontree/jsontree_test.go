@@ -2,6 +2,7 @@ package jsontree
 
 import (
 	"encoding/json"
+	"fmt"
 	"strings"
 	"testing"
 
@@ -26,11 +27,27 @@ func TestParseFaults(t *testing.T) {
 		`[1,]`:                      "is not JSON at byte",
 		`{"a":1,}`:                  "is not JSON at byte",
 		strings.Repeat("[", 40):     "nests deeper than 32 levels",
+		manyKeys(257):               "the value has more than 256 keys",
 	} {
 		v, err := Parse([]byte(text))
 		if err == nil || !strings.Contains(err.Error(), want) {
 			t.Errorf("Parse(%q) = %+v, %v; want %q in the error", text, v, err, want)
 		}
+	}
+}
+
+// manyKeys is an object of n keys.
+func manyKeys(n int) string {
+	var b strings.Builder
+	for i := range n {
+		fmt.Fprintf(&b, `,"%d":1`, i)
+	}
+	return "{" + b.String()[1:] + "}"
+}
+
+func TestWideObject(t *testing.T) {
+	if _, err := Parse([]byte(manyKeys(256))); err != nil {
+		t.Error(err)
 	}
 }
 

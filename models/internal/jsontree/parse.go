@@ -14,8 +14,12 @@ import (
 	"strings"
 )
 
-// deepest is the nesting that Parse follows; the documents read here need 6.
-const deepest = 32
+// deepest is the nesting that Parse follows, widest the keys of one object;
+// the documents read here need 6 and 18.
+const (
+	deepest = 32
+	widest  = 256
+)
 
 // Kind says what a Value is.
 type Kind byte
@@ -121,6 +125,9 @@ func (p *parser) object(where string, depth int) (Value, error) {
 		at := join(where, key)
 		if _, twice := v.Find(key); twice {
 			return v, fmt.Errorf("%s stands twice; it should stand once", at)
+		}
+		if len(v.Keys) == widest {
+			return v, fmt.Errorf("%s has more than %d keys", named(where), widest)
 		}
 		item, err := p.value(at, depth+1)
 		v.Keys, v.Items = append(v.Keys, key), append(v.Items, item)
