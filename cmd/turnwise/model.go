@@ -6,11 +6,12 @@ import (
 
 	"turnwise/configs"
 	"turnwise/models/closedform"
+	"turnwise/models/moment"
 	"turnwise/objectives"
 )
 
 // defaultModel answers simulate where no model is named.
-const defaultModel = configs.ClosedForm
+const defaultModel = configs.FullWave
 
 // errNotYet names what a brief may ask for and this version cannot give.
 var errNotYet = errors.New("is not in this version")
@@ -23,10 +24,16 @@ func newRung(model, fidelity string) (objectives.Rung, error) {
 			return objectives.Rung{}, fmt.Errorf("--fidelity %s: the closed-form model has no fidelity; leave it away", fidelity)
 		}
 		return objectives.Rung{Simulator: closedform.New(), Model: model, Indicative: true}, nil
-	case configs.FullWave, configs.ExternalModel:
-		return objectives.Rung{}, fmt.Errorf("model %s %w; write model: closed-form", model, errNotYet)
+	case configs.FullWave:
+		if fidelity == "" {
+			fidelity = string(moment.Standard)
+		}
+		solver, err := moment.New(moment.Fidelity(fidelity))
+		return objectives.Rung{Simulator: solver, Model: model, Fidelity: fidelity}, err
+	case configs.ExternalModel:
+		return objectives.Rung{}, fmt.Errorf("model %s %w; write model: full-wave", model, errNotYet)
 	}
-	return objectives.Rung{}, fmt.Errorf("--model %s: there is no such model; write closed-form", model)
+	return objectives.Rung{}, fmt.Errorf("--model %s: there is no such model; write full-wave or closed-form", model)
 }
 
 // newProblem binds a spec to the models that a brief names.

@@ -87,7 +87,7 @@ func simulate(c *cobra.Command, s streams, o simulation) error {
 	d.Band = band
 	sim := report.Simulation{
 		Design: d, Model: rung.Model, Fidelity: rung.Fidelity, Response: r,
-		Geometry: curve.Geometry(), Figures: objectives.Read(&d, curve.Geometry(), &r),
+		Geometry: curve.Geometry(), ExcessPhase: curve.ExcessPhase(band.To), Figures: objectives.Read(&d, curve.Geometry(), &r),
 		Hand: report.HandFigures(hand), DesignJSON: d,
 	}
 	if err := o.writeFiles(&sim); err != nil {

@@ -22,6 +22,8 @@ type Simulation struct {
 	Response models.Response
 	Geometry helix.Geometry
 	Figures  objectives.Row
+	// ExcessPhase is E at the band's upper end.
+	ExcessPhase float64
 	// Hand holds the hand formulas' figures at mid-band.
 	Hand HandFigures
 	// DesignJSON is the design in the form of a design file's keys.
@@ -144,7 +146,7 @@ func (s *Simulation) WriteJSON(w io.Writer) error {
 		Design: s.DesignJSON, Model: s.Model, Fidelity: orNull(s.Fidelity), Figures: figures,
 		Geometry: map[string]number{
 			"length_m": number(g.Length), "wire_length_m": number(g.WireLength), "widest_m": number(g.Widest),
-			"mass_kg": number(g.Mass), "bend_radius_m": number(g.BendRadius),
+			"mass_kg": number(g.Mass), "bend_radius_m": number(g.BendRadius), "excess_phase": number(s.ExcessPhase),
 		},
 		Warnings: append([]string{}, s.warnings()...), Hand: s.Hand, Sweep: s.rows(),
 	})
@@ -167,8 +169,9 @@ func (s *Simulation) WriteText(w io.Writer) error {
 	g := s.Geometry
 	d := &s.Design
 	fmt.Fprintf(w, "%s: %.4g turns, %s-handed, %s conductor %.4g mm\n", titleOr(d.Title, "design"), d.Turns, d.Handedness, d.Conductor.Material.Name, d.Conductor.Diameter*1e3)
-	fmt.Fprintf(w, "length %.1f mm, widest %.1f mm, wire %.4g m, mass %.4g g, least bend radius %.1f mm\n\n",
+	fmt.Fprintf(w, "length %.1f mm, widest %.1f mm, wire %.4g m, mass %.4g g, least bend radius %.1f mm\n",
 		g.Length*1e3, g.Widest*1e3, g.WireLength, g.Mass*1e3, g.BendRadius*1e3)
+	fmt.Fprintf(w, "excess phase %.2f at the band's upper end (gain peaks at 0.3 to 0.5 and falls off a cliff past 0.6)\n\n", s.ExcessPhase)
 	mark := ""
 	if s.Response.Indicative {
 		mark = "*"
