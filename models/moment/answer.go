@@ -15,7 +15,7 @@ const mostImbalance = 0.01
 // visit implements visitor: it reads one frequency's sample.
 func (w *worker) visit(_ *work, i int) error {
 	s, q := &w.samples[i], &w.question
-	accepted, lost := w.accepted(0), w.lost()
+	accepted, lost := w.accepted(0, 1), w.lost()
 	s.Hz = w.hz
 	s.Port = 1 / w.admittance(0, 0)
 	s.Input = w.design.Feed.Transformer.Input(s.Port, w.hz)

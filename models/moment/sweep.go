@@ -22,6 +22,7 @@ type work struct {
 	solved  []complex128   // I of each port at 1 V, in turn
 	loss    []complex128   // Ω/m of each wire at this frequency
 	current []complex128   // the functions' amplitudes under the voltages
+	volts   []complex128   // of the ports, what the current is the answer to
 	field   []complex128   // ∫-weighted current on the grid points
 	gram    [][maxOrder][maxOrder]float64
 
@@ -216,6 +217,8 @@ func (w *work) complete(z []complex128) {
 func (w *work) excite(port int) {
 	n := w.mesh.functions
 	copy(w.current, w.solved[port*n:(port+1)*n])
+	w.volts = cleared(w.volts, len(w.antenna.Ports))
+	w.volts[port] = 1
 	w.spreadOut()
 }
 
@@ -236,14 +239,14 @@ func (w *work) spreadOut() {
 	}
 }
 
-// accepted is the power taken from port p at 1 V with the others shorted,
-// ½ Re(VᴴI), W.
-func (w *work) accepted(port int) float64 {
+// accepted is the power taken from port p at v volts, ½ Re(Vᴴ I), W.
+func (w *work) accepted(port int, v complex128) float64 {
 	n := w.mesh.functions
 	sum := 0.0
-	for i, v := range w.tested[port*n : (port+1)*n] {
+	for i, e := range w.tested[port*n : (port+1)*n] {
+		e *= v
 		c := w.current[i]
-		sum += real(v)*real(c) + imag(v)*imag(c)
+		sum += real(e)*real(c) + imag(e)*imag(c)
 	}
 	return sum / 2
 }
