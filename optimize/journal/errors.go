@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"io/fs"
 	"path/filepath"
+	"strings"
 	"syscall"
 
 	"modernc.org/sqlite"
@@ -82,6 +83,9 @@ func fault(path string, err error) error {
 		e.Fault, e.Remedy = ErrReadOnly, remedyFolder
 	case errors.Is(err, fs.ErrNotExist):
 		e.Fault, e.Remedy = fs.ErrNotExist, "create folder "+filepath.Dir(path)+" first"
+	case strings.HasPrefix(err.Error(), "sql: Scan error"):
+		// database/sql has no type for it: a value the schema does not allow.
+		e.Fault, e.Remedy = ErrDamaged, remedyDamaged
 	}
 	return e
 }
