@@ -2,6 +2,7 @@ package configs
 
 import (
 	"bytes"
+	"cmp"
 	"errors"
 	"fmt"
 	"io"
@@ -18,7 +19,7 @@ import (
 // Format is how a file is written.
 type Format string
 
-// The formats. JSON is read as the part of YAML that it is.
+// The formats.
 const (
 	YAML Format = "yaml"
 	TOML Format = "toml"
@@ -56,14 +57,21 @@ func (r *reader) add(line int, key, what, remedy string) {
 	r.faults = append(r.faults, Fault{r.file, line, key, what, remedy})
 }
 
-// err is everything that was wrong, by line; nil without any.
+// err is everything that was wrong, file by file and by line; nil without
+// any.
 func (r *reader) err() error {
 	if len(r.faults) == 0 {
 		return nil
 	}
+	files := map[string]int{r.file: 0}
+	for i := range r.faults {
+		if _, ok := files[r.faults[i].File]; !ok {
+			files[r.faults[i].File] = len(files)
+		}
+	}
 	sort.SliceStable(r.faults, func(i, j int) bool {
 		a, b := &r.faults[i], &r.faults[j]
-		return a.File == b.File && a.Line < b.Line
+		return cmp.Or(cmp.Compare(files[a.File], files[b.File]), cmp.Compare(a.Line, b.Line)) < 0
 	})
 	return &Error{r.faults}
 }
@@ -76,7 +84,7 @@ func readFile(path string) ([]byte, error) {
 	info, err := os.Stat(path)
 	switch {
 	case errors.Is(err, fs.ErrNotExist):
-		return refuse("does not exist", "check the name; 'turnwise start' writes a brief to begin from")
+		return refuse("does not exist", "check the name")
 	case err != nil:
 		return refuse("cannot be looked at: "+cause(err), "check its name and who may read it")
 	case info.IsDir():
@@ -120,9 +128,12 @@ func (r *reader) parse(data []byte, format Format, what string) *node {
 	}
 	before := len(r.faults)
 	var root *node
-	if format == TOML {
+	switch format {
+	case TOML:
 		root = r.parseTOML(data)
-	} else {
+	case JSON:
+		root = r.parseJSON(data)
+	default:
 		root = r.parseYAML(data)
 	}
 	if len(r.faults) > before && root == nil {

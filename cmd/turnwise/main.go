@@ -21,7 +21,6 @@ type streams struct {
 	out, err io.Writer
 	// live is set where err is a terminal that may be drawn on.
 	live bool
-	env  []string
 }
 
 func main() {
@@ -33,7 +32,6 @@ func main() {
 		out:  os.Stdout,
 		err:  os.Stderr,
 		live: term.IsTerminal(int(os.Stderr.Fd())) && os.Getenv("TERM") != "dumb",
-		env:  os.Environ(),
 	}))
 }
 

@@ -1,6 +1,8 @@
 package main
 
 import (
+	"strings"
+
 	"github.com/spf13/cobra"
 )
 
@@ -15,9 +17,11 @@ what must hold. It leaves a front of trade-offs to choose from.
 
 Start with:  turnwise start     a commented brief to edit
              turnwise search    the built-in demonstration, about a minute`,
-		SilenceUsage:  true,
-		SilenceErrors: true,
-		Args:          cobra.NoArgs,
+		SilenceUsage:               true,
+		SilenceErrors:              true,
+		SuggestionsMinimumDistance: 2,
+		Args:                       noSuchCommand,
+		RunE:                       func(c *cobra.Command, _ []string) error { return c.Help() },
 	}
 	root.SetOut(s.out)
 	root.SetErr(s.err)
@@ -31,7 +35,19 @@ Start with:  turnwise start     a commented brief to edit
 	return root
 }
 
-// exactly and the like turn cobra's complaint about arguments into exit 2.
+// noSuchCommand refuses a command that is none and offers the nearest.
+func noSuchCommand(c *cobra.Command, args []string) error {
+	if len(args) == 0 {
+		return nil
+	}
+	near := ""
+	if like := c.SuggestionsFor(args[0]); len(like) > 0 {
+		near = ", did you mean " + strings.Join(like, " or ") + "?"
+	}
+	return wrongf("there is no command %q%s; '%s --help' lists them", args[0], near, c.CommandPath())
+}
+
+// arguments turns cobra's complaint about arguments into exit 2.
 func arguments(check cobra.PositionalArgs) cobra.PositionalArgs {
 	return func(c *cobra.Command, args []string) error {
 		if err := check(c, args); err != nil {

@@ -59,6 +59,9 @@ func Create(dir string) (Folder, error) {
 func Open(dir string) (Folder, error) {
 	f := Folder{Dir: dir}
 	info, err := os.Stat(dir)
+	if errors.Is(err, fs.ErrNotExist) {
+		return f, fmt.Errorf("there is no folder %s; name the folder of a run, as search printed it", dir)
+	}
 	if err != nil {
 		return f, fmt.Errorf("cannot open %s: %w", dir, plain(err))
 	}
