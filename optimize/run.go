@@ -51,7 +51,7 @@ const (
 	TimeSpent     Reason = "the time is spent"
 	Deadline      Reason = "the time of day is reached"
 	Stagnated     Reason = "the front has stopped growing"
-	Stopped       Reason = "it was stopped"
+	Stopped       Reason = "a signal came"
 	MostlyFailing Reason = "most evaluations fail"
 	CannotRecord  Reason = "evaluations cannot be recorded"
 )

@@ -1,0 +1,95 @@
+package main
+
+import (
+	"errors"
+	"os"
+	"os/exec"
+	"strconv"
+	"testing"
+	"time"
+
+	"github.com/rogpeppe/go-internal/testscript"
+)
+
+func TestMain(m *testing.M) {
+	testscript.Main(m, map[string]func(){"turnwise": main})
+}
+
+// Every script is what a user does, told by its file's name.
+func TestScripts(t *testing.T) {
+	testscript.Run(t, testscript.Params{
+		Dir: "testdata/script",
+		Cmds: map[string]func(*testscript.TestScript, bool, []string){
+			"exits":  exits,
+			"rows":   rows,
+			"shared": shared,
+			"until":  until,
+		},
+		Condition: func(cond string) (bool, error) {
+			if cond == "root" {
+				return os.Geteuid() == 0, nil
+			}
+			return false, errors.New("unknown condition")
+		},
+		RequireExplicitExec: true,
+	})
+}
+
+// exits CODE PROGRAM ARGS… runs a program that must end with the code.
+func exits(ts *testscript.TestScript, neg bool, args []string) {
+	if neg || len(args) < 2 {
+		ts.Fatalf("usage: exits code program args…")
+	}
+	want, err := strconv.Atoi(args[0])
+	ts.Check(err)
+	code := 0
+	var exit *exec.ExitError
+	if err := ts.Exec(args[1], args[2:]...); errors.As(err, &exit) {
+		code = exit.ExitCode()
+	} else {
+		ts.Check(err)
+	}
+	if code != want {
+		ts.Fatalf("exit code %d, %d is due", code, want)
+	}
+}
+
+// rows FILE LEAST MOST counts the rows of a table under its header.
+func rows(ts *testscript.TestScript, neg bool, args []string) {
+	if neg || len(args) != 3 {
+		ts.Fatalf("usage: rows file least most")
+	}
+	least, err := strconv.Atoi(args[1])
+	ts.Check(err)
+	most, err := strconv.Atoi(args[2])
+	ts.Check(err)
+	n := -1
+	for _, c := range ts.ReadFile(args[0]) {
+		if c == '\n' {
+			n++
+		}
+	}
+	if n < least || n > most {
+		ts.Fatalf("%d rows, %d to %d are due", n, least, most)
+	}
+}
+
+// shared copies a file of testdata into the script's folder.
+func shared(ts *testscript.TestScript, neg bool, args []string) {
+	for _, name := range args {
+		data, err := os.ReadFile("testdata/" + name)
+		ts.Check(err)
+		ts.Check(os.WriteFile(ts.MkAbs(name), data, 0o644))
+	}
+}
+
+// until FILE waits until there is such a file.
+func until(ts *testscript.TestScript, neg bool, args []string) {
+	for range 6000 {
+		if _, err := os.Stat(ts.MkAbs(args[0])); err == nil {
+			return
+		}
+		time.Sleep(10 * time.Millisecond)
+	}
+	ts.Fatalf("%s does not come", args[0])
+}
