@@ -382,7 +382,7 @@ func TestSettleConfirmsEveryMember(t *testing.T) {
 	for _, workers := range []int{1, 4} {
 		var kept int
 		s, err := optimize.Settle(context.Background(), all, confirm, optimize.SettleOptions{Most: 12, Workers: workers,
-			Kept: func(es []optimize.Evaluation) error { kept += len(es); return nil }})
+			Kept: func(optimize.Evaluation) error { kept++; return nil }})
 		if err != nil || len(s.Front) == 0 || len(s.Front) > 12 || kept != s.Checks {
 			t.Fatalf("%d members, %d of %d checks kept, error %v", len(s.Front), kept, s.Checks, err)
 		}
@@ -422,7 +422,7 @@ func TestSettleStopsAndFails(t *testing.T) {
 		t.Errorf("stopped: %+v, error %v", s, err)
 	}
 	full := errors.New("no room")
-	if _, err := optimize.Settle(context.Background(), all, confirm, optimize.SettleOptions{Kept: func([]optimize.Evaluation) error { return full }}); !errors.Is(err, full) {
+	if _, err := optimize.Settle(context.Background(), all, confirm, optimize.SettleOptions{Kept: func(optimize.Evaluation) error { return full }}); !errors.Is(err, full) {
 		t.Errorf("error %v", err)
 	}
 }

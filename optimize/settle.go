@@ -39,13 +39,13 @@ const (
 )
 
 // SettleOptions is how a front is settled. Most is the number of members at
-// the most, 0: all. Kept, where set, is called from one goroutine with each
-// round's confirmations in candidate order before they count. Progress is
-// told how many of a round's confirmations are done.
+// the most, 0: all. Kept, where set, gets each confirmation as it comes, one
+// call at a time. Progress is told how many of a round's confirmations are
+// done.
 type SettleOptions struct {
 	Most     int
 	Workers  int
-	Kept     func([]Evaluation) error
+	Kept     func(Evaluation) error
 	Progress func(done, of, round int)
 }
 
@@ -106,39 +106,50 @@ func (s *settling) open(members []int) (todo []int, to check) {
 // confirm answers one round and takes it in, in candidate order.
 func (s *settling) confirm(ctx context.Context, confirm Confirmer, todo []int, to check, round int) error {
 	answers := make([]Evaluation, len(todo))
-	var next, done int
-	var mu sync.Mutex
-	var wg sync.WaitGroup
+	whole := evaluatorFunc(func(ctx context.Context, c Candidate) (Score, error) { return confirm(ctx, c, to == complete) })
+	var (
+		mu         sync.Mutex
+		next, done int
+		fault      error // of keeping
+		wg         sync.WaitGroup
+	)
+	take := func() int {
+		mu.Lock()
+		defer mu.Unlock()
+		if next == len(todo) || ctx.Err() != nil || fault != nil {
+			return -1
+		}
+		next++
+		return next - 1
+	}
+	give := func(k int, e Evaluation) {
+		mu.Lock()
+		defer mu.Unlock()
+		if ctx.Err() != nil && e.Status != OK {
+			return // cut off, not answered
+		}
+		if s.o.Kept != nil && fault == nil {
+			fault = s.o.Kept(e)
+		}
+		answers[k] = e
+		done++
+		if s.o.Progress != nil {
+			s.o.Progress(done, len(todo), round)
+		}
+	}
 	for range max(1, min(s.o.Workers, len(todo))) {
 		wg.Go(func() {
-			for {
-				mu.Lock()
-				k := next
-				next++
-				mu.Unlock()
-				if k >= len(todo) || ctx.Err() != nil {
-					return
-				}
-				answers[k] = answer(ctx, evaluatorFunc(func(ctx context.Context, c Candidate) (Score, error) {
-					return confirm(ctx, c, to == complete)
-				}), s.all[todo[k]].Candidate, 0)
-				mu.Lock()
-				done++
-				if s.o.Progress != nil {
-					s.o.Progress(done, len(todo), round)
-				}
-				mu.Unlock()
+			for k := take(); k >= 0; k = take() {
+				give(k, answer(ctx, whole, s.all[todo[k]].Candidate, 0))
 			}
 		})
 	}
 	wg.Wait()
-	if ctx.Err() != nil {
-		return context.Cause(ctx)
+	if fault != nil {
+		return fault
 	}
-	if s.o.Kept != nil {
-		if err := s.o.Kept(answers); err != nil {
-			return err
-		}
+	if done < len(todo) {
+		return context.Cause(ctx)
 	}
 	for k, i := range todo {
 		answers[k].Answers = nil

@@ -20,18 +20,29 @@ import (
 )
 
 func checkCommand(s streams) *cobra.Command {
-	return &cobra.Command{
+	var lasting string
+	c := &cobra.Command{
 		Use:   "check BRIEF",
 		Short: "Says what is wrong with a brief, or what it will do",
 		Long: `Reads a brief and says everything that is wrong with it at once; or, when
 nothing is, what the search will do: the space and its size, aims and limits,
 a timed estimate of one evaluation and of the whole run on this machine.`,
 		Args: arguments(cobra.ExactArgs(1)),
-		RunE: func(c *cobra.Command, args []string) error { return check(c.Context(), s, args[0]) },
+		RunE: func(c *cobra.Command, args []string) error { return check(c.Context(), s, args[0], lasting) },
 	}
+	c.Flags().StringVar(&lasting, "for", "", "say what a search of this time allows, such as 8h")
+	return c
 }
 
-func check(ctx context.Context, s streams, path string) error {
+func check(ctx context.Context, s streams, path, lasting string) error {
+	var limit time.Duration
+	if lasting != "" {
+		seconds, err := configs.Parse(lasting, configs.Time)
+		if err != nil {
+			return wrong(fmt.Errorf("--for: %w", err))
+		}
+		limit = time.Duration(seconds * float64(time.Second))
+	}
 	b, err := configs.ReadBrief(path)
 	if err != nil {
 		return wrong(err)
@@ -52,10 +63,15 @@ func check(ctx context.Context, s streams, path string) error {
 	if err != nil {
 		return failed(fmt.Errorf("the model answers none of the first designs: %w", err))
 	}
-	planned := plannedEvaluations(&b, one, runtime.NumCPU())
-	whole := time.Duration(float64(one) * float64(planned) / float64(runtime.NumCPU()))
-	fmt.Fprintf(w, "time          one evaluation %s here; %d of them on %d workers about %s\n", brief(one), planned, runtime.NumCPU(), brief(whole))
+	workers := runtime.NumCPU()
+	planned := plannedEvaluations(&b, one, workers)
+	whole := time.Duration(float64(one) * float64(planned) / float64(workers))
+	fmt.Fprintf(w, "time          one evaluation %s here; %d of them on %d workers about %s, and the final front besides\n", brief(one), planned, workers, brief(whole))
 	_, err = fmt.Fprintf(w, "journal       about %s\n", bytesText(float64(planned)*journalBytes(p)))
+	if limit > 0 {
+		n := timedPlan(limit, one, workers)
+		_, err = fmt.Fprintf(w, "in %-10s about %d evaluations and %s of journal\n", brief(limit), n, bytesText(float64(n)*journalBytes(p)))
+	}
 	return failed(err)
 }
 

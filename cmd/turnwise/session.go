@@ -424,7 +424,7 @@ func (ses *session) finish(ctx context.Context, r optimize.Result, began time.Ti
 	show := newProgress(ses.s)
 	settled, err := optimize.Settle(ctx, r.Evaluations, ses.confirm, optimize.SettleOptions{
 		Most: ses.brief.FrontAtMost, Workers: ses.set.Workers,
-		Kept: ses.book.RecordFinal,
+		Kept: func(e optimize.Evaluation) error { return ses.book.RecordFinal([]optimize.Evaluation{e}) },
 		Progress: func(done, of, round int) {
 			show.show(standing{stage: fmt.Sprintf("confirming the front, round %d", round), done: done, total: of, front: of})
 		},
