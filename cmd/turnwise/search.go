@@ -18,6 +18,7 @@ type searchOptions struct {
 	until   string
 	resume  bool
 	timeout time.Duration
+	reuse   []string // folders of other runs
 }
 
 func searchCommand(s streams) *cobra.Command {
@@ -49,6 +50,7 @@ once; the journal stays whole.`,
 	f.String("seed", "", "seed of everything random (default the brief's, or 1)")
 	f.String("fidelity", "", "draft, standard or fine, of the full-wave model")
 	f.DurationVar(&o.timeout, "timeout", 0, "the longest that one evaluation may take, such as 30s (default no limit)")
+	f.StringArrayVar(&o.reuse, "reuse", nil, "take answers to the same questions from another run's folder (repeatable)")
 	f.BoolVar(&o.resume, "resume", false, "go on with the run in --run")
 	return c
 }
@@ -63,6 +65,10 @@ func search(c *cobra.Command, s streams, o searchOptions) error {
 		return wrongf("--timeout %v: write a time above zero, such as 30s", o.timeout)
 	}
 	ses := &session{s: s, until: until, timeout: o.timeout}
+	defer ses.close()
+	if err := ses.reuse(o.reuse); err != nil {
+		return err
+	}
 	if o.resume {
 		err = ses.reopen(c, o)
 	} else {
@@ -71,7 +77,6 @@ func search(c *cobra.Command, s streams, o searchOptions) error {
 	if err != nil {
 		return err
 	}
-	defer ses.close()
 	return ses.run(c.Context())
 }
 

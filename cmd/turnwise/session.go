@@ -8,6 +8,7 @@ import (
 	"os"
 	"runtime"
 	"strings"
+	"sync/atomic"
 	"time"
 
 	"github.com/spf13/cobra"
@@ -35,7 +36,8 @@ type session struct {
 	folder  folder.Folder
 	lock    *journal.Held
 	book    *journal.Writer
-	planned []int // of the run, then of each extension
+	others  []*journal.Reader // runs whose answers may be reused
+	planned []int             // of the run, then of each extension
 	past    []optimize.Evaluation
 	used    time.Duration // by earlier sessions
 	done    bool          // the run was finished before
@@ -43,6 +45,7 @@ type session struct {
 	written time.Time // when front.csv was last
 	shown   int       // front members then
 	so      front.Archive
+	reused  atomic.Int64 // answers taken from other runs
 	all     []optimize.Evaluation
 }
 
@@ -258,20 +261,49 @@ func sum(ns []int) int {
 	return total
 }
 
-// close lets go of the journal and the lock.
+// close lets go of the journals and the lock.
 func (ses *session) close() {
+	for _, r := range ses.others {
+		r.Close()
+	}
 	if ses.book != nil {
 		ses.book.Close()
 	}
 	if ses.lock != nil {
 		ses.lock.Release()
 	}
+	ses.others, ses.book, ses.lock = nil, nil, nil
 }
 
-// Recall finds an answer in the journal; the problem's memory.
+// reuse opens the journals of other runs.
+func (ses *session) reuse(dirs []string) error {
+	for _, dir := range dirs {
+		f, err := folder.Open(dir)
+		if err != nil {
+			return wrong(fmt.Errorf("--reuse: %w", err))
+		}
+		r, err := journal.Read(f.Path(folder.JournalFile))
+		if err != nil {
+			return wrong(fmt.Errorf("--reuse: %w", err))
+		}
+		ses.others = append(ses.others, r)
+	}
+	return nil
+}
+
+// Recall finds an answer in the journal, or in those of other runs; the
+// problem's memory.
 func (ses *session) Recall(key string) ([]byte, bool) {
-	a, ok, err := ses.book.Answer(context.Background(), key)
-	return a.Response, ok && err == nil
+	if a, ok, err := ses.book.Answer(context.Background(), key); ok && err == nil {
+		return a.Response, true
+	}
+	for _, r := range ses.others {
+		if a, ok, err := r.Answer(context.Background(), key); ok && err == nil {
+			ses.reused.Add(1)
+			return a.Response, true
+		}
+	}
+	return nil, false
 }
 
 // searcher is the programme of the run.

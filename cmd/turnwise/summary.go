@@ -25,6 +25,9 @@ func (ses *session) summary(r optimize.Result, settled optimize.Settled, t *fold
 		}
 	}
 	fmt.Fprintf(w, "evaluations   %d failed, %d asked twice; %d confirmations besides\n", failedCount, reused, settled.Checks)
+	if n := ses.reused.Load(); n > 0 {
+		fmt.Fprintf(w, "reused        %d answers of other runs\n", n)
+	}
 	for i := range settled.Left {
 		if e := &settled.Left[i]; e.Status != optimize.OK {
 			fmt.Fprintf(w, "left          candidate %d was not confirmed: %s\n", e.ID, firstLine(e.Err))
