@@ -31,7 +31,7 @@ func (w *worker) visit(_ *work, i int) error {
 	if q.Outputs&models.Cone != 0 {
 		w.cone(s, q.Cone, per)
 	}
-	if q.Outputs&(models.Cuts|models.Pattern) != 0 {
+	if q.Outputs&models.Cuts != 0 {
 		w.cuts(s, per, q.Outputs&models.Pattern != 0)
 	}
 	if q.Outputs&models.Spread != 0 {

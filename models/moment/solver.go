@@ -56,6 +56,9 @@ func (s *Solver) Simulate(ctx context.Context, d models.Design, q models.Questio
 	if s.fidelity == Fine {
 		q.Outputs |= models.Balance
 	}
+	if q.Outputs&models.Pattern != 0 {
+		q.Outputs |= models.Cuts
+	}
 	w := s.workers.Get().(*worker)
 	defer s.workers.Put(w)
 	r := models.Response{Samples: make([]models.Sample, len(q.Hz)), Answered: q.Outputs | models.Axis, Statement: Statement}
