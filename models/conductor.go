@@ -34,7 +34,7 @@ func (m Material) RoundWireImpedance(a, hz float64) complex128 {
 // 9.1.27 and 9.1.73), from so far up that what lies beyond does not count.
 // For large |z| the ratio tends to j there: no overflow on the way.
 func besselRatio(z complex128) complex128 {
-	n := int(cmplx.Abs(z)) + 60
+	n := int(min(cmplx.Abs(z), 4000)) + 60
 	if n > 4000 {
 		// Hankel's expansion, two terms: J₀/J₁ → j (1 + …), 9.2.5.
 		return complex(0, 1) + 1/(2*z) + complex(0, 3)/(8*z*z)

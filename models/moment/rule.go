@@ -9,8 +9,9 @@ import (
 // rule is a quadrature rule.
 type rule struct{ x, w []float64 }
 
-// mostNodes is the largest Gauss–Legendre rule kept.
-const mostNodes = 32
+// mostNodes is the largest Gauss–Legendre rule kept; gonum 0.17's rule of 26
+// nodes is wrong in the second digit.
+const mostNodes = 24
 
 // legendre holds the Gauss–Legendre rules on −1 to 1 by number of nodes,
 // nodes rising.
