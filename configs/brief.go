@@ -119,8 +119,9 @@ func (r *reader) brief(root *node) Brief {
 	} else {
 		s.Band = r.band(b.get("band"), "band")
 	}
-	if mid := s.Band.Mid(); mid > 0 {
-		r.wavelength = models.LightSpeed / mid
+	r.wavelengths = true
+	if s.Band.From > 0 && s.Band.To >= s.Band.From {
+		r.wavelength = models.LightSpeed / s.Band.Mid()
 	}
 	r.model(&b, &br)
 	r.base(&b, s)
@@ -237,7 +238,7 @@ func (r *reader) model(b *block, br *Brief) {
 		}
 		br.External.Timeout = time.Minute
 		if t, ok := m.quantity("timeout", Time, span{0.01, 1e6}); ok {
-			br.External.Timeout = time.Duration(math.Round(t * 1e9))
+			br.External.Timeout = duration(t)
 		}
 	default:
 		m.missing("ladder", "write model: full-wave, or {ladder: [...]}, or {external: [command, argument]}")
@@ -297,6 +298,9 @@ func (r *reader) starts(b *block, br *Brief) {
 	}
 }
 
+// part is a percentage as a part of 1, to the digits that are written.
+func part(percent float64) float64 { return math.Round(percent*1e9) / 1e11 }
+
 // shares reads the programme.
 func (r *reader) shares(b *block) Shares {
 	if !b.has("search") {
@@ -305,7 +309,7 @@ func (r *reader) shares(b *block) Shares {
 	s := r.block(b.get("search"), "search", "sample", "genetic", "simplex")
 	get := func(key string) float64 {
 		x, _ := s.quantity(key, Percent, span{0, 100})
-		return x / 100
+		return part(x)
 	}
 	out := Shares{get("sample"), get("genetic"), get("simplex")}
 	sum := out.Sample + out.Genetic + out.Simplex
@@ -326,7 +330,7 @@ func (r *reader) budget(b *block) Budget {
 		out.Evaluations = int(k)
 	}
 	if t, ok := g.quantity("time", Time, span{1, 1e8}); ok {
-		out.Time = time.Duration(math.Round(t * 1e9))
+		out.Time = duration(t)
 	}
 	if !g.has("stagnation") {
 		return out
@@ -341,7 +345,7 @@ func (r *reader) budget(b *block) Budget {
 		out.Stagnation.Evaluations = int(k)
 	}
 	if x, ok := s.quantity("share", Percent, span{0, 100}); ok {
-		out.Stagnation.Share = x / 100
+		out.Stagnation.Share = part(x)
 	}
 	return out
 }
@@ -357,6 +361,9 @@ func (r *reader) margins(b *block) objectives.Margins {
 	m.FeedHeight, _ = k.quantity("feed_height", Length, span{0, 0.1})
 	if word, ok := k.words("at"); ok && word != "worst" {
 		m.Percentile, _ = k.quantity("at", Percent, span{50, 100})
+	}
+	if !m.Any() {
+		return objectives.Margins{}
 	}
 	return m
 }

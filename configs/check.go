@@ -118,7 +118,7 @@ func (c *briefCheck) conductor() {
 		k := c.s.Base.Conductor
 		name := k.Stock
 		if name == "" {
-			name = decimal(k.Diameter, 3) + " mm " + k.Material.Name
+			name = sizeName(k.Diameter, k.Material)
 		}
 		c.s.Stock = []objectives.Stock{{Name: name, Diameter: k.Diameter, Wall: k.Wall, Material: k.Material}}
 	}
@@ -172,7 +172,7 @@ func (c *briefCheck) ground() {
 	c.r.wholeGround(*c.b, "ground", c.s.Base.Ground, c.has(objectives.GroundDiameter), c.has(objectives.GroundRim))
 	for _, q := range []objectives.Quantity{objectives.GroundDiameter, objectives.GroundRim} {
 		v, ok := c.varies[q]
-		if !ok {
+		if !ok || kind == "" {
 			continue
 		}
 		if v.Step <= 0 && v.From < v.To {

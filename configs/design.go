@@ -65,7 +65,7 @@ func (r *reader) wholeDesign(root *node) models.Design {
 	if d.Feed.Impedance == 0 {
 		d.Feed.Impedance = defaultImpedance
 	}
-	r.wholeLead(b, &d)
+	r.wholeLead(b)
 	return d
 }
 
@@ -78,20 +78,24 @@ var designExamples = map[string]string{
 
 // wholeLead notes parts of a lead, strip or transformer without their other
 // half.
-func (r *reader) wholeLead(b block, d *models.Design) {
+func (r *reader) wholeLead(b block) {
 	feed := b.get("feed")
 	if feed == nil || feed.kind != table {
 		return
 	}
-	half := func(key string, has, other bool, what string) {
-		if n := feed.find(key); n != nil && has != other {
-			r.add(n.line, "feed."+key, "has only one of "+what, "write both")
+	half := func(key, one, other string) {
+		n := feed.find(key)
+		if n == nil || n.kind != table {
+			return
+		}
+		part := block{n: n}
+		if part.has(one) != part.has(other) {
+			r.add(n.line, "feed."+key, "has only one of "+one+" and "+other, "write both")
 		}
 	}
-	f := &d.Feed
-	half("lead", f.Lead.Turns > 0, f.Lead.Spacing > 0, "turns and spacing")
-	half("strip", f.Strip.Turns > 0, f.Strip.Width > 0, "turns and width")
-	half("transformer", f.Transformer.Impedance > 0, f.Transformer.Length > 0, "impedance and length")
+	half("lead", "turns", "spacing")
+	half("strip", "turns", "width")
+	half("transformer", "impedance", "length")
 }
 
 // winding reads the keys of a design that a brief may also fix; none of them
@@ -170,13 +174,20 @@ func (r *reader) conductor(n *node, path string) models.Conductor {
 	if !b.has("diameter") {
 		b.missing("diameter", "write for example diameter: 2 mm")
 	}
-	c.Diameter, _ = b.quantity("diameter", Length, lengths)
-	c.Wall, _ = b.quantity("wall", Length, optional)
-	if c.Wall > 0 && 2*c.Wall > c.Diameter && c.Diameter > 0 {
-		b.fault("wall", "is more than half the diameter", "write the tube's wall, or leave it away for solid wire")
-	}
+	var ok bool
+	c.Diameter, ok = b.quantity("diameter", Length, lengths)
+	c.Wall = b.wall(c.Diameter, ok)
 	c.Material = r.material(b)
 	return c
+}
+
+// wall reads the wall of a tube; 0 for solid wire.
+func (b *block) wall(diameter float64, known bool) float64 {
+	w, _ := b.quantity("wall", Length, optional)
+	if known && 2*w > diameter {
+		b.fault("wall", "is more than half the diameter", "write the tube's wall, or leave it away for solid wire")
+	}
+	return w
 }
 
 // material reads a material by name, or by its numbers.
@@ -216,6 +227,9 @@ func (r *reader) insulation(n *node, path string) models.Insulation {
 	}
 	i.Thickness, _ = b.quantity("thickness", Length, span{0, 0.1})
 	i.Permittivity, _ = b.quantity("permittivity", Plain, span{1, 100})
+	if i.Thickness == 0 {
+		return models.Insulation{}
+	}
 	return i
 }
 
@@ -239,7 +253,7 @@ func (r *reader) feed(n *node, path string) models.Feed {
 	if b.has("strip") {
 		s := r.block(b.get("strip"), join(path, "strip"), "turns", "width")
 		f.Strip.Turns, _ = s.quantity("turns", Revolution, span{0, 1000})
-		f.Strip.Width, _ = s.quantity("width", Length, optional)
+		f.Strip.Width, _ = s.quantity("width", Length, lengths)
 	}
 	if b.has("transformer") {
 		t := r.block(b.get("transformer"), join(path, "transformer"), "impedance", "length", "velocity")
@@ -253,22 +267,22 @@ func (r *reader) feed(n *node, path string) models.Feed {
 	return f
 }
 
-// ground reads the ground; nothing is the infinite plane.
+// ground reads the ground; nothing is the infinite plane, and a kind that is
+// wrong stays empty.
 func (r *reader) ground(n *node, path string) models.Ground {
 	g := models.Ground{Kind: models.Infinite}
 	if n == nil {
 		return g
 	}
 	b := r.block(n, path, "kind", "diameter", "rim")
-	if kind, ok := b.choice("kind", string(models.Infinite), string(models.Disc), string(models.Cup)); ok {
-		g.Kind = models.GroundKind(kind)
-	} else if !b.has("kind") {
+	kind, ok := b.choice("kind", string(models.Infinite), string(models.Disc), string(models.Cup))
+	if g.Kind = models.GroundKind(kind); !ok && !b.has("kind") {
 		b.missing("kind", "write infinite, disc or cup")
 	}
 	g.Diameter, _ = b.quantity("diameter", Length, lengths)
 	g.Rim, _ = b.quantity("rim", Length, lengths)
 	unfit := func(key string, allowed bool) {
-		if b.has(key) && !allowed {
+		if ok && b.has(key) && !allowed {
 			b.fault(key, "does not go with a ground of kind "+string(g.Kind), "leave it away, or name the kind that has it")
 		}
 	}
@@ -280,7 +294,7 @@ func (r *reader) ground(n *node, path string) models.Ground {
 // wholeGround notes a plate or cup without its sizes, unless they vary.
 func (r *reader) wholeGround(b block, key string, g models.Ground, variesDiameter, variesRim bool) {
 	n := b.get(key)
-	if n == nil {
+	if n == nil || g.Kind == "" {
 		return
 	}
 	if g.Kind != models.Infinite && g.Diameter == 0 && !variesDiameter {

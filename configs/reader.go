@@ -45,9 +45,10 @@ const largestFile = 1 << 20
 type reader struct {
 	file   string
 	faults []Fault
-	// wavelength is the length of one at mid-band, m; 0 where a file may not
-	// use it.
-	wavelength float64
+	// wavelengths says that a file may use them, and wavelength is the length
+	// of one at mid-band, m; 0 where the band is wrong, which was said.
+	wavelengths bool
+	wavelength  float64
 	// rounds makes lengths and resistances multiples of what a design file
 	// is written in.
 	rounds bool
@@ -375,16 +376,13 @@ func (r *reader) exact(n *node, path string, d Dimension) (float64, bool) {
 		r.add(n.line, path, "is "+kindNames[n.kind], "write a "+dimensions[d].name+", for example "+dimensions[d].example)
 		return 0, false
 	}
-	x, waves, bad := parseQuantity(n.text, d, r.wavelength > 0)
+	x, waves, bad := parseQuantity(n.text, d, r.wavelengths)
 	if bad != nil {
 		r.add(n.line, path, bad.what, bad.remedy)
 		return 0, false
 	}
 	if waves {
-		x *= r.wavelength
-		if !r.rounds {
-			return x, true
-		}
+		return x * r.wavelength, r.wavelength > 0
 	}
 	return x, true
 }

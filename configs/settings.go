@@ -2,6 +2,7 @@ package configs
 
 import (
 	"fmt"
+	"math"
 	"os"
 	"runtime"
 	"sort"
@@ -45,10 +46,8 @@ func Resolve(flags *pflag.FlagSet, br *Brief) (Settings, error) {
 	if br.Budget.Evaluations > 0 {
 		file["evaluations"] = strconv.Itoa(br.Budget.Evaluations)
 	}
-	for _, r := range br.Ladder {
-		if r.Fidelity != "" {
-			file["fidelity"] = r.Fidelity
-		}
+	if len(br.Ladder) == 1 { // a longer one has fidelities of its own
+		file["fidelity"] = br.Ladder[0].Fidelity
 	}
 	if err := v.MergeConfigMap(file); err != nil {
 		return Settings{}, err
@@ -68,9 +67,6 @@ func Resolve(flags *pflag.FlagSet, br *Brief) (Settings, error) {
 	s := r.settings(v, flags)
 	if err := r.err(); err != nil {
 		return Settings{}, err
-	}
-	if len(br.Ladder) > 1 && s.Fidelity == file["fidelity"] {
-		s.Fidelity = "" // the ladder's own fidelities stand
 	}
 	return s, nil
 }
@@ -102,6 +98,11 @@ func (r *reader) settings(v *viper.Viper, flags *pflag.FlagSet) Settings {
 		}
 		return key
 	}
+	for _, key := range settingKeys {
+		if source(key) != key && strings.TrimSpace(v.GetString(key)) == "" {
+			r.add(0, source(key), "is empty", "give it a value, or leave it away")
+		}
+	}
 	whole := func(key string, low, high int64) int64 {
 		text := strings.TrimSpace(v.GetString(key))
 		if text == "" {
@@ -119,16 +120,16 @@ func (r *reader) settings(v *viper.Viper, flags *pflag.FlagSet) Settings {
 	s.Run = v.GetString("run")
 	s.Evaluations = int(whole("evaluations", 1, mostEvaluations))
 	s.Workers = int(whole("workers", 1, mostWorkers))
-	s.Seed = uint64(whole("seed", 0, 1<<62))
+	s.Seed = uint64(whole("seed", 0, math.MaxInt64))
 	if text := v.GetString("for"); text != "" {
-		seconds, bad := parseTime(text)
+		seconds, _, bad := parseQuantity(text, Time, false)
 		switch {
 		case bad != nil:
 			r.add(0, source("for"), bad.what, bad.remedy)
 		case !(seconds >= 1 && seconds <= 1e8):
 			r.add(0, source("for"), quoted(text)+" is out of range", "it should be from 1 s to three years, for example 8h")
 		}
-		s.For = time.Duration(seconds * 1e9)
+		s.For = duration(seconds)
 	}
 	if s.Fidelity = v.GetString("fidelity"); s.Fidelity != "" && !contains(Fidelities, s.Fidelity) {
 		r.add(0, source("fidelity"), quoted(s.Fidelity)+" is not known here", didYouMean(s.Fidelity, Fidelities))

@@ -142,16 +142,18 @@ func (r *reader) stockRow(n *node, path string) []objectives.Stock {
 	}
 	var ok bool
 	s.Diameter, ok = b.quantity("diameter", Length, span{1e-5, 1})
-	s.Wall, _ = b.quantity("wall", Length, optional)
-	if ok && 2*s.Wall > s.Diameter {
-		b.fault("wall", "is more than half the diameter", "write the tube's wall, or leave it away for solid wire")
-	}
+	s.Wall = b.wall(s.Diameter, ok)
 	s.Material = r.material(b)
 	r.stockRest(b, &s)
 	if s.Name, _ = b.name("name"); s.Name == "" {
-		s.Name = strings.TrimSpace(decimal(s.Diameter, 3) + " mm " + s.Material.Name)
+		s.Name = sizeName(s.Diameter, s.Material)
 	}
 	return []objectives.Stock{s}
+}
+
+// sizeName is what a conductor without a name of its own is called.
+func sizeName(diameter float64, m models.Material) string {
+	return strings.TrimSpace(decimal(diameter, 3) + " mm " + m.Name)
 }
 
 // stockRest reads what any conductor may have.

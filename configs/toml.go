@@ -5,6 +5,7 @@ import (
 	"errors"
 	"sort"
 	"strconv"
+	"strings"
 
 	"github.com/pelletier/go-toml/v2"
 	"github.com/pelletier/go-toml/v2/unstable"
@@ -114,7 +115,7 @@ func (t *tomlTree) value(v *unstable.Node, line int) *node {
 	case unstable.Bool:
 		n.kind = truth
 	case unstable.Integer, unstable.Float:
-		n.kind = number
+		n.kind, n.text = number, strings.ReplaceAll(n.text, "_", "")
 	case unstable.Array:
 		n.kind, n.text = list, ""
 		for it := v.Children(); it.Next(); {

@@ -120,19 +120,18 @@ func Parse(text string, d Dimension) (float64, error) {
 	return x, nil
 }
 
-// ParseTime reads a duration: 8h, 10 min, 1h30m.
-func ParseTime(text string) (time.Duration, error) {
-	seconds, bad := parseTime(text)
-	if bad != nil {
-		return 0, errors.New(bad.what + "; " + bad.remedy)
-	}
-	return time.Duration(math.Round(seconds * 1e9)), nil
+// duration is a time in seconds, to the millisecond.
+func duration(seconds float64) time.Duration {
+	return time.Duration(math.Round(seconds*1e3)) * time.Millisecond
 }
 
 // parseQuantity is Parse with the complaint in two parts; inWavelengths
 // reports a length that still wants multiplying by one.
 func parseQuantity(text string, d Dimension, wavelengths bool) (x float64, inWavelengths bool, bad *complaint) {
 	text = strings.TrimSpace(text)
+	if len(text) > mostText {
+		return 0, false, &complaint{quoted(text) + " is no " + dimensions[d].name, "write a " + dimensions[d].name + ", for example " + dimensions[d].example}
+	}
 	if d == Time {
 		x, bad = parseTime(text)
 		return x, false, bad
@@ -213,10 +212,12 @@ func findUnit(name string, d Dimension, wavelengths bool) (*unit, *complaint) {
 	return nil, &complaint{quoted(name) + " is no unit of a " + info.name, remedy}
 }
 
-// Bounds on the text of a number, far outside anything that can be built.
+// Bounds on the text of a quantity and on its number, far outside anything
+// that can be built.
 const (
-	mostDigits   = 60
-	mostExponent = 40
+	mostText   = 200
+	mostDigits = 60
+	mostSize   = 1e40
 )
 
 // scaled is a decimal number times a unit, rounded once.
@@ -229,7 +230,7 @@ func scaled(number string, scale *big.Rat) (float64, *complaint) {
 		return 0, &complaint{quoted(number) + " is not a number", "write for example 2.5"}
 	}
 	x, _ := r.Mul(r, scale).Float64()
-	if math.IsInf(x, 0) || math.Abs(x) > 1e40 {
+	if size := math.Abs(x); size > mostSize || size < 1/mostSize && r.Sign() != 0 {
 		return 0, &complaint{clip(number) + " is out of all range", "write a number of a size that can be built"}
 	}
 	return x, nil
@@ -237,7 +238,7 @@ func scaled(number string, scale *big.Rat) (float64, *complaint) {
 
 // parseTime reads one or more numbers with a unit of time, in seconds.
 func parseTime(text string) (float64, *complaint) {
-	rest, sum := strings.TrimSpace(text), 0.0
+	rest, sum := text, 0.0
 	for first := true; first || rest != ""; first = false {
 		number, name, bad := splitQuantity(rest, Time)
 		if bad != nil {

@@ -19,6 +19,7 @@ import (
 type page struct {
 	b      bytes.Buffer
 	indent int
+	varies map[objectives.Quantity]bool // of a brief: written as ranges
 }
 
 func (p *page) line(format string, a ...any) {
@@ -96,6 +97,15 @@ func materialText(m models.Material) string {
 	return text
 }
 
+// wallText is a tube's wall, at most half of the diameter as it is written.
+func wallText(diameter, wall float64) string {
+	if wall <= 0 {
+		return ""
+	}
+	half := math.Floor(math.Round(diameter*1e6)/2) / 1e6
+	return ", wall: " + rounded(math.Min(wall, half), Length)
+}
+
 func insulationText(i models.Insulation) string {
 	return fmt.Sprintf("{thickness: %s, permittivity: %s}", rounded(i.Thickness, Length), decimal(i.Permittivity, 0))
 }
@@ -120,9 +130,7 @@ func (p *page) winding(d *models.Design, whole bool) {
 			text += "stock: " + quote(c.Stock) + ", "
 		}
 		text += "diameter: " + rounded(c.Diameter, Length)
-		if c.Wall > 0 {
-			text += ", wall: " + rounded(c.Wall, Length)
-		}
+		text += wallText(c.Diameter, c.Wall)
 		p.line("conductor: %s, %s}", text, materialText(c.Material))
 	}
 	if d.Insulation.Thickness > 0 {
@@ -147,43 +155,56 @@ func (p *page) feed(f *models.Feed) {
 	if f.Impedance > 0 {
 		p.line("impedance: %s", rounded(f.Impedance, Impedance))
 	}
-	inline := func(key string, parts ...string) {
-		var there []string
-		for _, part := range parts {
-			if part != "" {
-				there = append(there, part)
-			}
+	l, s, t := f.Lead, f.Strip, f.Transformer
+	lead := p.pair(half{"turns", l.Turns, objectives.LeadTurns}, half{"spacing", l.Spacing, objectives.LeadSpacing})
+	if l.Shape != "" {
+		lead = append(lead, "shape: "+string(l.Shape))
+	}
+	p.inline("lead", lead)
+	p.inline("strip", p.pair(half{"turns", s.Turns, objectives.StripTurns}, half{"width", s.Width, objectives.StripWidth}))
+	line := p.pair(half{"impedance", t.Impedance, objectives.TransformerImpedance}, half{"length", t.Length, objectives.TransformerLength})
+	if t.Velocity > 0 {
+		line = append(line, "velocity: "+decimal(t.Velocity, 0))
+	}
+	p.inline("transformer", line)
+}
+
+func (p *page) inline(key string, parts []string) {
+	if len(parts) > 0 {
+		p.line("%s: {%s}", key, strings.Join(parts, ", "))
+	}
+}
+
+// half is one of two dimensions that stand together or not at all.
+type half struct {
+	key   string
+	value float64
+	q     objectives.Quantity
+}
+
+// pair writes two halves. One that is zero is written where the other is
+// there, and neither where it varies.
+func (p *page) pair(a, b half) []string {
+	if a.value == 0 && b.value == 0 && !p.varies[a.q] && !p.varies[b.q] {
+		return nil
+	}
+	var parts []string
+	for _, h := range []half{a, b} {
+		if !p.varies[h.q] {
+			parts = append(parts, h.key+": "+rounded(h.value, varied[h.q].d))
 		}
-		if len(there) > 0 {
-			p.line("%s: {%s}", key, strings.Join(there, ", "))
-		}
 	}
-	part := func(key string, x float64, d Dimension) string {
-		if x <= 0 {
-			return ""
-		}
-		return key + ": " + rounded(x, d)
-	}
-	shape := ""
-	if f.Lead.Shape != "" {
-		shape = "shape: " + string(f.Lead.Shape)
-	}
-	if f.Lead != (models.Lead{}) {
-		inline("lead", part("turns", f.Lead.Turns, Revolution), part("spacing", f.Lead.Spacing, Length), shape)
-	}
-	inline("strip", part("turns", f.Strip.Turns, Revolution), part("width", f.Strip.Width, Length))
-	velocity := ""
-	if f.Transformer.Velocity > 0 {
-		velocity = "velocity: " + decimal(f.Transformer.Velocity, 0)
-	}
-	inline("transformer", part("impedance", f.Transformer.Impedance, Impedance), part("length", f.Transformer.Length, Length), velocity)
+	return parts
 }
 
 // Write is the brief as a file: resolved, defaults filled in. It reads back
 // to the same brief.
 func (br *Brief) Write() []byte {
-	var p page
+	p := page{varies: map[objectives.Quantity]bool{}}
 	s := &br.Spec
+	for _, v := range s.Vary {
+		p.varies[v.Quantity] = true
+	}
 	if s.Title != "" {
 		p.line("title: %s", quote(s.Title))
 	}
@@ -203,9 +224,7 @@ func (br *Brief) Write() []byte {
 			p.line("%s: %s", v.Quantity, varyText(v))
 		}
 	})
-	base := s.Base
-	base.Handedness = s.Base.Handedness
-	p.block("design", func() { p.winding(&base, false) })
+	p.block("design", func() { p.winding(&s.Base, false) })
 	p.block("aims", func() {
 		for _, a := range s.Aims {
 			want := "least"
@@ -295,10 +314,7 @@ func (p *page) stock(s *objectives.Spec) {
 		for i := range s.Stock {
 			row := &s.Stock[i]
 			text := "name: " + quote(row.Name) + ", diameter: " + rounded(row.Diameter, Length)
-			if row.Wall > 0 {
-				text += ", wall: " + rounded(row.Wall, Length)
-			}
-			text += ", " + materialText(row.Material)
+			text += wallText(row.Diameter, row.Wall) + ", " + materialText(row.Material)
 			if row.Insulation.Thickness > 0 {
 				text += ", insulation: " + insulationText(row.Insulation)
 			}

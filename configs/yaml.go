@@ -14,8 +14,8 @@ import (
 // yamlLine is how the YAML library says where.
 var yamlLine = regexp.MustCompile(`^yaml: (?:line ([0-9]+): )?(.*)`)
 
-// parseYAML makes a tree of YAML, of which JSON is a part. Only plain data
-// is taken: no anchors, aliases, merge keys or tags.
+// parseYAML makes a tree of YAML. Only plain data is taken: no anchors,
+// aliases, merge keys or tags.
 func (r *reader) parseYAML(data []byte) *node {
 	dec := yaml.NewDecoder(bytes.NewReader(data))
 	var doc, second yaml.Node
@@ -79,7 +79,11 @@ func (r *reader) fromYAML(y *yaml.Node, path string) *node {
 				r.add(key.Line, at, "merge keys are not taken", "write the keys out at every place")
 				continue
 			}
-			n.keys = append(n.keys, entry{key.Value, key.Line, r.fromYAML(y.Content[i+1], at)})
+			value := r.fromYAML(y.Content[i+1], at)
+			if value.kind == table || value.kind == list {
+				value.line = key.Line // else that of what stands first in it
+			}
+			n.keys = append(n.keys, entry{key.Value, key.Line, value})
 		}
 	default:
 		switch y.ShortTag() {
