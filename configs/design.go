@@ -54,7 +54,7 @@ func (r *reader) wholeDesign(root *node) models.Design {
 	}
 	d.Sense = b.sense("sense")
 	d.FeedsReflector = b.flag("feeds_reflector")
-	if d.Handedness = b.sense("handedness"); d.Handedness == 0 {
+	if d.Handedness = b.sense("handedness"); !b.has("handedness") {
 		b.missing("handedness", "write right or left; a right-handed winding radiates right-hand circular forward")
 	}
 	if f := r.block(b.get("feed"), "feed", feedKeys...); f.there {

@@ -373,7 +373,7 @@ func (r *reader) exact(n *node, path string, d Dimension) (float64, bool) {
 		return 0, false
 	}
 	if n.kind != text && n.kind != number {
-		r.add(n.line, path, "is "+kindNames[n.kind], "write a "+dimensions[d].name+", for example "+dimensions[d].example)
+		r.add(n.line, path, "is "+kindNames[n.kind], "write "+dimensions[d].name+", for example "+dimensions[d].example)
 		return 0, false
 	}
 	x, waves, bad := parseQuantity(n.text, d, r.wavelengths)

@@ -55,7 +55,7 @@ func cased(name, scale string) unit {
 	return one
 }
 
-// dimensions holds, for each dimension, its name, an example that is right,
+// dimensions holds, for each dimension, its name with its article, an example that is right,
 // its units with the usual one first, and the spellings that are refused
 // because they read as another unit than the one that was surely meant.
 var dimensions = [dimensionCount]struct {
@@ -65,36 +65,36 @@ var dimensions = [dimensionCount]struct {
 	unclear map[string]string
 	bare    bool // a number alone is right
 }{
-	Length: {name: "length", example: "58 mm", units: []unit{
+	Length: {name: "a length", example: "58 mm", units: []unit{
 		u("mm", "1e-3"), u("m", "1"), u("cm", "1e-2"), u("um", "1e-6"), u("µm", "1e-6"), u("μm", "1e-6"), u("km", "1e3"),
 		u("in", "0.0254"), u("inch", "0.0254"), u("inches", "0.0254"), u("ft", "0.3048"),
 	}, unclear: map[string]string{"Mm": "mm", "M": "m", "Km": "km"}},
-	Frequency: {name: "frequency", example: "1.68 GHz", units: []unit{
+	Frequency: {name: "a frequency", example: "1.68 GHz", units: []unit{
 		u("GHz", "1e9"), u("MHz", "1e6"), u("kHz", "1e3"), u("Hz", "1"),
 	}, unclear: map[string]string{"mHz": "MHz"}},
-	Angle: {name: "angle", example: "13 deg", units: []unit{
+	Angle: {name: "an angle", example: "13 deg", units: []unit{
 		u("deg", "1"), u("degree", "1"), u("degrees", "1"), u("°", "1"), {name: "rad", scale: new(big.Rat).SetFloat64(180 / math.Pi)},
 	}},
-	Revolution:      {name: "number of turns", example: "0.25 turn", units: []unit{u("turn", "1"), u("turns", "1")}, bare: true},
-	Decibel:         {name: "level", example: "1.5 dB", units: []unit{u("dB", "1")}},
-	CircularDecibel: {name: "gain", example: "11.5 dBic", units: []unit{u("dBic", "1")}},
-	Impedance: {name: "impedance", example: "50 ohm", units: []unit{
+	Revolution:      {name: "a number of turns", example: "0.25 turn", units: []unit{u("turn", "1"), u("turns", "1")}, bare: true},
+	Decibel:         {name: "a level", example: "1.5 dB", units: []unit{u("dB", "1")}},
+	CircularDecibel: {name: "a gain", example: "11.5 dBic", units: []unit{u("dBic", "1")}},
+	Impedance: {name: "an impedance", example: "50 ohm", units: []unit{
 		u("ohm", "1"), u("ohms", "1"), u("Ω", "1"), u("Ω", "1"), cased("kohm", "1e3"), cased("kΩ", "1e3"),
 	}},
-	Power: {name: "power", example: "2 W", units: []unit{u("W", "1"), cased("mW", "1e-3"), u("kW", "1e3")}, unclear: map[string]string{"MW": "mW"}},
-	Time: {name: "time", example: "10 min", units: []unit{
+	Power: {name: "a power", example: "2 W", units: []unit{u("W", "1"), cased("mW", "1e-3"), u("kW", "1e3")}, unclear: map[string]string{"MW": "mW"}},
+	Time: {name: "a time", example: "10 min", units: []unit{
 		u("min", "60"), u("h", "3600"), u("s", "1"), u("ms", "1e-3"), u("d", "86400"), u("m", "60"),
 		u("hour", "3600"), u("hours", "3600"), u("minute", "60"), u("minutes", "60"), u("second", "1"), u("seconds", "1"), u("day", "86400"), u("days", "86400"),
 	}, unclear: map[string]string{"M": "min", "Ms": "ms", "MS": "ms"}},
-	Percent:      {name: "share", example: "10 %", units: []unit{u("%", "1"), u("percent", "1")}},
-	Conductivity: {name: "conductivity", example: "58 MS/m", units: []unit{cased("MS/m", "1e6"), cased("S/m", "1")}},
-	Density: {name: "density", example: "8.9 g/cm3", units: []unit{
+	Percent:      {name: "a share", example: "10 %", units: []unit{u("%", "1"), u("percent", "1")}},
+	Conductivity: {name: "a conductivity", example: "58 MS/m", units: []unit{cased("MS/m", "1e6"), cased("S/m", "1")}},
+	Density: {name: "a density", example: "8.9 g/cm3", units: []unit{
 		u("g/cm3", "1e3"), u("g/cm³", "1e3"), u("kg/m3", "1"), u("kg/m³", "1"),
 	}},
-	Mass: {name: "mass", example: "350 g", units: []unit{
+	Mass: {name: "a mass", example: "350 g", units: []unit{
 		u("g", "1e-3"), u("kg", "1"), cased("mg", "1e-6"), u("oz", "0.028349523125"), u("lb", "0.45359237"),
 	}, unclear: map[string]string{"Mg": "mg", "MG": "mg"}},
-	Plain: {name: "number", example: "2", bare: true},
+	Plain: {name: "a number", example: "2", bare: true},
 }
 
 // wavelength is the unit of lengths that a brief's band gives a size.
@@ -130,7 +130,7 @@ func duration(seconds float64) time.Duration {
 func parseQuantity(text string, d Dimension, wavelengths bool) (x float64, inWavelengths bool, bad *complaint) {
 	text = strings.TrimSpace(text)
 	if len(text) > mostText {
-		return 0, false, &complaint{quoted(text) + " is no " + dimensions[d].name, "write a " + dimensions[d].name + ", for example " + dimensions[d].example}
+		return 0, false, &complaint{quoted(text) + " is not " + dimensions[d].name, "write " + dimensions[d].name + ", for example " + dimensions[d].example}
 	}
 	if d == Time {
 		x, bad = parseTime(text)
@@ -142,7 +142,7 @@ func parseQuantity(text string, d Dimension, wavelengths bool) (x float64, inWav
 	}
 	if name == "" {
 		if !dimensions[d].bare {
-			return 0, false, &complaint{quoted(text) + " has no unit", "write a " + dimensions[d].name + " with its unit, for example " + dimensions[d].example}
+			return 0, false, &complaint{quoted(text) + " has no unit", "write " + dimensions[d].name + " with its unit, for example " + dimensions[d].example}
 		}
 		x, bad = scaled(number, big.NewRat(1, 1))
 		return x, false, bad
@@ -164,7 +164,7 @@ func parseQuantity(text string, d Dimension, wavelengths bool) (x float64, inWav
 
 // splitQuantity parts a number from its unit.
 func splitQuantity(text string, d Dimension) (number, name string, bad *complaint) {
-	example := "write a " + dimensions[d].name + ", for example " + dimensions[d].example
+	example := "write " + dimensions[d].name + ", for example " + dimensions[d].example
 	if c := commaShape.FindStringSubmatch(text); c != nil {
 		return "", "", &complaint{quoted(text) + " has a decimal comma", "write " + clip(c[1]+"."+c[2]+c[3]) + ", with a point"}
 	}
@@ -209,7 +209,7 @@ func findUnit(name string, d Dimension, wavelengths bool) (*unit, *complaint) {
 	if n := nearest(name, names); n != "" {
 		remedy = "did you mean " + n + "? Write for example " + info.example
 	}
-	return nil, &complaint{quoted(name) + " is no unit of a " + info.name, remedy}
+	return nil, &complaint{quoted(name) + " is no unit of " + info.name, remedy}
 }
 
 // Bounds on the text of a quantity and on its number, far outside anything

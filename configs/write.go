@@ -140,8 +140,10 @@ func (p *page) winding(d *models.Design, whole bool) {
 	if !whole {
 		f.Impedance = 0
 	}
-	if f != (models.Feed{}) {
-		p.block("feed", func() { p.feed(&f) })
+	inside := page{indent: p.indent + 1, varies: p.varies}
+	if inside.feed(&f); inside.b.Len() > 0 {
+		p.line("feed:")
+		p.b.Write(inside.b.Bytes())
 	}
 }
 
