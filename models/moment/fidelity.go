@@ -44,5 +44,5 @@ func (f Fidelity) settings() (settings, bool) {
 // many wavelengths long.
 func (s *settings) elements(turns, wavelengths float64) int {
 	n := max(s.turn*turns, s.wave*wavelengths)
-	return max(s.least, int(math.Ceil(n-1e-6)))
+	return max(s.least, int(math.Ceil(min(n, 1e9)-1e-6)))
 }

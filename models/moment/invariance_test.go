@@ -1,7 +1,6 @@
 package moment
 
 import (
-	"context"
 	"math"
 	"testing"
 
@@ -284,21 +283,4 @@ func TestMutualAdmittanceIsSymmetric(t *testing.T) {
 			}
 		}
 	}, metreWave)
-}
-
-// Cancelling does not keep a caller waiting for more than a frequency.
-func TestCancelledSweepSaysSo(t *testing.T) {
-	a := yagi(0.004, []float64{0.5, 0.46}, []float64{-0.2, 0})
-	ctx, cancel := context.WithCancel(context.Background())
-	seen := 0
-	err := Analyse(ctx, a, Draft, models.Band{From: 0.9 * metreWave, To: 1.1 * metreWave, Samples: 100}.Hz(), func(*Solution) error {
-		seen++
-		if seen == 3 {
-			cancel()
-		}
-		return nil
-	})
-	if err != context.Canceled || seen != 3 {
-		t.Errorf("cancelled at the third frequency: %d seen, %v", seen, err)
-	}
 }

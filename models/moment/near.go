@@ -52,10 +52,9 @@ func cleared[T float64 | complex128 | int](v []T, n int) []T {
 
 // pair is two elements of a mesh, the second perhaps mirrored in the plane.
 type pair struct {
-	m      *mesh
-	e, f   *element
-	image  bool
-	reduce bool // reduced kernel
+	m     *mesh
+	e, f  *element
+	image bool
 }
 
 // add accounts for the node (x on e, y on f) with weight w in x and y.
