@@ -76,6 +76,7 @@ const (
 	DefaultEvaluations = 4000
 	DefaultFidelity    = "standard"
 	defaultFront       = 200
+	defaultCone        = 15 // degrees
 	defaultSeed        = 1
 	mostEvaluations    = 1_000_000_000
 )
@@ -129,10 +130,11 @@ func (r *reader) brief(root *node) Brief {
 	s.Vary = r.vary(&b)
 	s.Aims = r.aims(&b)
 	s.Limits = r.limits(&b)
-	s.Cone = 15 * math.Pi / 180
-	if x, ok := b.quantity("cone", Angle, span{0.1, 90}); ok {
-		s.Cone = x * math.Pi / 180
+	cone, ok := b.quantity("cone", Angle, span{0.1, 90})
+	if !ok {
+		cone = defaultCone
 	}
+	s.Cone = cone * math.Pi / 180
 	s.TrustIndicative = b.flag("trust_indicative")
 	s.Margins = r.margins(&b)
 	br.Search = r.shares(&b)

@@ -102,25 +102,31 @@ func (r *reader) range_(v *block, q objectives.Quantity) (objectives.Vary, bool)
 // mostLevels bounds a stepped quantity.
 const mostLevels = 1_000_000
 
-// step notes a step that does not divide its range.
+// step notes a step that does not divide its range. What counts is what was
+// written: wavelengths were rounded to the grid each by itself, so the upper
+// end follows the rounded steps.
 func (r *reader) step(k *block, v *objectives.Vary) {
 	if v.Step <= 0 || v.To == v.From {
 		return
 	}
-	steps := (v.To - v.From) / v.Step
+	d := varied[v.Quantity].d
+	written := func(key string) float64 {
+		x, _ := r.exact(k.get(key), join(k.path, key), d)
+		return x
+	}
+	step := written("step")
+	steps := (written("to") - written("from")) / step
 	whole := math.Round(steps)
 	off := math.Abs(steps - whole)
-	if varied[v.Quantity].d == Length && whole >= 1 && off*v.Step <= 2e-6 {
-		// Wavelengths were rounded to the micrometre, each by itself.
-		v.To, off = onGrid(v.From+whole*v.Step, Length), 0
-	}
+	rounding := 1.5 / gridsPerUnit[d] // of two ends, and a little more
 	switch {
-	case whole < 1 || off > 1e-6*math.Max(1, whole):
-		d := varied[v.Quantity].d
+	case whole < 1 || off > 1e-6*math.Max(1, whole) && off*step > rounding:
 		below := v.From + math.Floor(steps)*v.Step
 		k.fault("step", "does not divide the way from "+show(v.From, d)+" to "+show(v.To, d), "let it end at "+show(onGrid(below, d), d)+" or "+show(onGrid(below+v.Step, d), d)+", or choose another step")
 	case whole > mostLevels:
 		k.fault("step", "makes more than a million values", "leave it away: without a step the quantity varies freely")
+	default:
+		v.To = onGrid(v.From+math.Round((v.To-v.From)/v.Step)*v.Step, d)
 	}
 }
 
