@@ -24,7 +24,7 @@ const (
 	roundBias = 0x1.8p52
 )
 
-// unit gives the cosine and sine of x for |x| < 1e6.
+// unit gives the cosine and sine of x for |x| < 5e4.
 func unit(x float64) (c, s float64) {
 	n := (x*partsPerRadian + roundBias) - roundBias
 	r := (x - n*partHigh) - n*partLow
