@@ -31,7 +31,7 @@ func (f *Fault) Error() string {
 	if f.Remedy != "" {
 		b.WriteString("; " + f.Remedy)
 	}
-	return b.String()
+	return plain(b.String())
 }
 
 // Error is everything that is wrong with a brief, a design or the settings

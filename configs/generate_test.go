@@ -5,7 +5,6 @@ import (
 	"strconv"
 	"strings"
 	"time"
-	"unicode"
 
 	"pgregory.net/rapid"
 
@@ -28,7 +27,7 @@ func words(t *rapid.T, what string) string {
 	letter := rapid.OneOf(rapid.SampledFrom([]rune(`ab 7:#'"\{}[],&*!|>%@-?~=`)), rapid.Rune())
 	s := rapid.StringOfN(letter, 0, 20, -1).Draw(t, what)
 	return strings.TrimSpace(strings.Map(func(c rune) rune {
-		if unicode.IsControl(c) {
+		if breaksLine(c) {
 			return -1
 		}
 		return c

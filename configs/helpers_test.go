@@ -151,14 +151,14 @@ func checkMessage(t testing.TB, f *Fault) {
 		parts = append(parts, f.File+":"+strconv.Itoa(f.Line)+": ")
 	}
 	for _, part := range parts {
-		if !strings.Contains(message, part) {
+		if !strings.Contains(message, plain(part)) {
 			t.Errorf("%q does not say %q", message, part)
 		}
 	}
 	if f.What == "" || f.Remedy == "" {
 		t.Errorf("%q lacks what is wrong or what would be right", message)
 	}
-	if strings.ContainsAny(message, "\n\x00\x1b") {
+	if strings.ContainsAny(message, "\n\x00\x1b\u009b\u2028\u202e") {
 		t.Errorf("%q is more than plain text on a line", message)
 	}
 }

@@ -66,6 +66,8 @@ func TestHostileFiles(t *testing.T) {
 		{"keys without end in YAML", YAML, keys(":"), "key0", "is no key here"},
 		{"keys without end in TOML", TOML, keys(" ="), "key2999", "is no key here"},
 		{"letters that steer a terminal", JSON, `{"title": "\u001b[2J", "sense": "\u0007\u001b]0;x\u0007"}`, "sense", "is not known here"},
+		{"letters that steer a terminal, in TOML", TOML, "\"\\u001b[2J\\n\" = 1\n\"\\u001b[2J\\n\" = 1\n", "", "is already defined"},
+		{"letters that turn a line about", YAML, `title: "a\u2028b"` + "\n" + `sense: "\u202eright"`, "sense", "is not known here"},
 		{"a NUL, escaped", YAML, `title: "a\0b"`, "title", "more than a line"},
 		{"a path of its own", YAML, "start_from: [/dev/null/own.yaml]\n", "", "cannot be looked at"},
 	} {

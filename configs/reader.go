@@ -13,6 +13,7 @@ import (
 	"sort"
 	"strconv"
 	"strings"
+	"unicode"
 	"unicode/utf8"
 )
 
@@ -263,12 +264,15 @@ func (b *block) name(key string) (string, bool) {
 		return "", false
 	}
 	s = strings.TrimSpace(s)
-	if utf8.RuneCountInString(s) > mostLetters || strings.ContainsFunc(s, func(c rune) bool { return c < ' ' || c == 0x7f }) {
+	if utf8.RuneCountInString(s) > mostLetters || strings.ContainsFunc(s, breaksLine) {
 		b.fault(key, "is too long, or more than a line", fmt.Sprintf("write at most %d letters on one line", mostLetters))
 		return "", false
 	}
 	return s, true
 }
+
+// breaksLine reports letters that are no part of a line of text.
+func breaksLine(c rune) bool { return unicode.In(c, unicode.Cc, unicode.Zl, unicode.Zp) }
 
 // choice is one of some words.
 func (b *block) choice(key string, words ...string) (string, bool) {

@@ -7,6 +7,7 @@ import (
 	"regexp"
 	"strings"
 	"time"
+	"unicode"
 )
 
 // Dimension is what a quantity measures; it decides the units it may have.
@@ -270,14 +271,19 @@ func quoted(text string) string { return `"` + clip(text) + `"` }
 
 // clip keeps a text that a person gave from filling the screen.
 func clip(text string) string {
-	runes := []rune(strings.ToValidUTF8(text, "?"))
-	for i, c := range runes {
-		if c < ' ' || c == 0x7f {
-			runes[i] = ' '
-		}
-	}
+	runes := []rune(plain(text))
 	if len(runes) > 40 {
 		return string(runes[:37]) + "…"
 	}
 	return string(runes)
+}
+
+// plain is a text on one line, without letters that steer a terminal.
+func plain(text string) string {
+	return strings.Map(func(c rune) rune {
+		if !unicode.IsPrint(c) {
+			return ' '
+		}
+		return c
+	}, strings.ToValidUTF8(text, "?"))
 }

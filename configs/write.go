@@ -187,13 +187,14 @@ type half struct {
 // pair writes two halves. One that is zero is written where the other is
 // there, and neither where it varies.
 func (p *page) pair(a, b half) []string {
+	a.value, b.value = onGrid(a.value, varied[a.q].d), onGrid(b.value, varied[b.q].d)
 	if a.value == 0 && b.value == 0 && !p.varies[a.q] && !p.varies[b.q] {
 		return nil
 	}
 	var parts []string
 	for _, h := range []half{a, b} {
 		if !p.varies[h.q] {
-			parts = append(parts, h.key+": "+rounded(h.value, varied[h.q].d))
+			parts = append(parts, h.key+": "+show(h.value, varied[h.q].d))
 		}
 	}
 	return parts
