@@ -96,12 +96,17 @@ func TestOpeningFieldAddsUpToTheVoltage(t *testing.T) {
 // antenna; the opening's width and the gap's are what differs.
 func TestOpeningSeesWhatAGapSees(t *testing.T) {
 	a := &Antenna{Plane: true, Wires: []Wire{upright(0, 0, 0.24, 1e-3, 12)}, Ports: []Port{{Kind: FrillPort}}}
-	var opening, gap, wide complex128
+	var opening, line, gap, wide complex128
 	solve(t, a, Fine, func(s *Solution) { opening = 1 / s.Admittance(0, 0) }, metreWave)
+	a.Ports[0].Ratio = 2.3 // of an air line of 60 ln 2.3 = 50 Ω
+	solve(t, a, Fine, func(s *Solution) { line = 1 / s.Admittance(0, 0) }, metreWave)
 	a.Ports[0].Ratio = 5
 	solve(t, a, Fine, func(s *Solution) { wide = 1 / s.Admittance(0, 0) }, metreWave)
 	a.Ports[0] = Port{Kind: GapPort, At: 0.004 / 0.24, Gap: 0.008}
 	solve(t, a, Fine, func(s *Solution) { gap = 1 / s.Admittance(0, 0) }, metreWave)
+	if line != opening {
+		t.Errorf("the standard opening sees %.4f Ω, one of ratio 2.3 %.4f", opening, line)
+	}
 	if apart(opening, gap) > 0.03 || apart(opening, wide) > 0.03 || opening == wide {
 		t.Errorf("opening %.2f Ω, wide opening %.2f, gap %.2f", opening, wide, gap)
 	}

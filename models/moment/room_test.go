@@ -54,7 +54,7 @@ func TestRoomIsLeftClean(t *testing.T) {
 	strip.Feed.Strip = models.Strip{Turns: 0.25, Width: 0.006}
 	coat := benchTaper(4)
 	coat.Insulation = models.Insulation{Thickness: 3e-4, Permittivity: 2.3}
-	designs := []models.Design{benchDesign(12), strip, coat, benchDesign(2), benchTaper(9), strip}
+	designs := []models.Design{benchDesign(12), strip, strip, coat, benchDesign(2), benchTaper(9), strip}
 	q := models.Question{Hz: []float64{0.97e9, 1e9, 1.02e9}, Outputs: models.Cuts | models.Spread | models.Balance}
 	used := newWorker()
 	for i := range designs {
