@@ -11,7 +11,6 @@ var (
 	turnCounts  = span{0.1, 1000}
 	frequencies = span{1e5, 1e12}
 	impedances  = span{0.1, 10000}
-	positive    = span{1e-30, 1e30}
 )
 
 // ReadDesign reads a design file. What is wrong with it is an [Error].

@@ -138,6 +138,7 @@ func TestFaultsOfWhatVaries(t *testing.T) {
 		{"the other half of a strip", []string{"  conductor: stock\n", "  conductor: stock\n  strip_width: {from: 3 mm, to: 6 mm}\n"},
 			one(27, "vary.strip_turns", "is missing: a strip has turns and width", "design.feed.strip.turns")},
 		{"a riser too short", []string{"{from: 4 mm, to: 12 mm}", "{from: 1 mm, to: 1.5 mm}"}, one(27, "vary.feed_height.to", "leaves no riser that any conductor can have", "2.5 radii")},
+		{"a fixed riser too short", []string{"  feed_height: {from: 4 mm, to: 12 mm}\n", "", "    pin: 1.27 mm\n", "    height: 1.4 mm\n"}, one(32, "design.feed.height", "is too low for every conductor", "2.5 radii")},
 		{"a rim without a cup", []string{"{kind: cup, diameter: 150 mm}", "{kind: disc, diameter: 150 mm}"}, one(28, "vary.ground_rim", "varies, but the ground is disc", "{kind: cup}")},
 		{"a cup without a size", []string{"{kind: cup, diameter: 150 mm}", "{kind: cup}"}, one(9, "ground.diameter", "is missing", "200 mm")},
 		{"a ground of no kind", []string{"{kind: cup, diameter: 150 mm}", "{diameter: 150 mm}"},

@@ -143,7 +143,7 @@ func checkFaults(t testing.TB, err error, file string, want ...expected) {
 
 // checkMessage sees to it that what a person reads names file, line, key and
 // remedy, on one line.
-func checkMessage(t testing.TB, f *Fault) {
+func checkMessage(t failer, f *Fault) {
 	t.Helper()
 	message := f.Error()
 	parts := []string{f.File, f.Key, f.What, f.Remedy}

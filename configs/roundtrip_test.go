@@ -20,6 +20,7 @@ import (
 // failer is what both kinds of test have to fail with.
 type failer interface {
 	Helper()
+	Errorf(format string, a ...any)
 	Fatalf(format string, a ...any)
 }
 
@@ -196,7 +197,7 @@ stock = "AWG 12 copper"
 	}
 }
 
-func allFaults(t testing.TB, err error) []Fault {
+func allFaults(t failer, err error) []Fault {
 	t.Helper()
 	var e *Error
 	if !errors.As(err, &e) {

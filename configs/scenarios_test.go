@@ -58,6 +58,17 @@ aims: [{figure: gain, want: most}]
 	rereadBrief(t, br, "b.yaml")
 }
 
+// A lead and a line section that vary whole have a shape and a velocity all
+// the same.
+func TestDefaultsOfTheFeed(t *testing.T) {
+	br := readBrief(t, edit(t, soundBrief,
+		"    lead: {turns: 0.5, spacing: 8 mm}\n    transformer: {impedance: 85 ohm, length: 44 mm}\n", "",
+		"  conductor: stock\n", "  conductor: stock\n  lead_turns: {from: 0, to: 1}\n  lead_spacing: {from: 0 mm, to: 9 mm}\n  transformer_impedance: {from: 60 ohm, to: 90 ohm}\n  transformer_length: {from: 0 mm, to: 50 mm}\n"), YAML)
+	equal(t, "lead", br.Spec.Base.Feed.Lead, models.Lead{Shape: models.Ramp})
+	equal(t, "transformer", br.Spec.Base.Feed.Transformer, models.Transformer{Velocity: 1})
+	rereadBrief(t, br, "b.yaml")
+}
+
 // One frequency is a band of its own.
 func TestOneFrequency(t *testing.T) {
 	for _, band := range []string{"{from: 1.68 GHz, to: 1.68 GHz}", "{from: 1.68 GHz, to: 1680 MHz, samples: 1}"} {
