@@ -27,8 +27,10 @@ func answer(ctx context.Context, ev Evaluator, c Candidate, limit time.Duration)
 	}
 	switch {
 	case err == nil:
-	case errors.Is(err, context.DeadlineExceeded) && ctx.Err() == nil:
+	case mine.Err() != nil && ctx.Err() == nil:
 		e.Status, e.Err = TimedOut, fmt.Sprintf("not answered within %v", limit)
+	case errors.Is(err, context.DeadlineExceeded) && ctx.Err() == nil:
+		e.Status, e.Err = TimedOut, err.Error() // a time limit of the model's own
 	default:
 		e.Status, e.Err = Failed, err.Error()
 	}

@@ -51,6 +51,7 @@ func check(ctx context.Context, s streams, path, lasting string) error {
 	if err != nil {
 		return wrong(fmt.Errorf("%s: %w", path, err))
 	}
+	defer closeModels(p)
 	w := s.out
 	fmt.Fprintf(w, "%s: nothing is wrong\n\n", path)
 	describeBrief(w, &b, p)

@@ -86,7 +86,7 @@ func rank(ctx context.Context, f folder.Folder, own configs.Brief, path string) 
 	}
 	spec := own.Spec
 	spec.Aims, spec.Limits, spec.TrustIndicative = other.Spec.Aims, other.Spec.Limits, other.Spec.TrustIndicative
-	p, err := newProblem(own, spec)
+	p, err := unaskedProblem(own, spec)
 	if err != nil {
 		return nil, nil, err
 	}

@@ -13,6 +13,8 @@ import (
 	"syscall"
 
 	"golang.org/x/term"
+
+	"turnwise/models/external"
 )
 
 // streams are where a command reads and writes. Results go to out alone,
@@ -24,6 +26,7 @@ type streams struct {
 }
 
 func main() {
+	external.Guard()
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM, syscall.SIGHUP)
 	// The first signal asks the search to finish; after it the signals are
 	// the system's again, so that a second one ends the program at once.

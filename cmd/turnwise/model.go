@@ -1,11 +1,14 @@
 package main
 
 import (
+	"context"
 	"errors"
 	"fmt"
+	"io"
 
 	"turnwise/configs"
 	"turnwise/models/closedform"
+	"turnwise/models/external"
 	"turnwise/models/moment"
 	"turnwise/objectives"
 )
@@ -31,7 +34,7 @@ func newRung(model, fidelity string) (objectives.Rung, error) {
 		solver, err := moment.New(moment.Fidelity(fidelity))
 		return objectives.Rung{Simulator: solver, Model: model, Fidelity: fidelity}, err
 	case configs.ExternalModel:
-		return objectives.Rung{}, fmt.Errorf("model %s %w; write model: full-wave", model, errNotYet)
+		return objectives.Rung{}, errors.New("an external model is named by a brief (model: {external: [program, argument]}); write full-wave or closed-form here")
 	}
 	return objectives.Rung{}, fmt.Errorf("--model %s: there is no such model; write full-wave or closed-form", model)
 }
@@ -44,9 +47,45 @@ func newProblem(b configs.Brief, spec objectives.Spec) (*objectives.Problem, err
 	if spec.Margins.Percentile > 0 {
 		return nil, fmt.Errorf("margins: a percentile %w; write at: worst", errNotYet)
 	}
+	if b.Ladder[0].Model == configs.ExternalModel {
+		return externalProblem(b, spec)
+	}
 	rung, err := newRung(b.Ladder[0].Model, b.Ladder[0].Fidelity)
 	if err != nil {
 		return nil, err
 	}
 	return objectives.NewProblem(spec, rung)
+}
+
+// mostPrograms bounds the processes of an external model; no more are started
+// than there are questions at a time.
+const mostPrograms = 4096
+
+// externalProblem starts the program that a brief names.
+func externalProblem(b configs.Brief, spec objectives.Spec) (*objectives.Problem, error) {
+	program, err := external.Start(context.Background(), b.External.Command, external.Options{Workers: mostPrograms, Timeout: b.External.Timeout})
+	if err != nil {
+		return nil, fmt.Errorf("model.external: %w", err)
+	}
+	p, err := objectives.NewProblem(spec, objectives.Rung{Simulator: program, Model: configs.ExternalModel, Indicative: program.Indicative()})
+	if err != nil {
+		program.Close()
+	}
+	return p, err
+}
+
+// closeModels ends what the models of a problem have started.
+func closeModels(p *objectives.Problem) {
+	if p == nil {
+		return
+	}
+	if c, ok := p.Finest().Simulator.(io.Closer); ok {
+		c.Close()
+	}
+}
+
+// unaskedProblem is a problem for ranking what was answered already.
+func unaskedProblem(b configs.Brief, spec objectives.Spec) (*objectives.Problem, error) {
+	r := b.Ladder[len(b.Ladder)-1]
+	return objectives.NewProblem(spec, objectives.Rung{Model: r.Model, Fidelity: r.Fidelity, Indicative: r.Model == configs.ClosedForm})
 }

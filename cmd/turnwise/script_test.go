@@ -9,10 +9,13 @@ import (
 	"time"
 
 	"github.com/rogpeppe/go-internal/testscript"
+
+	"turnwise/models/external"
 )
 
 func TestMain(m *testing.M) {
-	testscript.Main(m, map[string]func(){"turnwise": main})
+	external.Guard()
+	testscript.Main(m, map[string]func(){"turnwise": main, "slowmodel": slowModel})
 }
 
 // Every script is what a user does, told by its file's name.

@@ -261,8 +261,9 @@ func sum(ns []int) int {
 	return total
 }
 
-// close lets go of the journals and the lock.
+// close lets go of the models, the journals and the lock.
 func (ses *session) close() {
+	closeModels(ses.problem)
 	for _, r := range ses.others {
 		r.Close()
 	}
