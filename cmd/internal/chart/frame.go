@@ -22,14 +22,14 @@ const (
 // nothing has to be read sideways, the given rows over that; x's label under
 // it.
 func newFrame(w, h float64, x, y Axis, rows int) frame {
-	ticks, decimals := Ticks(y.Min, y.Max, yTicks)
+	ticks, decimals := y.ticks(yTicks)
 	widest := 0.0
 	for _, t := range ticks {
 		widest = math.Max(widest, textWidth(tickText(t, decimals), tickSize))
 	}
 	return frame{x: x, y: y,
 		left: edge + widest + tickRoom, right: w - edge - 8,
-		bottom: edge + 2*rowHeight, top: h - edge - rowHeight*float64(1+rows) - 1,
+		bottom: edge + 2*rowHeight, top: h - edge - rowHeight*float64(1+rows) - 4,
 	}
 }
 
@@ -49,8 +49,8 @@ func (f frame) place(x, y float64) at {
 
 // draw rules the frame, its grid and its axes.
 func (f frame) draw(b brush) {
-	xs, xd := Ticks(f.x.Min, f.x.Max, xTicks)
-	ys, yd := Ticks(f.y.Min, f.y.Max, yTicks)
+	xs, xd := f.x.ticks(xTicks)
+	ys, yd := f.y.ticks(yTicks)
 	b.stroke(hairline, grid, nil)
 	for _, x := range xs {
 		b.line(f.place(x, f.y.Min), f.place(x, f.y.Max))
@@ -67,7 +67,7 @@ func (f frame) draw(b brush) {
 		b.text(tickText(y, yd), at{f.left - tickRoom, f.place(0, y).y - tickSize*0.35}, tickSize, right, quiet)
 	}
 	b.text(f.x.Label, at{(f.left + f.right) / 2, edge}, textSize, centre, ink)
-	b.text(f.y.Label, at{edge, f.top + 6}, textSize, left, ink)
+	b.text(f.y.Label, at{edge, f.top + 8}, textSize, left, ink)
 }
 
 // shade tints the frame between two values of x.

@@ -89,6 +89,7 @@ func (p *Polar) Draw(c vg.Canvas) {
 		b.stroke(strong, n.tone, n.dash)
 		b.line(points...)
 	}
+	p.levels(b, o)
 	b.text("dB below the rim, against the angle from the axis, °", at{w / 2, edge + rowHeight}, textSize, centre, ink)
 	b.text(p.Rim, at{w / 2, edge}, tickSize, centre, quiet)
 	g.draw(b, at{edge, h - edge - textSize*0.75})
@@ -119,11 +120,20 @@ func (p *Polar) rule(b brush, o at) {
 		text := strconv.Itoa(max(angle, -angle))
 		b.text(text+"°", at{o.x + (radius+5)*sin, o.y + (radius+7)*cos - tickSize*0.35}, tickSize, align(0.5-0.5*sin), quiet)
 	}
+	p.sides(b, o)
+}
+
+// levels name the rings.
+func (p *Polar) levels(b brush, o at) {
 	for level := -10.0; level > p.Floor; level -= 10 {
-		r := radius * PolarRadius(level, p.Floor)
+		r := p.radius() * PolarRadius(level, p.Floor)
 		b.haloed(tickText(level, 0), at{o.x + 3 + r*0.26, o.y + r*0.966 - tickSize*0.35}, 9, centre, quiet)
 	}
-	y := o.y - polarFoot
+}
+
+// sides name the half-planes.
+func (p *Polar) sides(b brush, o at) {
+	radius, y := p.radius(), o.y-polarFoot
 	if p.half() {
 		b.text(p.Sides[0], at{o.x - radius, y}, tickSize, left, quiet)
 		b.text(p.Sides[1], at{o.x + radius, y}, tickSize, right, quiet)

@@ -50,10 +50,13 @@ func ReactanceCircle(x float64) Circle { return Circle{1, 1 / x, math.Abs(1 / x)
 // VSWRRadius is |Γ| of a VSWR.
 func VSWRRadius(vswr float64) float64 { return (vswr - 1) / (vswr + 1) }
 
+// Room around the unit circle, for the reactances.
 const (
-	smithHeight = 332.0
-	smithRoom   = 26.0 // around the unit circle, for the reactances
+	smithBeside = 28.0
+	smithAbove  = 17.0
 )
+
+const smithRadius = Small/2 - edge - smithBeside
 
 // arcPoints is the number of straight pieces of an arc of equal reactance.
 const arcPoints = 48
@@ -63,7 +66,7 @@ var smithParts = []float64{0.2, 0.5, 1, 2, 5}
 
 // Size implements Figure.
 func (s *Smith) Size() (w, h float64) {
-	return Small, smithHeight + rowHeight*float64(s.legend().rows())
+	return Small, 2*edge + 2*(smithAbove+smithRadius) + rowHeight*float64(1+s.legend().rows())
 }
 
 func (s *Smith) legend() *legend {
@@ -88,12 +91,11 @@ func (s *Smith) Draw(c vg.Canvas) {
 	b := brush{c}
 	w, h := s.Size()
 	g := s.legend()
-	radius := w/2 - edge - smithRoom
-	o := at{w / 2, edge + smithRoom + rowHeight + radius}
-	place := func(gamma complex128) at { return at{o.x + radius*real(gamma), o.y + radius*imag(gamma)} }
-	s.rule(b, o, radius, place)
+	o := at{w / 2, edge + rowHeight + smithAbove + smithRadius}
+	place := func(gamma complex128) at { return at{o.x + smithRadius*real(gamma), o.y + smithRadius*imag(gamma)} }
+	s.rule(b, o, smithRadius, place)
 	if s.VSWR > 1 {
-		r := radius * VSWRRadius(s.VSWR)
+		r := smithRadius * VSWRRadius(s.VSWR)
 		b.stroke(1.4, alarm, []vg.Length{4, 3})
 		b.arc(o, r, 0, 2*math.Pi)
 		b.haloed(s.Label, at{o.x, o.y + r + 3}, tickSize, centre, alarm)
@@ -163,7 +165,7 @@ func (t *Trace) draw(b brush, p pen, reference float64, place func(complex128) a
 	b.line(inside...)
 	for k, at := range []at{inside[0], inside[len(inside)/2], inside[len(inside)-1]} {
 		if k == 1 || len(inside) > 1 {
-			b.mark(bandMarks[k], at, 4, p.tone, k == 1)
+			b.mark(bandMarks[k], at, 3.4, p.tone, k == 1)
 		}
 	}
 }

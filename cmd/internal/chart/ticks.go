@@ -10,6 +10,17 @@ import (
 type Axis struct {
 	Label    string
 	Min, Max float64
+	// Step is the distance of the ticks where the round ones are not those
+	// that suit, as with angles; 0 else.
+	Step float64
+}
+
+// ticks are the axis's own, at most most of them where it leaves the choice.
+func (a Axis) ticks(most int) (ticks []float64, decimals int) {
+	if a.Step <= 0 {
+		return Ticks(a.Min, a.Max, most)
+	}
+	return multiples(a.Min, a.Max, a.Step), 0
 }
 
 // Ticks gives round numbers from the axis's least to its greatest value, at
@@ -17,10 +28,16 @@ type Axis struct {
 // them apart. Their distance is 1, 2 or 5 times a power of ten.
 func Ticks(low, high float64, most int) (ticks []float64, decimals int) {
 	step := tickStep(high-low, most)
+	return multiples(low, high, step), max(0, -int(math.Floor(math.Log10(step)+1e-9)))
+}
+
+// multiples of a step from low to high.
+func multiples(low, high, step float64) []float64 {
+	var ticks []float64
 	for n := math.Ceil(low/step - 1e-9); n*step <= high+1e-9*step; n++ {
 		ticks = append(ticks, n*step)
 	}
-	return ticks, max(0, -int(math.Floor(math.Log10(step)+1e-9)))
+	return ticks
 }
 
 // tickStep is the smallest round step of which at most most ticks fit.
@@ -50,13 +67,13 @@ func Around(label string, values ...float64) Axis {
 	}
 	switch {
 	case low > high:
-		return Axis{label, 0, 1}
+		return Axis{Label: label, Max: 1}
 	case high-low < 1e-9*math.Max(math.Abs(low), 1e-3):
 		room := math.Max(math.Abs(low)*0.05, 1e-3)
 		low, high = low-room, high+room
 	}
 	step := tickStep(high-low, 6)
-	return Axis{label, math.Floor(low/step+1e-9) * step, math.Ceil(high/step-1e-9) * step}
+	return Axis{Label: label, Min: math.Floor(low/step+1e-9) * step, Max: math.Ceil(high/step-1e-9) * step}
 }
 
 // tickText writes a tick with a true minus sign.

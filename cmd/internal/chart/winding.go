@@ -96,33 +96,27 @@ func (v SideView) Draw(c vg.Canvas) {
 
 // strands draws the far side first, then the near one over it.
 func (v SideView) strands(b brush, place func([3]float64) at, s float64) {
-	for pass, tone := range []struct{ near bool }{{false}, {true}} {
-		var run []at
-		draw := func() {
-			if len(run) > 1 {
-				if pass == 0 {
-					b.stroke(v.wireWidth(s), rule, nil)
-				} else {
-					b.stroke(v.wireWidth(s)+1.6, paper, nil)
-					b.line(run...)
-					b.stroke(v.wireWidth(s), ink, nil)
-				}
-				b.line(run...)
-			}
-			run = nil
+	for _, near := range []bool{false, true} {
+		tone := rule
+		if near {
+			tone = ink
 		}
+		var run []at
 		for i := 1; i < len(v.Wire); i++ {
 			p, q := v.Wire[i-1], v.Wire[i]
-			if (p[1]+q[1] >= -1e-9) != tone.near {
-				draw()
-				continue
+			if (p[1]+q[1] >= -1e-9) == near {
+				if len(run) == 0 {
+					run = append(run, place(p))
+				}
+				run = append(run, place(q))
+				if i < len(v.Wire)-1 {
+					continue
+				}
 			}
-			if len(run) == 0 {
-				run = append(run, place(p))
-			}
-			run = append(run, place(q))
+			b.stroke(v.wireWidth(s), tone, nil)
+			b.line(run...)
+			run = nil
 		}
-		draw()
 	}
 }
 
