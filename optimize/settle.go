@@ -3,6 +3,7 @@ package optimize
 import (
 	"context"
 	"sync"
+	"time"
 
 	"turnwise/optimize/front"
 )
@@ -45,6 +46,7 @@ const (
 type SettleOptions struct {
 	Most     int
 	Workers  int
+	Grace    time.Duration // for what runs when ctx ends; 0: 30 s
 	Kept     func(Evaluation) error
 	Progress func(done, of, round int)
 }
@@ -52,8 +54,9 @@ type SettleOptions struct {
 // Settle turns all evaluations of a search into its final front: the front
 // is thinned to its most telling members, those not yet confirmed are, all
 // are ranked again, and so on until every member is confirmed. The result
-// does not depend on the number of workers. When ctx ends, the front as it
-// stands comes back with ctx's error.
+// does not depend on the number of workers. When ctx ends, nothing new is
+// begun, what runs is finished within the grace, and the front as it stands
+// comes back with ctx's error.
 func Settle(ctx context.Context, all []Evaluation, confirm Confirmer, o SettleOptions) (Settled, error) {
 	s := settling{
 		all:    append([]Evaluation(nil), all...),
@@ -105,6 +108,8 @@ func (s *settling) open(members []int) (todo []int, to check) {
 
 // confirm answers one round and takes it in, in candidate order.
 func (s *settling) confirm(ctx context.Context, confirm Confirmer, todo []int, to check, round int) error {
+	hard, cancel := lingering(ctx, s.o.Grace)
+	defer cancel()
 	answers := make([]Evaluation, len(todo))
 	whole := evaluatorFunc(func(ctx context.Context, c Candidate) (Score, error) { return confirm(ctx, c, to == complete) })
 	var (
@@ -125,7 +130,7 @@ func (s *settling) confirm(ctx context.Context, confirm Confirmer, todo []int, t
 	give := func(k int, e Evaluation) {
 		mu.Lock()
 		defer mu.Unlock()
-		if ctx.Err() != nil && e.Status != OK {
+		if hard.Err() != nil {
 			return // cut off, not answered
 		}
 		if s.o.Kept != nil && fault == nil {
@@ -140,7 +145,7 @@ func (s *settling) confirm(ctx context.Context, confirm Confirmer, todo []int, t
 	for range max(1, min(s.o.Workers, len(todo))) {
 		wg.Go(func() {
 			for k := take(); k >= 0; k = take() {
-				give(k, answer(ctx, whole, s.all[todo[k]].Candidate, 0))
+				give(k, answer(hard, whole, s.all[todo[k]].Candidate, 0))
 			}
 		})
 	}
@@ -178,3 +183,19 @@ func (s *settling) settled(members []int) Settled {
 type evaluatorFunc func(context.Context, Candidate) (Score, error)
 
 func (f evaluatorFunc) Evaluate(ctx context.Context, c Candidate) (Score, error) { return f(ctx, c) }
+
+// lingering is a context that ends a grace after ctx does.
+func lingering(ctx context.Context, grace time.Duration) (context.Context, context.CancelFunc) {
+	if grace <= 0 {
+		grace = defaultGrace
+	}
+	hard, cancel := context.WithCancel(context.WithoutCancel(ctx))
+	stop := context.AfterFunc(ctx, func() {
+		timer := time.AfterFunc(grace, cancel)
+		context.AfterFunc(hard, func() { timer.Stop() })
+	})
+	return hard, func() {
+		stop()
+		cancel()
+	}
+}

@@ -36,10 +36,13 @@ func wrong(err error) error {
 
 func wrongf(format string, a ...any) error { return wrong(fmt.Errorf(format, a...)) }
 
-// failed is an error while running.
+// failed is an error while running; one that a signal brought about is none.
 func failed(err error) error {
 	if err == nil {
 		return nil
+	}
+	if errors.Is(err, context.Canceled) {
+		return &coded{code: exitStopped, err: errors.New("stopped by a signal")}
 	}
 	return &coded{code: exitFailed, err: err}
 }
