@@ -1,6 +1,7 @@
 package moment
 
 import (
+	"context"
 	"math"
 	"testing"
 
@@ -134,4 +135,27 @@ func TestInputIsBehindTheTransformer(t *testing.T) {
 	if want := 85 * 85 / bare.Port; apart(behind.Input, want) > 1e-9 { // a quarter wave
 		t.Errorf("behind a quarter wave of 85 Ω %.6g Ω; %.6g is due", behind.Input, want)
 	}
+}
+
+// A wide cone holds the null beside the main lobe, which its rim does not.
+func TestConeIsLookedAtInside(t *testing.T) {
+	const half = 1.0
+	d := benchDesign(8)
+	s, err := New(Standard)
+	if err != nil {
+		t.Fatal(err)
+	}
+	r, err := s.Simulate(context.Background(), d, models.Question{Hz: []float64{1e9}, Outputs: models.Cone, Cone: half})
+	if err != nil {
+		t.Fatal(err)
+	}
+	solve(t, wound(t, d, Standard, 1e9), Standard, func(s *Solution) {
+		rim := math.Inf(1)
+		for p := range coneAzimuths {
+			rim = min(rim, s.Intensity(half, 2*math.Pi*float64(p)/coneAzimuths).Right*4*math.Pi/s.Accepted())
+		}
+		if got := r.Samples[0].EdgeGain.Right; decibels(got/rim) > -1 {
+			t.Errorf("least gain in the cone %.2f dB, on its rim %.2f; at least 1 dB less is due", decibels(got), decibels(rim))
+		}
+	}, 1e9)
 }
