@@ -345,7 +345,7 @@ func (ses *session) run(ctx context.Context) error {
 	show.end()
 	if err != nil {
 		ses.stop(r, time.Since(began), false)
-		return failed(fmt.Errorf("%w; everything recorded is kept, and goes on with: %s", err, ses.goOn()))
+		return failed(fmt.Errorf("%w; to go on: %s", err, ses.goOn()))
 	}
 	if !r.Reason.Final() {
 		return ses.interrupted(r, time.Since(began))
