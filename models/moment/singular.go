@@ -86,6 +86,11 @@ func between(lo, hi float64, n int, do func(u, w float64)) {
 // along f, nodes spread by the distance from the foot of the perpendicular,
 // y − y0 = b sinh v.
 func (s *static) aside(p *pair, reduce bool) {
+	if p.e.length > p.f.length {
+		s.aside(&pair{m: p.m, e: p.f, f: p.e, image: p.image}, reduce)
+		s.mom.transpose()
+		return
+	}
 	set := &p.m.set
 	outer := &legendre[set.smooth+1]
 	inner := &legendre[set.graded]
@@ -173,4 +178,15 @@ func (p *pair) foot(at *vec) (y, d2 float64) {
 		best, d2 = y, d
 	}
 	return best, d2
+}
+
+// transpose exchanges x and y.
+func (m *moments) transpose() {
+	for _, a := range [...]*[maxOrder][maxOrder]float64{&m.current0, &m.current1, &m.charge0, &m.charge1} {
+		for i := range a {
+			for j := range i {
+				a[i][j], a[j][i] = a[j][i], a[i][j]
+			}
+		}
+	}
 }
