@@ -37,6 +37,7 @@ type session struct {
 	lock    *journal.Held
 	book    *journal.Writer
 	others  []*journal.Reader // runs whose answers may be reused
+	asks    bool              // of the journal: an answer may be on record
 	planned []int             // of the run, then of each extension
 	past    []optimize.Evaluation
 	used    time.Duration // by earlier sessions
@@ -152,6 +153,7 @@ func (ses *session) reopen(c *cobra.Command, o searchOptions) error {
 	if dir == "" {
 		return wrongf("--resume needs to know the run: name its folder with --run")
 	}
+	ses.asks = true
 	var err error
 	if ses.folder, err = folder.Open(dir); err != nil {
 		return wrong(err)
@@ -288,13 +290,18 @@ func (ses *session) reuse(dirs []string) error {
 			return wrong(fmt.Errorf("--reuse: %w", err))
 		}
 		ses.others = append(ses.others, r)
+		ses.asks = true
 	}
 	return nil
 }
 
 // Recall finds an answer in the journal, or in those of other runs; the
-// problem's memory.
+// problem's memory. While a new run searches there is nothing to find: the
+// loop asks no point twice.
 func (ses *session) Recall(key string) ([]byte, bool) {
+	if !ses.asks {
+		return nil, false
+	}
 	if a, ok, err := ses.book.Answer(context.Background(), key); ok && err == nil {
 		return a.Response, true
 	}
@@ -455,6 +462,7 @@ func (ses *session) interrupted(r optimize.Result, took time.Duration) error {
 // finish settles the front, writes it and says what was found.
 func (ses *session) finish(ctx context.Context, r optimize.Result, began time.Time) error {
 	show := newProgress(ses.s)
+	ses.asks = true
 	settled, err := optimize.Settle(ctx, r.Evaluations, ses.confirm, optimize.SettleOptions{
 		Most: ses.brief.FrontAtMost, Workers: ses.set.Workers,
 		Kept: func(e optimize.Evaluation) error { return ses.book.RecordFinal([]optimize.Evaluation{e}) },
