@@ -12,6 +12,7 @@ import (
 // Bounds of what is taken for an antenna at all; outside them a dimension is
 // a slip of the pen.
 const (
+	leastTurns = 1e-3
 	mostTurns  = 1000
 	mostKnots  = 64
 	mostLength = 1e3  // m
@@ -66,8 +67,8 @@ func (f *faults) winding(d *models.Design) {
 	switch {
 	case bad(d.Turns) || d.Turns <= 0:
 		f.add("turns", "%s cannot be wound; a number above zero is due, such as 8.25", text(d.Turns))
-	case d.Turns < 1e-3 || d.Turns > mostTurns:
-		f.add("turns", "%s is no antenna; from 0.001 to %d is due, such as 8.25", text(d.Turns), mostTurns)
+	case d.Turns < leastTurns || d.Turns > mostTurns:
+		f.add("turns", "%s is no antenna; from %g to %d is due, such as 8.25", text(d.Turns), leastTurns, mostTurns)
 	}
 	f.law("diameter", d.Diameter, "58 mm")
 	f.law("spacing", d.Spacing, "34 mm")
@@ -141,7 +142,7 @@ func (f *faults) feed(d *models.Feed, turns float64) {
 		f.lead(&d.Lead, turns)
 	}
 	if t := d.Strip.Turns; t != 0 {
-		if f.span("feed.strip.turns", t, 0, mostTurns, "", "0.25") && t > turns {
+		if f.span("feed.strip.turns", t, leastTurns, mostTurns, "", "0.25") && t > turns {
 			f.add("feed.strip.turns", "%s is more than the winding's %s turns; at most that is due", text(t), text(turns))
 		}
 		f.size("feed.strip.width", d.Strip.Width, "5 mm")
@@ -150,7 +151,7 @@ func (f *faults) feed(d *models.Feed, turns float64) {
 }
 
 func (f *faults) lead(l *models.Lead, turns float64) {
-	sound := f.span("feed.lead.turns", l.Turns, 0, mostTurns, "", "0.5")
+	sound := f.span("feed.lead.turns", l.Turns, leastTurns, mostTurns, "", "0.5")
 	f.span("feed.lead.spacing", l.Spacing, 0, mostLength, " m", "8 mm")
 	need := l.Turns
 	switch l.Shape {
@@ -183,6 +184,9 @@ func (f *faults) transformer(t *models.Transformer) {
 // ground also demands that the parts do not touch where they must not.
 func (f *faults) ground(d *models.Design) {
 	g := &d.Ground
+	if pin := d.PinDiameter(); len(d.Diameter) > 0 && pin >= d.Diameter[0] && d.Diameter[0] >= leastSize {
+		f.add("feed.pin", "the riser is %s m thick and the winding %s m wide where it starts; a thinner one is due", text(pin), text(d.Diameter[0]))
+	}
 	if h, c := d.Feed.Height, d.Conductor.Diameter; d.Feed.Strip.Turns == 0 && h >= leastSize && c >= leastSize && h <= c/2 {
 		f.add("feed.height", "at %s m a conductor %s m thick touches the plane; more than half its diameter is due", text(h), text(c))
 	}

@@ -1,6 +1,9 @@
 package moment
 
-import "math"
+import (
+	"context"
+	"math"
+)
 
 // block is the most frequencies that are filled at once.
 const block = 8
@@ -131,9 +134,13 @@ func (g *grid) slots(m *mesh) int {
 
 // fill adds the grid's part of the matrices at wave numbers k, at most block
 // of them, to z: lower triangles, row m of length functions. Where the wave
-// numbers are evenly spaced, step is their difference; else it is 0.
-func (g *grid) fill(m *mesh, k []float64, step float64, z [][]complex128) {
+// numbers are evenly spaced, step is their difference; else it is 0. It stops
+// between rows when ctx ends.
+func (g *grid) fill(ctx context.Context, m *mesh, k []float64, step float64, z [][]complex128) error {
 	for i := range m.elements {
+		if err := ctx.Err(); err != nil {
+			return err
+		}
 		e := &m.elements[i]
 		columns := g.columns(m, e)
 		g.distances(m, e, columns)
@@ -144,6 +151,7 @@ func (g *grid) fill(m *mesh, k []float64, step float64, z [][]complex128) {
 		}
 		g.complete(m, i, k, z)
 	}
+	return nil
 }
 
 // columns is how many grid points a row of elements needs: up to the last

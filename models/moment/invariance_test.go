@@ -219,7 +219,9 @@ func TestSteppedPhasesAreTheDirectOnes(t *testing.T) {
 		for range k {
 			z = append(z, make([]complex128, n*n))
 		}
-		w.grid.fill(&w.mesh, k, step, z)
+		if err := w.grid.fill(t.Context(), &w.mesh, k, step, z); err != nil {
+			t.Fatal(err)
+		}
 		return z
 	}
 	stepped, direct := fill(step), fill(0)

@@ -63,7 +63,9 @@ func prepared(t testing.TB, a *Antenna, f Fidelity, hz float64, both bool) (*wor
 	n := w.mesh.functions
 	w.hz, w.wave = hz, wave(hz)
 	z := make([]complex128, n*n)
-	w.grid.fill(&w.mesh, []float64{w.wave}, 0, [][]complex128{z})
+	if err := w.grid.fill(t.Context(), &w.mesh, []float64{w.wave}, 0, [][]complex128{z}); err != nil {
+		t.Fatal(err)
+	}
 	w.complete(z)
 	if !both {
 		for i := range n {

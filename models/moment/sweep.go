@@ -92,7 +92,9 @@ func (w *work) block(ctx context.Context, hz []float64, at, count int, v visitor
 		w.k = append(w.k, wave(hz[at+f]))
 		w.z[f] = cleared(w.z[f], n*n)
 	}
-	w.grid.fill(m, w.k, evenly(w.k), w.z)
+	if err := w.grid.fill(ctx, m, w.k, evenly(w.k), w.z); err != nil {
+		return err
+	}
 	for f := range count {
 		if err := ctx.Err(); err != nil {
 			return err
