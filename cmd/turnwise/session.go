@@ -485,7 +485,9 @@ func (ses *session) finish(ctx context.Context, r optimize.Result, began time.Ti
 	if err := ses.stop(r, time.Since(began), true); err != nil {
 		return failed(err)
 	}
-	return ses.summary(r, settled, t, time.Since(began))
+	err = ses.summary(r, settled, t, time.Since(began))
+	ses.report(ctx)
+	return err
 }
 
 // confirm is the final word on a candidate.

@@ -46,7 +46,12 @@ func (v FeedView) Draw(c vg.Canvas) {
 	v.turn(b, o, s)
 	foot := at{o.x + v.Wire[0][1]*s, o.y + v.Wire[0][0]*s}
 	b.mark(Disc, foot, 3.5, pens[1].tone, false)
-	b.text("feed", at{foot.x - 9, foot.y + 5}, tickSize, right, ink)
+	// Beside the riser where the arrow is not.
+	if v.Right {
+		b.text("feed", at{foot.x - 9, foot.y + 5}, tickSize, right, ink)
+	} else {
+		b.text("feed", at{foot.x + 9, foot.y + 5}, tickSize, left, ink)
+	}
 	b.text(v.Turn, at{w / 2, edge + rowHeight + 6}, textSize, centre, ink)
 	b.scaleBar(at{edge, edge + 4}, s, w/4)
 }

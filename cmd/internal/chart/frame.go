@@ -33,10 +33,10 @@ func newFrame(w, h float64, x, y Axis, rows int) frame {
 	}
 }
 
-// How many ticks an axis has at the most.
+// Ticks of x lie at least tickApart from each other; y has yTicks at the most.
 const (
-	xTicks = 6
-	yTicks = 7
+	tickApart = 50.0
+	yTicks    = 7
 )
 
 // place is where a pair of values comes to lie.
@@ -49,7 +49,7 @@ func (f frame) place(x, y float64) at {
 
 // draw rules the frame, its grid and its axes.
 func (f frame) draw(b brush) {
-	xs, xd := f.x.ticks(xTicks)
+	xs, xd := f.x.ticks(int((f.right - f.left) / tickApart))
 	ys, yd := f.y.ticks(yTicks)
 	b.stroke(hairline, grid, nil)
 	for _, x := range xs {

@@ -26,7 +26,7 @@ type Lines struct {
 	X, Y   Axis
 	Series []Series
 	Limits []Limit
-	// Band is tinted; empty for none.
+	// Band is tinted, also where it is a single value; zero for none.
 	Band [2]float64
 	// Sections divide the chart by x, such as the stages of a search: each
 	// begins where the one before ended.
@@ -64,6 +64,10 @@ func (l *Lines) Draw(c vg.Canvas) {
 	f := newFrame(w, h, l.X, l.Y, g.rows())
 	f.shade(b, l.Band[0], l.Band[1], wash)
 	f.draw(b)
+	if x := l.Band[0]; x == l.Band[1] && x != 0 {
+		b.stroke(4, wash, nil)
+		b.line(f.place(x, f.y.Min), f.place(x, f.y.Max))
+	}
 	l.sections(b, f)
 	for _, m := range l.Limits {
 		m.draw(b, f)
@@ -107,7 +111,7 @@ func (m Limit) draw(b brush, f frame) {
 	}
 	b.stroke(hairline, alarm, nil)
 	for x := from.x + 2; x < to.x; x += 5 {
-		p, q, inside := f.clipped(at{x, from.y}, at{x + 4, from.y + side})
+		p, q, inside := f.clipped(at{x, from.y}, at{math.Min(x+4, to.x), from.y + side})
 		if inside {
 			b.line(p, q)
 		}

@@ -24,7 +24,8 @@ type Trace struct {
 	// In is the first and the last index inside the band; both ends and the
 	// middle are marked.
 	In [2]int
-	// Marks are the labels of the band's lower end, middle and upper end.
+	// Marks are the labels of the band's lower end, middle and upper end,
+	// empty where there is none.
 	Marks [3]string
 }
 
@@ -78,7 +79,9 @@ func (s *Smith) legend() *legend {
 		}
 	}
 	for k, name := range s.Traces[0].Marks {
-		g.mark(name, pen{tone: ink, marker: bandMarks[k]}, k == 1)
+		if name != "" {
+			g.mark(name, pen{tone: ink, marker: bandMarks[k]}, k == 1)
+		}
 	}
 	return g
 }

@@ -60,7 +60,7 @@ const (
 	behind      = 22.0 // left of the plane
 	beyond      = 12.0 // right of the open end
 	planeMargin = 14.0 // of an infinite plane beside the winding
-	tallest     = 260.0
+	tallest     = 210.0
 )
 
 func (v SideView) scale() float64 {
@@ -94,29 +94,22 @@ func (v SideView) Draw(c vg.Canvas) {
 	v.words(b, o, s, w, h)
 }
 
-// strands draws the far side first, then the near one over it.
+// strands draws the whole wire pale and the near halves dark over it.
 func (v SideView) strands(b brush, place func([3]float64) at, s float64) {
-	for _, near := range []bool{false, true} {
-		tone := rule
-		if near {
-			tone = ink
+	all := make([]at, len(v.Wire))
+	for i, p := range v.Wire {
+		all[i] = place(p)
+	}
+	b.stroke(v.wireWidth(s), rule, nil)
+	b.line(all...)
+	b.stroke(v.wireWidth(s), ink, nil)
+	from := 0
+	for i := 1; i <= len(all); i++ {
+		if i < len(all) && v.Wire[i-1][1]+v.Wire[i][1] >= -1e-9 {
+			continue
 		}
-		var run []at
-		for i := 1; i < len(v.Wire); i++ {
-			p, q := v.Wire[i-1], v.Wire[i]
-			if (p[1]+q[1] >= -1e-9) == near {
-				if len(run) == 0 {
-					run = append(run, place(p))
-				}
-				run = append(run, place(q))
-				if i < len(v.Wire)-1 {
-					continue
-				}
-			}
-			b.stroke(v.wireWidth(s), tone, nil)
-			b.line(run...)
-			run = nil
-		}
+		b.line(all[from:i]...)
+		from = i
 	}
 }
 
@@ -148,23 +141,19 @@ func (v SideView) ground(b brush, o at, s float64) {
 // words are the dimensions and the scale.
 func (v SideView) words(b brush, o at, s, w, h float64) {
 	row := h - edge - textSize*0.75
-	b.text(v.AtFeed, at{edge, row}, textSize, left, ink)
+	end := o.x + v.top()*s
+	b.text(v.AtFeed, at{math.Min(o.x, w-edge-textWidth(v.AtFeed, textSize)), row}, textSize, left, ink)
 	if v.AtOpenEnd != "" {
-		b.text(v.AtOpenEnd, at{w - edge, row - rowHeight}, textSize, right, ink)
+		b.text(v.AtOpenEnd, at{math.Max(end, o.x+textWidth(v.AtOpenEnd, textSize)), row - rowHeight}, textSize, right, ink)
 	}
 	under := o.y - v.across()*s - planeMargin
 	y := under - 12
-	end := o.x + v.top()*s
 	b.stroke(hairline, quiet, nil)
 	b.line(at{end, o.y - v.wide()*s - 2}, at{end, y - 4})
 	b.line(at{o.x, under}, at{o.x, y - 4})
 	b.dimension(at{o.x, y}, at{end, y})
 	half := textWidth(v.Length, textSize) / 2
 	b.haloed(v.Length, at{math.Min(math.Max((o.x+end)/2, edge+half), w-edge-half), y - textSize*0.35}, textSize, centre, ink)
-	if end-o.x < 2*half+40 {
-		// No room on the line: under it.
-		b.dimension(at{o.x, y}, at{end, y})
-	}
 	b.scaleBar(at{edge, edge + 4}, s, w/3)
 }
 

@@ -111,9 +111,7 @@ func (r *Run) overFrequency(s *Sheet, y chart.Axis) *chart.Lines {
 	if l.X.Min == l.X.Max {
 		l.X.Min, l.X.Max = l.X.Min*0.99, l.X.Max*1.01
 	}
-	if b.From < b.To {
-		l.Band = [2]float64{b.From / per, b.To / per}
-	}
+	l.Band = [2]float64{b.From / per, b.To / per}
 	return l
 }
 
@@ -226,7 +224,10 @@ func (r *Run) vswrChart(s *Sheet) Chart {
 func (r *Run) smithChart(s *Sheet) Chart {
 	b, d := r.Problem.Band, &s.Member.Design
 	c := &chart.Smith{Reference: d.Feed.Impedance}
-	marks := [3]string{frequency(b.From, b), frequency(b.Mid(), b), frequency(b.To, b)}
+	marks := [3]string{1: frequency(b.Mid(), b)}
+	if b.From < b.To {
+		marks[0], marks[2] = frequency(b.From, b), frequency(b.To, b)
+	}
 	samples := s.Simulation.Response.Samples
 	trace := func(name string, of func(*models.Sample) complex128) {
 		t := chart.Trace{Name: name, In: [2]int{s.Band[0], s.Band[2]}, Marks: marks}
@@ -290,7 +291,7 @@ func (s *Simulation) handGains() []struct {
 		value float64
 	}{
 		{"Kraus 1949", s.Hand.Kraus1949},
-		{"Kraus, later", s.Hand.KrausLate},
+		{"Kraus later", s.Hand.KrausLate},
 		{"King & Wong 1980", s.Hand.KingWong},
 	}
 }

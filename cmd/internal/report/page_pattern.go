@@ -78,8 +78,9 @@ func (r *Run) angleChart(s *Sheet) Chart {
 		Y: chart.Axis{Label: "axial ratio, dB", Min: 0, Max: 8},
 	}
 	n := len(s.Pattern)
-	for k := range min(4, n) {
-		c := &s.Pattern[k*n/min(4, n)]
+	planes := min(4, n)
+	for k := range planes {
+		c := &s.Pattern[k*n/planes]
 		series := chart.Series{Name: fmt.Sprintf("azimuth %.0f°", planeDegrees(c))}
 		for _, ray := range c.Rays {
 			ratio := ray.AxialRatio
@@ -101,6 +102,6 @@ func (r *Run) angleChart(s *Sheet) Chart {
 	}
 	return Chart{
 		Name: "axial-ratio-angle", Title: "Axial ratio against angle", Figure: l, Indicative: s.Simulation.Response.Indicative,
-		Caption: "At mid-band, in four planes through the axis; a line breaks off where the field turns the other way.",
+		Caption: fmt.Sprintf("At mid-band, in %s through the axis; a line breaks off where the field turns the other way.", plural(planes, "plane", "planes")),
 	}
 }

@@ -181,10 +181,10 @@ func (s *Sheet) handRows() []handRow {
 		return h
 	}
 	return []handRow{
-		row("directivity, Kraus 1949: 15 C²NS", sim.Hand.Kraus1949, mid.Directivity, 2, " dBi"),
-		row("directivity, Kraus, later: 12 C²NS", sim.Hand.KrausLate, mid.Directivity, 2, " dBi"),
-		row("peak directivity, King & Wong 1980", sim.Hand.KingWong, mid.Directivity, 2, " dBi"),
-		row("half-power beamwidth, Kraus", sim.Hand.BeamwidthDeg, mid.Beamwidth, 1, "°"),
+		row("Kraus 1949, 15 C²NS", sim.Hand.Kraus1949, mid.Directivity, 2, " dBi"),
+		row("Kraus later, 12 C²NS", sim.Hand.KrausLate, mid.Directivity, 2, " dBi"),
+		row("King & Wong 1980, peak", sim.Hand.KingWong, mid.Directivity, 2, " dBi"),
+		row("beamwidth, Kraus", sim.Hand.BeamwidthDeg, mid.Beamwidth, 1, "°"),
 		row("axial ratio, Kraus", sim.Hand.AxialRatioDB, mid.AxialRatio, 2, " dB"),
 		row("resistance, Kraus", sim.Hand.Resistance, mid.R, 1, " Ω"),
 	}

@@ -31,7 +31,12 @@ func said(f objectives.Figure, x float64) string {
 func saidAmount(f objectives.Figure, x float64) string { return minus(Amount(f, x)) }
 
 // figureName is a figure's name in a sentence.
-func figureName(f objectives.Figure) string { return named(f.String()) }
+func figureName(f objectives.Figure) string {
+	if f == objectives.AxialRatioCone {
+		return "axial ratio in the cone"
+	}
+	return named(f.String())
+}
 
 func named(name string) string {
 	words := strings.Split(strings.ReplaceAll(name, "_", " "), " ")

@@ -52,10 +52,15 @@
 
   // Sorting.
   for (const c of columns) {
-    const button = document.createElement("button");
-    button.type = "button";
+    // No real button: browsers leave those out of a header that is repeated
+    // on paper.
+    const button = document.createElement("span");
+    button.className = "sorter";
+    button.setAttribute("role", "button");
+    button.tabIndex = 0;
     button.append(...c.th.childNodes);
     c.th.append(button);
+    button.addEventListener("keydown", (e) => { if (e.key === "Enter" || e.key === " ") { e.preventDefault(); button.click(); } });
     button.addEventListener("click", () => {
       const down = c.th.getAttribute("aria-sort") === "ascending";
       for (const o of columns) o.th.removeAttribute("aria-sort");
