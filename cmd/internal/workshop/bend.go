@@ -48,7 +48,7 @@ func (b bend) height(t float64) float64 {
 
 // port is the impedance at the foot of the riser with the winding bent so.
 // The equivalent radii over the plane are the full-wave model's.
-func (b bend) port(ctx context.Context, d *models.Design, hz float64) (complex128, error) {
+func (b bend) port(ctx context.Context, f moment.Fidelity, d *models.Design, hz float64) (complex128, error) {
 	foot := b.curve.At(0).Pos
 	pin, a := d.PinDiameter()/2, d.Conductor.Diameter/2
 	material := d.Conductor.Material
@@ -76,7 +76,7 @@ func (b bend) port(ctx context.Context, d *models.Design, hz float64) (complex12
 		})
 	}
 	var z complex128
-	err := moment.Analyse(ctx, &antenna, moment.Standard, []float64{hz}, func(s *moment.Solution) error {
+	err := moment.Analyse(ctx, &antenna, f, []float64{hz}, func(s *moment.Solution) error {
 		z = 1 / s.Admittance(0, 0)
 		return nil
 	})

@@ -11,7 +11,7 @@ import (
 // feedPage shows the riser and the first turn unrolled, its heights, the
 // strip's flat pattern and the line section.
 func (s *sheet) feedPage() leaf {
-	view, name := s.firstTurn(across-35, 46)
+	view, name := s.firstTurn(across-30, 80)
 	l := newLeaf("feed: riser and first turn", name)
 	y := top
 	y -= l.Heading(drawing.Point{X: left, Y: y}, across, heading, "First turn, unrolled, seen from outside, scale "+name)
@@ -24,10 +24,60 @@ func (s *sheet) feedPage() leaf {
 	for _, words := range s.feedWords() {
 		y -= l.Paragraph(drawing.Point{X: left, Y: y}, across, body, words) + 1
 	}
+	y -= s.riserSection(l, drawing.Point{X: left, Y: y - 3}) + 8
 	if s.Design.Feed.Strip.Turns > 0 {
-		s.stripPattern(l, drawing.Point{X: left, Y: y - 3})
+		s.stripPattern(l, drawing.Point{X: left, Y: y})
 	}
 	return l
+}
+
+// riserSection draws plate, opening and riser cut through the riser's axis,
+// seen from outside, below a place; it gives the height it takes.
+func (s *sheet) riserSection(l leaf, at drawing.Point) float64 {
+	r, c := s.Resolution, s.Curve
+	pin, wide, height := 1e3*s.Design.PinDiameter(), opening*1e3*s.Design.PinDiameter(), 1e3*c.Riser()
+	reach := math.Max(2*wide, 1.5*height)
+	name, k := fitScale(2*reach, 1.7*height, 110, 45)
+	h := l.Heading(at, across, heading, "Section through the riser, seen from outside, scale "+name)
+	d := new(drawing.Drawing)
+	const plate = 4.0 // mm of paper: as thick as the plate is
+	for _, side := range []float64{-1, 1} {
+		near, far := side*wide/2*k, side*reach*k
+		d.Add(drawing.Polyline{Layer: drawing.Outline, Points: []drawing.Point{{X: far}, {X: near}, {X: near, Y: -plate}, {X: far, Y: -plate}}})
+		for x := math.Min(near, far); x+plate <= math.Max(near, far); x += 2.5 {
+			d.Line(drawing.Grid, drawing.Point{X: x, Y: -plate}, drawing.Point{X: x + plate})
+		}
+	}
+	d.Add(drawing.Polyline{Layer: drawing.Winding, Closed: true, Points: []drawing.Point{
+		{X: -pin / 2 * k, Y: -plate - 3}, {X: pin / 2 * k, Y: -plate - 3}, {X: pin / 2 * k, Y: height * k}, {X: -pin / 2 * k, Y: height * k}}})
+	s.windingStart(d, k, reach)
+	d.Line(drawing.Axis, drawing.Point{Y: -plate - 6}, drawing.Point{Y: height*k + 5})
+	hand := float64(s.Design.Handedness)
+	d.Measure(drawing.Point{X: -hand * wide / 2 * k}, drawing.Point{Y: height * k}, 90, hand*(reach*k-wide/2*k+3), r.mm(c.Riser()))
+	d.Measure(drawing.Point{X: -wide / 2 * k, Y: -plate}, drawing.Point{X: wide / 2 * k, Y: -plate}, 0, -11, "Ø "+r.mm(wide/1e3))
+	side := hand * pin / 2 * k
+	d.Leader(drawing.Point{X: side, Y: height * k / 2}, drawing.Point{X: hand * (reach*k + 6), Y: height * k / 2}, "riser Ø "+bought(s.Design.PinDiameter()))
+	b := d.Bounds()
+	l.Place(d, at.X+(across-b.Width())/2-b.Min.X, at.Y-h-3-b.Max.Y)
+	return h + 3 + b.Height()
+}
+
+// windingStart draws both edges of the conductor from the riser's top on.
+func (s *sheet) windingStart(d *drawing.Drawing, k, reach float64) {
+	c := s.Curve
+	thick := 1e3 * s.Design.Conductor.Diameter
+	if s.Design.Feed.Strip.Turns > 0 {
+		thick = 1 / k // a strip on edge: a line about as thick as a sheet
+	}
+	end := math.Min(reach/(1e3*math.Pi*c.Diameter(0)), c.Turns())
+	for _, side := range []float64{-0.5, 0.5} {
+		points := make([]drawing.Point, 25)
+		for i := range points {
+			t := end * float64(i) / 24
+			points[i] = drawing.Point{X: float64(s.Design.Handedness) * 1e3 * math.Pi * c.Diameter(0) * t * k, Y: (1e3*c.Height(t) + side*thick) * k}
+		}
+		d.Add(drawing.Polyline{Layer: drawing.Winding, Points: points})
+	}
 }
 
 // firstTurn draws riser and first turn as on the unrolled cylinder through
@@ -44,7 +94,7 @@ func (s *sheet) firstTurn(room, tall float64) (*drawing.Drawing, string) {
 	d := new(drawing.Drawing)
 	ends := []drawing.Point{{X: -hand * 8}, {X: hand * (circumference*turns*k + 8)}}
 	d.Add(drawing.Polyline{Layer: drawing.Outline, Width: 0.7, Points: ends})
-	d.Write(drawing.Point{X: math.Min(ends[0].X, ends[1].X), Y: -4}, small, "plate")
+	d.Add(drawing.Text{Layer: drawing.Lettering, At: drawing.Point{X: math.Min(ends[0].X, ends[1].X) - 1, Y: -0.9}, Size: small, Align: drawing.Right, S: "plate"})
 	pen := func(m float64) float64 { return math.Min(math.Max(0.3, 1e3*m*k), 6) }
 	d.Add(drawing.Polyline{Layer: drawing.Winding, Width: pen(s.Design.PinDiameter()), Points: []drawing.Point{{}, at(0)}})
 	strip := math.Min(s.Design.Feed.Strip.Turns, turns)
@@ -56,9 +106,9 @@ func (s *sheet) firstTurn(room, tall float64) (*drawing.Drawing, string) {
 		d.Add(drawing.Text{Layer: drawing.Lettering, At: p.Plus(0, 3+pen(s.Design.Conductor.Diameter)/2), Size: small, Align: drawing.Middle, S: s.Resolution.mm(c.Height(t))})
 		d.Add(drawing.Text{Layer: drawing.Lettering, At: drawing.Point{X: p.X, Y: -4}, Size: small, Align: drawing.Middle, S: degree(360 * t)})
 	}
-	arrow := at(0.44 * turns)
-	way := at(0.5*turns).Plus(0, 0)
-	d.Head(drawing.Winding, way, math.Atan2(way.Y-arrow.Y, way.X-arrow.X)*180/math.Pi, 4)
+	arrow := at(0.6 * turns)
+	tip := at(0.65 * turns)
+	d.Head(drawing.Winding, tip, math.Atan2(tip.Y-arrow.Y, tip.X-arrow.X)*180/math.Pi, 7)
 	return d, name
 }
 

@@ -17,8 +17,22 @@ func template(s *Settled) *drawing.Drawing {
 	} else {
 		wrap(d, s, f)
 	}
-	legend(d, s, f)
-	return d
+	return withLegend(d, s, f)
+}
+
+// withLegend sets the legend below the template or beside it, where it takes
+// less paper.
+func withLegend(d *drawing.Drawing, s *Settled, f *former) *drawing.Drawing {
+	b := d.Bounds()
+	below, beside := new(drawing.Drawing), new(drawing.Drawing)
+	below.Place(d, 0, 0)
+	beside.Place(d, 0, 0)
+	legend(below, s, f, drawing.Point{X: b.Min.X, Y: b.Min.Y - 8})
+	legend(beside, s, f, drawing.Point{X: b.Max.X + 12, Y: b.Max.Y})
+	if newTiling(beside.Bounds()).count() < newTiling(below.Bounds()).count() {
+		return beside
+	}
+	return below
 }
 
 // tab is the strip to glue under the other edge, mm.
@@ -38,8 +52,7 @@ func wrap(d *drawing.Drawing, s *Settled, f *former) {
 	for quarter := range 4 {
 		a := math.Mod(90*float64(quarter)*f.hand-seam+360, 360)
 		edge(drawing.Axis, [2]float64{0, a}, [2]float64{head, a})
-		foot, up := f.flat(0, a), f.flat(head, a)
-		d.Add(drawing.Text{Layer: drawing.Lettering, At: foot.Toward(f.lean(foot, up), 2.2).Plus(1, 0), Size: 2.6, S: fmt.Sprintf("%d°", 90*quarter)})
+		d.Add(drawing.Text{Layer: drawing.Lettering, At: f.flat(head-4, a).Plus(1, 0), Size: 2.6, S: fmt.Sprintf("%d°", 90*quarter)})
 	}
 	f.wind(d, s)
 	f.marks(d, s)
@@ -91,19 +104,13 @@ func (f *former) wind(d *drawing.Drawing, s *Settled) {
 			l = drawing.Strip
 		}
 		n := max(int(math.Ceil((part[1]-part[0])*perTurn)), 1)
-		points := make([]drawing.Point, 0, n+1)
-		_, middle := f.touch((part[0] + part[1]) / 2)
-		for i := range n + 1 {
-			z, a := f.touch(part[0] + (part[1]-part[0])*float64(i)/float64(n))
-			// At the seam itself the azimuth is either end's.
-			if i == 0 || i == n {
-				if a-middle > 180 {
-					a -= 360
-				} else if middle-a > 180 {
-					a += 360
-				}
-			}
-			points = append(points, f.flat(z, a))
+		points := make([]drawing.Point, n+1)
+		middle := (part[0] + part[1]) / 2
+		_, azimuth := f.touch(middle)
+		for i := range points {
+			t := part[0] + (part[1]-part[0])*float64(i)/float64(n)
+			z, _ := f.touch(t)
+			points[i] = f.flat(z, azimuth+f.hand*360*(t-middle)) // on the seam: this part's edge
 		}
 		d.Add(drawing.Polyline{Layer: l, Points: points})
 	}
@@ -145,8 +152,13 @@ func (f *former) marks(d *drawing.Drawing, s *Settled) {
 		d.Cross(drawing.Station, at, 2)
 		up := f.lean(f.flat(z-1, a), f.flat(z+1, a)) - 90
 		label := fmt.Sprintf("%s: z %s", shortest(m.T), s.Resolution.shown(m.Z))
-		place := at.Toward(up, 1).Toward(up+90, 2.6)
-		d.Add(drawing.Text{Layer: drawing.Lettering, At: place, Size: 2.2, Angle: up, S: label})
+		// On the side where the winding comes from, above it.
+		align := drawing.Right
+		if f.hand < 0 {
+			align = drawing.Left
+		}
+		place := at.Toward(up, -f.hand).Toward(up+90, 1)
+		d.Add(drawing.Text{Layer: drawing.Lettering, At: place, Size: 2.2, Angle: up, Align: align, S: label})
 		if m.T == 0 || m.T == s.Curve.Turns() {
 			d.Circle(drawing.Hole, at, f.holeRadius())
 		}
@@ -209,10 +221,9 @@ func checkBar(d *drawing.Drawing, at drawing.Point, angle float64) {
 	d.Add(drawing.Text{Layer: drawing.Lettering, At: at.Toward(angle, bar/2).Toward(angle+90, 1), Size: 2.4, Angle: angle, Align: drawing.Middle, S: "100 mm: measure me"})
 }
 
-// legend stands below the template: what it is, how to wrap it, check bars.
-func legend(d *drawing.Drawing, s *Settled, f *former) {
-	b := d.Bounds()
-	at := drawing.Point{X: b.Min.X, Y: b.Min.Y - 6}
+// legend says below a place what the template is and how to wrap it, with
+// check bars.
+func legend(d *drawing.Drawing, s *Settled, f *former, at drawing.Point) {
 	checkBar(d, at.Plus(0, -bar), 90)
 	checkBar(d, at.Plus(6, -bar), 0)
 	y := 0.0
@@ -233,7 +244,7 @@ func templateWords(s *Settled, f *former) []string {
 	}
 	switch {
 	case f.combs:
-		out = append(out, "The winding's profile is neither cylinder nor cone, so no flat sheet wraps it: cut four combs instead. Each stands on the plate with its straight side on the axis, at the azimuth it is marked with, counted from the riser in the direction of winding. The conductor lies in the notches; circles are holes on its centre line.")
+		out = append(out, "The winding's profile is neither cylinder nor cone, so no flat sheet wraps it: cut four combs instead. Each stands on the plate with its straight side on the axis, at the azimuth it is marked with, counted from the riser in the direction of winding. The conductor lies in the notches; circles are holes on its centre line. Relieve the 0° comb for the riser.")
 	case f.cone():
 		out = append(out, fmt.Sprintf("For a conical former, Ø %s mm at the plate and Ø %s mm at %s mm, on whose surface the conductor lies.",
 			r.mm(f.Diameter(0)/1e3), r.mm(f.Diameter(1e3*s.Curve.Top())/1e3), r.mm(s.Curve.Top())))

@@ -19,7 +19,7 @@ func (s *sheet) testPage() leaf {
 	p.frame(&l.Drawing)
 	s.vswrCurve(&l.Drawing, p)
 	t := s.bandTable()
-	l.Table(drawing.Point{X: left + 100, Y: y - 3}, t)
+	l.Table(drawing.Point{X: left + 99, Y: y - 3}, t)
 	y -= math.Max(75, t.Height()+6)
 	y -= l.Paragraph(drawing.Point{X: left, Y: y}, across, small, s.testWords()) + 2
 	y -= l.Heading(drawing.Point{X: left, Y: y}, across, heading, "Trim chart at mid-band, "+megahertz(s.trim.Hz)+" MHz")
@@ -38,7 +38,7 @@ func (s *sheet) vswrPlot(at drawing.Point) plot {
 	}
 	most := math.Min(math.Max(2, math.Ceil(highest*2)/2), 10)
 	return plot{at: at, width: 78, height: 58,
-		x: ticked("frequency, MHz", w[0].Hz/1e6, w[len(w)-1].Hz/1e6, 5), y: ticked("VSWR", 1, most, 5)}
+		x: ticked("frequency, MHz", w[0].Hz/1e6, w[len(w)-1].Hz/1e6, 8), y: ticked("VSWR", 1, most, 5)}
 }
 
 func (s *sheet) vswr(a *models.Sample) float64 { return models.VSWR(a.Input, s.Design.Feed.Impedance) }
@@ -61,15 +61,16 @@ func (s *sheet) vswrCurve(d *drawing.Drawing, p plot) {
 func (s *sheet) bandTable() *drawing.Table {
 	t := &drawing.Table{Size: small, Row: 4.8, Columns: []drawing.Column{
 		{Title: "MHz", Width: 17, Align: drawing.Right}, {Title: "Z, Ω", Width: 24, Align: drawing.Right}, {Title: "VSWR", Width: 13, Align: drawing.Right},
-		{Title: "measured", Width: 17}, {Title: "dBic", Width: 11, Align: drawing.Right},
+		{Title: "measured", Width: 16}, {Title: "dBic", Width: 11, Align: drawing.Right},
 	}}
 	samples := s.Response.Samples
-	stride := max(1, (len(samples)+7)/8)
-	for i := 0; i < len(samples); i += stride {
-		t.Rows = append(t.Rows, s.bandRow(&samples[i]))
-	}
-	if last := len(samples) - 1; last%stride != 0 {
-		t.Rows = append(t.Rows, s.bandRow(&samples[last]))
+	parts := min(max(s.Design.Band.Samples, 1), 9) - 1
+	for i := range parts + 1 {
+		at := 0
+		if parts > 0 {
+			at = (i*(len(samples)-1) + parts/2) / parts
+		}
+		t.Rows = append(t.Rows, s.bandRow(&samples[at]))
 	}
 	return t
 }
@@ -119,7 +120,7 @@ func (s *sheet) trimCharts(d *drawing.Drawing, at drawing.Point) {
 		}
 		d.Add(drawing.Text{Layer: drawing.Lettering, At: p.Plus(x, name.up), Size: small, Align: align, S: name.text})
 	}
-	d.Add(drawing.Text{Layer: drawing.Lettering, At: whole.centre.Plus(0, -wholeRadius-4), Size: small, Align: drawing.Middle, S: "whole chart; yellow circle: VSWR 2"})
+	d.Add(drawing.Text{Layer: drawing.Lettering, At: whole.centre.Plus(0, -wholeRadius-4), Size: small, Align: drawing.Middle, S: "whole chart; inner circle: VSWR 2"})
 
 	near := smith{centre: at.Plus(across-closeRadius-22, -closeRadius-1), radius: s.zoom(), shown: closeRadius, about: s.trim.Reflection}
 	near.grid(d, true)
@@ -153,6 +154,7 @@ func abs(g complex128) float64 { return math.Hypot(real(g), imag(g)) }
 // colour, down or shorter in the other.
 func (s *sheet) arrows(d *drawing.Drawing, c smith, numbered bool) {
 	from := c.point(s.trim.Reflection)
+	var labels []drawing.Point
 	for i, m := range s.trim.Moves {
 		for _, way := range []struct {
 			g     complex128
@@ -169,8 +171,28 @@ func (s *sheet) arrows(d *drawing.Drawing, c smith, numbered bool) {
 			}
 			angle := math.Atan2(to.Y-from.Y, to.X-from.X) * 180 / math.Pi
 			d.Head(way.layer, to, angle, math.Min(2.2, from.Distance(to)))
-			d.Add(drawing.Text{Layer: drawing.Lettering, At: to.Toward(angle, 2.4).Plus(0, -0.8), Size: small, Align: drawing.Middle, S: way.sign + fmt.Sprint(i+1)})
+			at := freePlace(from, angle, from.Distance(to)+2.6, labels)
+			labels = append(labels, at)
+			d.Add(drawing.Text{Layer: drawing.Lettering, At: at.Plus(0, -0.8), Size: small, Align: drawing.Middle, S: way.sign + fmt.Sprint(i+1)})
 		}
+	}
+}
+
+// freePlace is a place for an arrow's label along its angle, at least so far
+// out, that keeps off the labels already there.
+func freePlace(from drawing.Point, angle, distance float64, labels []drawing.Point) drawing.Point {
+	const apart, least = 4.5, 6.0
+	distance = math.Max(distance, least)
+	for {
+		at := from.Toward(angle, distance)
+		free := true
+		for _, l := range labels {
+			free = free && at.Distance(l) >= apart
+		}
+		if free {
+			return at
+		}
+		distance += apart / 3
 	}
 }
 

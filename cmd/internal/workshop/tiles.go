@@ -27,7 +27,7 @@ type tiling struct {
 // newTiling takes the way of the paper that needs fewer pages.
 func newTiling(b drawing.Window) tiling {
 	upright, across := tilingOf(b, false), tilingOf(b, true)
-	if across.columns*across.rows < upright.columns*upright.rows {
+	if across.count() < upright.count() {
 		return across
 	}
 	return upright
@@ -47,6 +47,9 @@ func tilingOf(b drawing.Window, landscape bool) tiling {
 	t.origin = b.Min.Plus(-spare.X/2, -spare.Y/2)
 	return t
 }
+
+// count is the number of cells.
+func (t tiling) count() int { return t.columns * t.rows }
 
 // cell is a cell of the tiling without its overlap.
 func (t tiling) cell(column, row int) drawing.Window {
@@ -77,15 +80,15 @@ func (t tiling) page(d *drawing.Drawing, column, row int, name string) *drawing.
 	if len(part.Entities) == 0 {
 		return nil
 	}
-	p := &drawing.Page{Landscape: t.landscape}
 	x, y := tileLeft-window.Min.X, tileBottom-window.Min.Y
-	p.Place(part, x, y)
+	p := &drawing.Page{Landscape: t.landscape, Inset: new(drawing.Drawing), Frame: drawing.Window{Min: window.Min.Plus(x, y), Max: window.Max.Plus(x, y)}}
+	p.Inset.Place(part, x, y)
 	t.match(p, column, row, x, y)
 	checkBar(&p.Drawing, drawing.Point{X: 13, Y: tileBottom}, 90)
 	checkBar(&p.Drawing, drawing.Point{X: tileLeft, Y: 13}, 0)
 	words := fmt.Sprintf("%s: row %d of %d from the top, column %d of %d. Print at 100 %%.", name, t.rows-row, t.rows, column+1, t.columns)
 	p.Add(drawing.Text{Layer: drawing.Lettering, At: drawing.Point{X: tileLeft, Y: 8}, Size: 2.6, S: drawing.Fit(words, 180, 2.6, false)})
-	if t.columns*t.rows > 1 {
+	if t.count() > 1 {
 		p.Add(drawing.Text{Layer: drawing.Lettering, At: drawing.Point{X: tileLeft + bar + 5, Y: 12.5}, Size: 2.4, S: "lay equal letters on each other; trim at the dashes"})
 	}
 	return p
@@ -94,7 +97,7 @@ func (t tiling) page(d *drawing.Drawing, column, row int, name string) *drawing.
 // match draws the cell's border, where the tile is trimmed, and a lettered
 // mark on every corner it shares with a neighbour.
 func (t tiling) match(p *drawing.Page, column, row int, x, y float64) {
-	if t.columns*t.rows == 1 {
+	if t.count() == 1 {
 		return
 	}
 	cell := t.cell(column, row)

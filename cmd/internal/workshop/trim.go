@@ -8,6 +8,7 @@ import (
 
 	"turnwise/models"
 	"turnwise/models/helix"
+	"turnwise/models/moment"
 	"turnwise/objectives"
 )
 
@@ -21,19 +22,36 @@ type move struct {
 	Stands string // what exactly was moved to find the arrows
 	More   string // what a movement upwards, or longer, is called
 	Less   string
-	// Up and Down are what +1 mm and −1 mm add to the reflection. Lowest is
-	// how far down it may go, m, negative; Down is 0 where 1 mm is too far.
+	// Lowest and Highest are how far it may go, m, either side of 0.
+	Lowest, Highest float64
+	// Up and Down are what +1 mm and −1 mm add to the reflection; 0 where
+	// 1 mm is too far.
 	Up, Down complex128
-	Lowest   float64
+	// Path is what is added at amounts in rising order, 0 among them.
+	Path []waypoint
 }
 
-// by is what moving by so many metres adds to the reflection.
-func (m *move) by(x float64) complex128 {
-	if x < 0 && m.Down != 0 {
-		return complex(-x/trimStep, 0) * m.Down
-	}
-	return complex(x/trimStep, 0) * m.Up
+// waypoint is what moving by an amount, m, adds to the reflection.
+type waypoint struct {
+	By    float64
+	Added complex128
 }
+
+// by is what moving by so many metres adds to the reflection, between
+// waypoints along straight lines.
+func (m *move) by(x float64) complex128 {
+	for i := 1; i < len(m.Path); i++ {
+		a, b := m.Path[i-1], m.Path[i]
+		if x <= b.By || i == len(m.Path)-1 {
+			u := complex((x-a.By)/(b.By-a.By), 0)
+			return a.Added + u*(b.Added-a.Added)
+		}
+	}
+	return 0
+}
+
+// reaches reports whether the move may go so far.
+func (m *move) reaches(x float64) bool { return x >= m.Lowest-1e-12 && x <= m.Highest+1e-12 }
 
 // trimChart is the reflection at mid-band and what moves it.
 type trimChart struct {
@@ -56,7 +74,7 @@ func newTrimChart(ctx context.Context, rung objectives.Rung, d *models.Design, c
 	}
 	for _, at := range []float64{0.25, 0.5, 1} {
 		if at+bendReach(at) <= c.Turns() {
-			if err := t.bend(ctx, d, c, at); err != nil {
+			if err := t.bend(ctx, moment.Fidelity(rung.Fidelity), d, c, at); err != nil {
 				return nil, err
 			}
 		}
@@ -83,7 +101,7 @@ func (t *trimChart) riser(ctx context.Context, rung objectives.Rung, d *models.D
 	m := move{
 		Name: "riser height", More: "raise", Less: "lower",
 		Stands: "riser longer or shorter, the whole winding moves with it",
-		Lowest: math.Min(0, objectives.LeastFeedHeight(math.Max(d.Conductor.Diameter+2*d.Insulation.Thickness, d.PinDiameter()))-d.Feed.Height),
+		Lowest: math.Min(0, objectives.LeastFeedHeight(math.Max(d.Conductor.Diameter+2*d.Insulation.Thickness, d.PinDiameter()))-d.Feed.Height), Highest: t.reach(),
 	}
 	at := func(by float64) (complex128, error) {
 		v := *d
@@ -103,9 +121,9 @@ const leastAir = 1e-3
 // bend moves the wire at one place of the first turn. What counts is the
 // difference that the bend makes, so the straight winding is answered in the
 // same way.
-func (t *trimChart) bend(ctx context.Context, d *models.Design, c *helix.Curve, at float64) error {
+func (t *trimChart) bend(ctx context.Context, f moment.Fidelity, d *models.Design, c *helix.Curve, at float64) error {
 	b := bend{curve: c, at: at, reach: bendReach(at)}
-	straight, err := b.port(ctx, d, t.Hz)
+	straight, err := b.port(ctx, f, d, t.Hz)
 	if err != nil {
 		return err
 	}
@@ -113,12 +131,12 @@ func (t *trimChart) bend(ctx context.Context, d *models.Design, c *helix.Curve, 
 	m := move{
 		Name: "height at " + fraction(at) + " turn", More: "lift", Less: "press",
 		Stands: fmt.Sprintf("wire moved there, fading out %s turn to either side", fraction(b.reach)),
-		Lowest: math.Min(0, below-c.Height(at)),
+		Lowest: math.Min(0, below-c.Height(at)), Highest: c.Spacing(at) / 3, // the next turn stays where it is
 	}
 	return t.add(m, func(by float64) (complex128, error) {
 		v := b
 		v.by = by
-		port, err := v.port(ctx, d, t.Hz)
+		port, err := v.port(ctx, f, d, t.Hz)
 		return t.gamma(d, port) - t.gamma(d, straight), err
 	})
 }
@@ -141,7 +159,7 @@ func (t *trimChart) line(d *models.Design, port complex128) {
 	m := move{
 		Name: "line section", More: "lengthen", Less: "shorten",
 		Stands: "length of the section between connector and plate",
-		Lowest: -d.Feed.Transformer.Length,
+		Lowest: -d.Feed.Transformer.Length, Highest: t.reach(),
 	}
 	// It cannot fail: the line is a formula.
 	_ = t.add(m, func(by float64) (complex128, error) {
@@ -151,16 +169,31 @@ func (t *trimChart) line(d *models.Design, port complex128) {
 	})
 }
 
-// add finds a move's arrows.
+// add finds a move's arrows and its path.
 func (t *trimChart) add(m move, at func(by float64) (complex128, error)) error {
 	var err error
-	if m.Up, err = at(trimStep); err != nil {
-		return fmt.Errorf("%s: %w", m.Name, err)
-	}
-	if m.Lowest <= -trimStep {
-		if m.Down, err = at(-trimStep); err != nil {
-			return fmt.Errorf("%s: %w", m.Name, err)
+	arrow := func(by float64) (g complex128) {
+		if err == nil && m.reaches(by) {
+			g, err = at(by)
 		}
+		return g
+	}
+	m.Up, m.Down = arrow(trimStep), arrow(-trimStep)
+	last := math.Inf(-1)
+	for _, share := range []float64{-1, -0.5, -0.25, 0, 0.25, 0.5, 1} {
+		by := math.Min(math.Max(share*t.reach(), m.Lowest), m.Highest)
+		if by <= last {
+			continue
+		}
+		last = by
+		w := waypoint{By: by}
+		if by != 0 {
+			w.Added = arrow(by)
+		}
+		m.Path = append(m.Path, w)
+	}
+	if err != nil {
+		return fmt.Errorf("%s: %w", m.Name, err)
 	}
 	t.Moves = append(t.Moves, m)
 	return nil
@@ -174,8 +207,7 @@ type adjustment struct {
 }
 
 // nudge is the step of amounts to move by, m: about a four-hundredth of a
-// wavelength, a number that a rule shows. The farthest is four of them, as
-// far as straight arrows are to be trusted.
+// wavelength, a number that a rule shows.
 func (t *trimChart) nudge() float64 {
 	want := models.LightSpeed / t.Hz / 400
 	for _, step := range []float64{0.1e-3, 0.2e-3, 0.5e-3, 1e-3, 2e-3, 5e-3} {
@@ -186,21 +218,25 @@ func (t *trimChart) nudge() float64 {
 	return 10e-3
 }
 
-const farthestNudges = 4
+// nudges is how many steps a move goes at most.
+const nudges = 12
+
+// reach is the farthest that anything is moved, m: about 3 % of a wavelength.
+func (t *trimChart) reach() float64 { return nudges * t.nudge() }
 
 // second is the improvement in VSWR that is worth a second move.
 const second = 0.1
 
 // adjust finds what to move when the marker stands at a reflection: the
 // single move with the lowest VSWR after it, or the best two where a second
-// one pays. Arrows are taken as straight.
+// one pays. Two moves are taken as their sum.
 func (t *trimChart) adjust(marker complex128) adjustment {
 	step := t.nudge()
 	best := adjustment{First: -1, Second: -1, VSWR: vswrOf(marker)}
 	pair := best
 	each := func(i int, try func(x float64)) {
-		for k := -farthestNudges; k <= farthestNudges; k++ {
-			if x := float64(k) * step; k != 0 && x >= t.Moves[i].Lowest-1e-12 {
+		for k := -nudges; k <= nudges; k++ {
+			if x := float64(k) * step; k != 0 && t.Moves[i].reaches(x) {
 				try(x)
 			}
 		}

@@ -13,7 +13,7 @@ func (s *sheet) trimPage() leaf {
 	l := newLeaf("test page: how to trim", "")
 	y := top
 	y -= l.Heading(drawing.Point{X: left, Y: y}, across, heading, "Marker here: move this, that way, so far")
-	words := fmt.Sprintf("Set the analyser's marker to mid-band, %s MHz, and find its place on the Smith chart. Should be: %s, VSWR %s at %s. Where it is elsewhere, take the nearest line below, move half of what it says, look again, then the rest. The VSWR expected after is at mid-band, from arrows taken as straight; check the whole band before soldering.",
+	words := fmt.Sprintf("Set the analyser's marker to mid-band, %s MHz, and find its place on the Smith chart. Should be: %s, VSWR %s at %s. Where it is elsewhere, take the nearest line below, move half of what it says, look again, then the rest. The VSWR expected after is at mid-band, two moves taken as their sum; check the whole band before soldering.",
 		megahertz(s.trim.Hz), ohms(s.trim.impedance(s.trim.Reflection)), fixed(vswrOf(s.trim.Reflection), 2), degree(phase(s.trim.Reflection)))
 	y -= l.Paragraph(drawing.Point{X: left, Y: y}, across, body, words) + 3
 	t := s.trimTable()

@@ -11,7 +11,7 @@ import (
 // viewsPage shows the antenna from the side and from its open end, with its
 // main dimensions and the way to wind it.
 func (s *sheet) viewsPage() leaf {
-	side, name := s.sideView(across-40, 52)
+	side, name := s.sideView(across-40, 75)
 	l := newLeaf("antenna, views and main dimensions", name)
 	y := top
 	y -= l.Heading(drawing.Point{X: left, Y: y}, across, heading, "Side view, riser at the upper edge, scale "+name)
@@ -21,14 +21,14 @@ func (s *sheet) viewsPage() leaf {
 
 	end, endName := s.endView(27)
 	at := drawing.Point{X: left, Y: y}
-	l.Heading(at, 80, heading, "Seen from the open end, scale "+endName)
+	l.Heading(at, 78, heading, "Seen from the open end, scale "+endName)
 	b = end.Bounds()
 	l.Place(end, left+38-(b.Min.X+b.Max.X)/2, y-11-b.Max.Y)
 	endLow := y - 11 - b.Height()
 
 	t := s.mainTable()
-	l.Heading(drawing.Point{X: left + 82, Y: y}, 90, heading, "Main dimensions")
-	l.Table(drawing.Point{X: left + 82, Y: y - 8}, t)
+	l.Heading(drawing.Point{X: left + 80, Y: y}, 90, heading, "Main dimensions")
+	l.Table(drawing.Point{X: left + 80, Y: y - 8}, t)
 	y = math.Min(endLow, y-8-t.Height()) - 5
 	y -= l.Heading(drawing.Point{X: left, Y: y}, across, heading, "Which way to wind")
 	for _, words := range HandWords(&s.Design) {
@@ -120,13 +120,14 @@ func (s *sheet) plateEdge(d *drawing.Drawing, k, half float64) {
 // sideArrows puts arrowheads on the near strands, the way the wire runs from
 // the plate.
 func (s *sheet) sideArrows(d *drawing.Drawing, k float64) {
+	size := math.Min(5, math.Max(1.5, 0.4e3*s.Curve.Top()/s.Curve.Turns()*k))
 	t := 0.25
 	if s.Design.Handedness == models.Left {
 		t = 0.75
 	}
 	for ; t < s.Curve.Turns()-0.1; t += math.Max(1, math.Floor(s.Curve.Turns()/5)) {
 		a, b := s.project(t-0.02, k), s.project(t+0.02, k)
-		d.Head(drawing.Winding, b, math.Atan2(b.Y-a.Y, b.X-a.X)*180/math.Pi, 3.2)
+		d.Head(drawing.Winding, b, math.Atan2(b.Y-a.Y, b.X-a.X)*180/math.Pi, size)
 	}
 }
 
@@ -137,11 +138,10 @@ func (s *sheet) sideDimensions(d *drawing.Drawing, k, half float64) {
 	end := 1e3 * c.Top() * k
 	start, last := 500*c.Diameter(0)*k, 500*c.Diameter(c.Turns())*k
 	d.Measure(drawing.Point{Y: low}, drawing.Point{X: end, Y: -last}, 0, -7, r.mm(c.Top()))
-	d.Measure(drawing.Point{Y: high}, drawing.Point{X: 1e3 * c.Riser() * k, Y: start}, 0, 4, "riser "+r.mm(c.Riser()))
+	d.Measure(drawing.Point{X: 1e3 * c.Riser() * k, Y: start}, drawing.Point{Y: high}, 0, 4, "riser "+r.mm(c.Riser()))
 	if from := s.spacingFrom(); from >= 0 {
 		a, b := s.project(from, k), s.project(from+1, k)
-		a.Y, b.Y = math.Max(a.Y, b.Y), math.Max(a.Y, b.Y)
-		d.Measure(a, b, 0, high-a.Y+11, fmt.Sprintf("turn %s to %s: %s", shortest(from), shortest(from+1), r.mm(c.Height(from+1)-c.Height(from))))
+		d.Measure(a, b, 0, high-math.Max(a.Y, b.Y)+11, fmt.Sprintf("turn %s to %s: %s", shortest(from), shortest(from+1), r.mm(c.Height(from+1)-c.Height(from))))
 	}
 	d.Measure(drawing.Point{X: end, Y: -last}, drawing.Point{X: end, Y: last}, 90, -9, "Ø "+r.mm(c.Diameter(c.Turns())))
 	if len(s.Design.Diameter) > 1 {
@@ -198,7 +198,7 @@ func (s *sheet) endSpiral(d *drawing.Drawing, k float64) {
 		p := s.Curve.At(turns * float64(i) / float64(n)).Pos
 		points[i] = drawing.Point{X: 1e3 * p.X * k, Y: 1e3 * p.Y * k}
 	}
-	d.Add(drawing.Polyline{Layer: drawing.Winding, Points: points, Width: 0.5})
+	d.Add(drawing.Polyline{Layer: drawing.Winding, Points: points, Width: 0.25})
 }
 
 // windingArrow is the arrow round the end view: the way the wire runs as it
@@ -219,7 +219,7 @@ func (s *sheet) windingArrow(d *drawing.Drawing, radius float64) {
 func (s *sheet) mainTable() *drawing.Table {
 	c, r, g := s.Curve, s.Resolution, s.Curve.Geometry()
 	k := cuts(c, s.Design.Feed.Strip.Turns, s.Design.Feed.Pin > 0)
-	t := &drawing.Table{Size: small, Row: 4.4, Columns: []drawing.Column{{Title: "", Width: 47}, {Title: "as drawn", Width: 32, Align: drawing.Right}, {Title: "as built", Width: 22}}}
+	t := &drawing.Table{Size: small, Row: 4.4, Columns: []drawing.Column{{Title: "", Width: 46}, {Title: "as drawn", Width: 32, Align: drawing.Right}, {Title: "as built", Width: 22}}}
 	row := func(what, drawn string) { t.Rows = append(t.Rows, []string{what, drawn}) }
 	row("turns", r.turns(s.Design.Turns))
 	row("Ø of the centre line at the plate", r.mm(c.Diameter(0)))

@@ -9,7 +9,7 @@ const arrow = 2.2
 // angle in degrees.
 func (d *Drawing) Head(l Layer, tip Point, angle, size float64) {
 	d.Add(Polyline{Layer: l, Closed: true, Filled: true, Points: []Point{
-		tip, tip.Toward(angle+180-13, size), tip.Toward(angle+180+13, size),
+		tip, tip.Toward(angle+180-16, size), tip.Toward(angle+180+16, size),
 	}})
 }
 
@@ -30,24 +30,27 @@ func (d *Drawing) Cross(l Layer, at Point, reach float64) {
 // dimensionText is the size of the figures on dimension lines, mm.
 const dimensionText = 2.8
 
-// Measure draws a dimension between two points that lie along an angle, its
-// line moved sideways (to the left of the angle where away is positive), and
-// writes the text on it, or beside it where it does not fit between the
-// arrows. The angle is 0 or 90.
+// Measure draws a dimension between two points along an angle, 0 or 90, its
+// line moved sideways (to the left of the angle where away is positive) from
+// the farther of them. The text stands on it, or past the second point where
+// it does not fit between the arrows.
 func (d *Drawing) Measure(a, b Point, angle, away float64, text string) {
 	side := angle + 90
 	if away < 0 {
 		side = angle - 90
 	}
 	reach := math.Abs(away)
-	level := func(p, like Point) Point {
-		if angle == 0 {
-			return Point{p.X, like.Y}
-		}
-		return Point{like.X, p.Y}
+	from, to := a.Toward(side, reach), b.Toward(side, reach)
+	switch {
+	case angle == 0 && away > 0:
+		from.Y, to.Y = math.Max(from.Y, to.Y), math.Max(from.Y, to.Y)
+	case angle == 0:
+		from.Y, to.Y = math.Min(from.Y, to.Y), math.Min(from.Y, to.Y)
+	case away > 0:
+		from.X, to.X = math.Min(from.X, to.X), math.Min(from.X, to.X)
+	default:
+		from.X, to.X = math.Max(from.X, to.X), math.Max(from.X, to.X)
 	}
-	base := a
-	from, to := a.Toward(side, reach), level(b, base).Toward(side, reach)
 	for _, ends := range [][2]Point{{a, from}, {b, to}} {
 		way := angleOf(ends[0], ends[1])
 		if ends[0].Distance(ends[1]) > 1 {
@@ -56,7 +59,6 @@ func (d *Drawing) Measure(a, b Point, angle, away float64, text string) {
 	}
 	gap, width := from.Distance(to), Width(text, dimensionText, false)
 	along := angleOf(from, to)
-	reading := angle
 	middle := Point{(from.X + to.X) / 2, (from.Y + to.Y) / 2}.Toward(angle+90, 0.7)
 	if gap >= 2.5*arrow {
 		d.Line(Dimension, from, to)
@@ -71,7 +73,7 @@ func (d *Drawing) Measure(a, b Point, angle, away float64, text string) {
 		middle = to.Toward(along, 2*arrow+width/2+0.8).Toward(angle+90, 0.7)
 		d.Line(Dimension, to, to.Toward(along, 2*arrow+width+1.2))
 	}
-	d.Add(Text{Layer: Lettering, At: middle, Size: dimensionText, Angle: reading, Align: Middle, S: text})
+	d.Add(Text{Layer: Lettering, At: middle, Size: dimensionText, Angle: angle, Align: Middle, S: text})
 }
 
 // Leader draws a line from what a note speaks of to the note.

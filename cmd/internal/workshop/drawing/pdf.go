@@ -18,6 +18,9 @@ const (
 type Page struct {
 	Drawing
 	Landscape bool
+	// Inset is drawn first, cut off at its frame.
+	Inset *Drawing
+	Frame Window
 }
 
 // Size is the page's width and height, mm.
@@ -54,6 +57,7 @@ func PDF(title string, pages []*Page) ([]byte, error) {
 		f.AddPageFormat(way, fpdf.SizeType{Wd: A4Width, Ht: A4Height})
 		_, height := p.Size()
 		w := pdfWriter{f: f, height: height}
+		w.inset(p)
 		for _, e := range p.Entities {
 			w.entity(e)
 		}
@@ -82,6 +86,18 @@ func (w pdfWriter) use(l Layer, width float64) {
 	w.f.SetDrawColor(k.r, k.g, k.b)
 	w.f.SetFillColor(k.r, k.g, k.b)
 	w.f.SetDashPattern(k.dash, 0)
+}
+
+func (w pdfWriter) inset(p *Page) {
+	if p.Inset == nil {
+		return
+	}
+	x, y := w.down(Point{p.Frame.Min.X, p.Frame.Max.Y})
+	w.f.ClipRect(x, y, p.Frame.Width(), p.Frame.Height(), false)
+	for _, e := range p.Inset.Entities {
+		w.entity(e)
+	}
+	w.f.ClipEnd()
 }
 
 func (w pdfWriter) entity(e Entity) {

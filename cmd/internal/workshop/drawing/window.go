@@ -42,7 +42,7 @@ func around(points []Point) Window {
 }
 
 // Within is what of the drawing lies inside the window: lines are cut at its
-// edge, arcs become chains, a text stays where the whole of it is inside.
+// edge, arcs become chains, a text stays whole where any of it is inside.
 func (d *Drawing) Within(w Window) *Drawing {
 	out := new(Drawing)
 	for _, e := range d.Entities {
@@ -113,8 +113,7 @@ func (p Polyline) within(w Window) []Entity {
 }
 
 func (t Text) within(w Window) []Entity {
-	b := t.bounds()
-	if w.Holds(b.Min) && w.Holds(b.Max) {
+	if t.bounds().Overlaps(w) {
 		return []Entity{t}
 	}
 	return nil
