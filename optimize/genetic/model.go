@@ -69,10 +69,14 @@ func thin(values []front.Value, layer []int, k int) []int {
 	return out
 }
 
-// better is the order of a tournament: the lower layer, then more room.
+// better is the order of parents: the lower layer, then more room.
 func better(a, b *genome) bool {
 	if a.rank != b.rank {
 		return a.rank < b.rank
 	}
-	return a.room > b.room
+	return roomier(a, b)
 }
+
+// roomier is the order of mates. Members behind the first layer are few and
+// have much room: mating them keeps alive what the front has lost.
+func roomier(a, b *genome) bool { return a.room > b.room }

@@ -1,10 +1,9 @@
 // Package genetic is the genetic searcher: non-dominated sorting under
-// limits, simulated binary crossover and polynomial mutation, on the
+// limits, simulated binary crossover and changes of every scale, on the
 // machinery of eaopt, driven by Ask and Tell.
 package genetic
 
 import (
-	"encoding/binary"
 	"fmt"
 	"math"
 	"math/rand"
@@ -23,9 +22,8 @@ type Config struct {
 	Seed        uint64
 }
 
-// disturbance is how often a child of differential variation is mutated too:
-// seldom, or it would lose the precision that its parents have.
-const disturbance = 0.2
+// rivals is how many members a tournament has.
+const rivals = 6
 
 // mostRejections is how many points a screen may reject for each that it
 // passes before the search gives up.
@@ -37,10 +35,9 @@ type Search struct {
 	c      Config
 	model  survival
 	pop    eaopt.Population
-	free   int
-	seen   map[string]bool // every point that was answered or asked
+	free   []int           // variables that can move at all
+	seen   map[uint64]bool // the mark of every point that was answered or asked
 	asked  eaopt.Individuals
-	shares shares
 	spent  int
 	why    string
 }
@@ -54,15 +51,15 @@ func New(d optimize.Domain, c Config, start []optimize.Evaluation) *Search {
 	if c.Population <= 0 {
 		c.Population = 100
 	}
-	s := &Search{domain: d, c: c, model: survival{size: c.Population}, shares: evenShares(), seen: map[string]bool{}}
+	s := &Search{domain: d, c: c, model: survival{size: c.Population}, seen: map[uint64]bool{}}
 	for i := range d.Space {
 		if d.Space[i].From < d.Space[i].To {
-			s.free++
+			s.free = append(s.free, i)
 		}
 	}
 	rng := optimize.Stream(c.Seed, "genetic start", 0)
 	for i := range start {
-		if key := bits(start[i].Point); !s.seen[key] {
+		if key := mark(start[i].Point); !s.seen[key] {
 			s.seen[key] = true
 			one := s.individual(start[i].Point, rng)
 			one.Genome.(*genome).value = start[i].Value()
@@ -96,7 +93,7 @@ func (s *Search) Ask() []optimize.Candidate {
 	s.asked = s.asked[:0]
 	for tries := 0; len(s.asked) < n; {
 		for _, child := range s.family() {
-			key := bits(child.Genome.(*genome).point)
+			key := mark(child.Genome.(*genome).point)
 			if len(s.asked) == n || s.seen[key] {
 				tries++
 				continue
@@ -137,68 +134,35 @@ func (s *Search) family() [2]eaopt.Individual {
 		}
 		return pair
 	}
-	for k := range pair {
-		pair[k] = s.parent().Clone(rng)
-	}
-	how := s.shares.pick(rng)
-	if how == differing {
-		for k := range pair {
-			s.differ(pair[k].Genome.(*genome))
-		}
-	} else if rng.Float64() < crossoverRate {
-		pair[0].Crossover(pair[1], rng)
-	}
+	pair = [2]eaopt.Individual{s.winner(better).Clone(rng), s.winner(roomier).Clone(rng)}
+	pair[0].Crossover(pair[1], rng)
+	how := variation(rng.Intn(variations))
 	for k := range pair {
 		g := pair[k].Genome.(*genome)
-		g.from = how
-		if how != differing || rng.Float64() < disturbance {
-			pair[k].Mutate(rng)
-		}
+		g.how, g.a, g.b = how, s.member().point, s.member().point
+		pair[k].Mutate(rng)
 		g.point = s.domain.Space.Canonical(g.point)
 	}
 	return pair
 }
 
-// differ moves a point by a part of the difference of two others of the
-// population: differential variation, whose steps shrink with the population
-// along every direction. Storn, Price, J. Global Optim. 11, 341, 1997.
-func (s *Search) differ(g *genome) {
-	rng, all := s.pop.RNG, s.pop.Individuals
-	a, b := all[rng.Intn(len(all))].Genome.(*genome).point, all[rng.Intn(len(all))].Genome.(*genome).point
-	factor := 0.9 * rng.Float64()
-	take := rng.Float64()
-	for i := range g.space {
-		v := &g.space[i]
-		switch {
-		case rng.Float64() >= take:
-		case v.Kind == space.Choice:
-			g.point[i] = a[i]
-		default:
-			g.point[i] = inside(g.point[i]+factor*(a[i]-b[i]), g.point[i], v.From, v.To, rng)
+// winner is the best in an order of a few members.
+func (s *Search) winner(better func(a, b *genome) bool) *eaopt.Individual {
+	all := s.pop.Individuals
+	best := &all[s.pop.RNG.Intn(len(all))]
+	for range rivals - 1 {
+		one := &all[s.pop.RNG.Intn(len(all))]
+		if better(one.Genome.(*genome), best.Genome.(*genome)) {
+			best = one
 		}
 	}
+	return best
 }
 
-// inside brings a value that left its bounds back to a place between the
-// bound and where it came from.
-func inside(x, was, low, high float64, rng *rand.Rand) float64 {
-	switch {
-	case x < low:
-		return low + rng.Float64()*(was-low)
-	case x > high:
-		return high - rng.Float64()*(high-was)
-	}
-	return x
-}
-
-// parent wins a tournament of two.
-func (s *Search) parent() eaopt.Individual {
+// member is anyone of the population.
+func (s *Search) member() *genome {
 	all := s.pop.Individuals
-	a, b := all[s.pop.RNG.Intn(len(all))], all[s.pop.RNG.Intn(len(all))]
-	if better(b.Genome.(*genome), a.Genome.(*genome)) {
-		return b
-	}
-	return a
+	return all[s.pop.RNG.Intn(len(all))].Genome.(*genome)
 }
 
 // Tell lets parents and offspring compete.
@@ -206,10 +170,8 @@ func (s *Search) Tell(batch []optimize.Evaluation) {
 	for i := range batch {
 		s.asked[i].Genome.(*genome).value = batch[i].Value()
 	}
-	fresh := s.asked[:len(batch)]
-	s.pop.Individuals = append(s.pop.Individuals, fresh...)
+	s.pop.Individuals = append(s.pop.Individuals, s.asked[:len(batch)]...)
 	s.apply()
-	s.shares.learn(fresh, s.pop.Individuals)
 	s.asked = nil
 }
 
@@ -222,13 +184,15 @@ func (s *Search) finish(why string) {
 	}
 }
 
-// bits is a key that two points share only if they are the same.
-func bits(p space.Point) string {
-	b := make([]byte, 0, 256)
+// mark tells points apart by 64 bits. That two of a million different points
+// share one has a chance of 3e-8, and costs no more than a point not asked.
+func mark(p space.Point) uint64 {
+	h := uint64(len(p))
 	for _, x := range p {
-		b = binary.LittleEndian.AppendUint64(b, math.Float64bits(x))
+		h = (h ^ math.Float64bits(x)) * 0x9e3779b97f4a7c15
+		h ^= h >> 32
 	}
-	return string(b)
+	return h
 }
 
 // Population is what the members of the last generation have, best first.
