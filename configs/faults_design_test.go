@@ -57,6 +57,75 @@ func TestFaultsOfADesign(t *testing.T) {
 	}
 }
 
+// Faults name the line in every format: that of the value, or of the block
+// that lacks something.
+func TestLinesInEveryFormat(t *testing.T) {
+	for format, text := range map[Format]string{
+		YAML: `# a comment
+title: lines
+turns:
+  - 8
+diameter: [58 mm,
+  46]
+spacing: 34
+handedness: right
+conductor:
+
+  material: coper
+
+feed: {height: 5 mm, impedance: 50 mm}
+hight: 3
+`,
+		JSON: `
+{"title": "lines",
+"turns": [
+8],
+"diameter": ["58 mm",
+"46"],
+"spacing": 34,
+"handedness": "right",
+"conductor": {
+
+"material": "coper"
+},
+"feed": {"height": "5 mm", "impedance": "50 mm"},
+"hight": 3}
+`,
+		TOML: `# a comment
+title = "lines"
+turns = [
+8]
+diameter = ["58 mm",
+"46"]
+spacing = 34
+handedness = "right"
+hight = 3
+
+conductor.material = "coper"
+
+feed = {height = "5 mm", impedance = "50 mm"}
+`,
+	} {
+		t.Run(string(format), func(t *testing.T) {
+			_, err := ParseDesign("d", []byte(text), format)
+			want := []expected{
+				{3, "turns", "is a list", "0.25 turn"},
+				{6, "diameter", `"46" has no unit`, "58 mm"},
+				{7, "spacing", `"34" has no unit`, "58 mm"},
+				{9, "conductor.diameter", "is missing", "2 mm"},
+				{11, "conductor.material", `"coper" is not known`, "did you mean copper?"},
+				{13, "feed.impedance", "is no unit of an impedance", "50 ohm"},
+				{14, "hight", "is no key here", "it should be"},
+			}
+			if format == TOML { // whose dotted keys open a block, and whose other keys come before
+				want[3].line = 11
+				want = []expected{want[0], want[1], want[2], {9, "hight", "is no key here", "it should be"}, want[3], want[4], want[5]}
+			}
+			checkFaults(t, err, "d", want...)
+		})
+	}
+}
+
 func TestAnEmptyDesignLacksEverything(t *testing.T) {
 	_, err := ParseDesign("d.yaml", []byte("title: nothing yet\n"), YAML)
 	var want []expected

@@ -85,6 +85,10 @@ func TestWritingRounds(t *testing.T) {
 		off.Feed.Height += 1e-6 * shift.Draw(t, "height")
 		off.Feed.Impedance += 1e-2 * shift.Draw(t, "impedance")
 		off.Conductor.Diameter += 1e-6 * shift.Draw(t, "wire")
+		if d.Feed.Lead.Shape != "" {
+			off.Feed.Lead.Turns += 1e-3 * shift.Draw(t, "lead")
+			off.Feed.Lead.Spacing += 1e-6 * shift.Draw(t, "lead")
+		}
 		if diff := cmp.Diff(d, reread(t, off)); diff != "" {
 			t.Fatalf("(-on the grid +read):\n%s", diff)
 		}

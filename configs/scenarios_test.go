@@ -1,6 +1,7 @@
 package configs
 
 import (
+	"math"
 	"slices"
 	"strings"
 	"testing"
@@ -51,6 +52,9 @@ aims: [{figure: gain, want: most}]
 	s := &br.Spec
 	if s.Band.Samples != 5 || br.Seed != 1 || br.FrontAtMost != 200 || s.Base.Feed.Impedance != 50 || s.Base.Ground.Kind != models.Infinite || s.Base.Handedness != models.Left || s.Vary[1].Knots != 1 {
 		t.Errorf("resolved as\n%s", br.Write())
+	}
+	if degrees(s.Cone) != 15 {
+		t.Errorf("a cone of %v rad", s.Cone)
 	}
 	equal(t, "ladder", br.Ladder, []Rung{{FullWave, "standard"}})
 	equal(t, "shares", br.Search, Shares{0.1, 0.7, 0.2})
@@ -106,13 +110,51 @@ func TestWavelengths(t *testing.T) {
 	if mid := models.LightSpeed / 1.68e9; v.From != onGrid(0.2*mid, Length) || v.To != onGrid(0.4*mid, Length) {
 		t.Errorf("from %v to %v at a wavelength of %v", v.From, v.To, mid)
 	}
-	// A step in wavelengths divides the range as it was written; the upper
-	// end follows the rounded steps.
-	br = readBrief(t, edit(t, soundBrief, "    from: 0.19 wl", "    from: 0.2 wl", "    to: 0.42 wl", "    to: 0.3 wl\n    step: 0.01 wl"), YAML)
-	if v = br.Spec.Vary[1]; v.To != onGrid(v.From+10*v.Step, Length) {
-		t.Errorf("from %v to %v by %v", v.From, v.To, v.Step)
+}
+
+// A step in wavelengths divides the range as it was written; the upper end
+// follows the rounded steps, and stays where it was asked for as nearly as
+// they can have it.
+func TestSteps(t *testing.T) {
+	for _, c := range []struct {
+		quantity string
+		steps    float64
+		to       float64
+	}{
+		{"diameter: {from: 0.2 wl, to: 0.3 wl, step: 0.01 wl}", 10, 0.053534},
+		{"diameter: {from: 0.19 wl, to: 0.42 wl, step: 0.01 wl}", 23, 0.074948},
+		{"diameter: {from: 0.2 wl, to: 0.3 wl, step: 0.001 wl}", 100, 0.053534},
+		{"diameter: {from: 0.2 wl, to: 53.69 mm, step: 1 mm}", 18, 0.05369},
+		{"diameter: {from: 20 mm, to: 60.0004 mm, step: 10 mm}", 4, 0.06},
+		{"diameter: {from: 20 mm, to: 20 mm, step: 10 mm}", 0, 0.02},
+		{"turns: {from: 3, to: 12, step: 0.0005}", 9000, 12},
+		{"turns: {from: 0.1, to: 1.3, step: 0.1}", 12, 1.3},
+	} {
+		text := edit(t, soundBrief, "    from: 0.19 wl\n    to: 0.42 wl\n    knots: 3\n", "", "  turns: {from: 3, to: 12, step: 0.25}\n  diameter:\n", "  "+c.quantity+"\n")
+		at := 0
+		if strings.HasPrefix(c.quantity, "turns") {
+			text = edit(t, text, "  spacing: {", "  diameter: {from: 40 mm, to: 60 mm}\n  spacing: {")
+		} else {
+			text, at = edit(t, text, "  spacing: {", "  turns: {from: 3, to: 12}\n  spacing: {"), 1
+		}
+		br := readBrief(t, text, YAML)
+		v := br.Spec.Vary[at]
+		d := varied[v.Quantity].d
+		if v.To != onGrid(v.From+c.steps*v.Step, d) || math.Abs(v.To-c.to) > c.steps*0.5/gridsPerUnit[d] {
+			t.Errorf("%s: from %v to %v by %v", c.quantity, v.From, v.To, v.Step)
+		}
+		rereadBrief(t, br, "b.yaml")
 	}
-	rereadBrief(t, br, "b.yaml")
+}
+
+// What the remedy says is taken.
+func TestRemedyOfAStep(t *testing.T) {
+	spoilt := edit(t, soundBrief, "    from: 0.19 wl", "    from: 0.2 wl", "    to: 0.42 wl", "    to: 55 mm", "    knots: 3\n", "    step: 1 mm\n")
+	_, err := ParseBrief("b.yaml", []byte(spoilt), YAML)
+	checkFaults(t, err, "b.yaml", expected{24, "vary.diameter.step", "does not divide the way from 35.69 mm to 55 mm", "let it end at 54.69 mm or 55.69 mm"})
+	for _, end := range []string{"54.69 mm", "55.69 mm"} {
+		readBrief(t, edit(t, spoilt, "    to: 55 mm", "    to: "+end), YAML)
+	}
 }
 
 // Where the band is wrong, wavelengths have no size: nothing that rests on
@@ -121,7 +163,7 @@ func TestAWrongBandIsOneFault(t *testing.T) {
 	for _, change := range [][2]string{
 		{"from: 1.66 GHz", "from: 1.66 GZ"}, {"from: 1.66 GHz", "from: 9 GHz"}, {"from: 1.66 GHz", "from: 0 GHz"},
 	} {
-		_, err := ParseBrief("b.yaml", []byte(edit(t, soundBrief, change[0], change[1], "{at_most: 120 mm}", "{at_most: 35 mm}")), YAML)
+		_, err := ParseBrief("b.yaml", []byte(edit(t, soundBrief, change[0], change[1], "    from: 0.19 wl", "    from: 40 mm", "    to: 0.42 wl", "    to: 0.25 wl", "{from: 20 mm, to: 60 mm, knots: 2}", "{from: 0.2 wl, to: 60 mm}", "vswr: {at_most: 2}", "length: {at_most: 120 mm}")), YAML)
 		if faults := allFaults(t, err); len(faults) != 1 || faults[0].Key != "band.from" {
 			t.Errorf("%s:\n%v", change[1], err)
 		}
@@ -196,6 +238,20 @@ func TestNothingIsNone(t *testing.T) {
 		t.Errorf("%+v, %+v", br.Spec.Margins, br.Spec.Base)
 	}
 	rereadBrief(t, br, "b.yaml")
+}
+
+// Parts of a hundred are kept to the digits that are written.
+func TestPartsReadBack(t *testing.T) {
+	br := readBrief(t, edit(t, soundBrief,
+		"{sample: 10 %, genetic: 70 %, simplex: 20 %}", "{sample: 33.3333333333333 %, genetic: 33.3333333333333 %, simplex: 33.3333333333334 %}",
+		"share: 0.1 %", "share: 0.123456789012345 %", "time: 10 min", "time: 12345678.9012345 s"), YAML)
+	rereadBrief(t, br, "b.yaml")
+}
+
+// A riser may vary from below what its conductor needs, as long as it ends
+// above.
+func TestRiserThatMayBeLongEnough(t *testing.T) {
+	readBrief(t, edit(t, soundBrief, "{from: 4 mm, to: 12 mm}", "{from: 1 mm, to: 12 mm}"), YAML)
 }
 
 func TestModels(t *testing.T) {

@@ -232,6 +232,7 @@ func TestApply(t *testing.T) {
 		{"ladder, asked for", ladder, "fine", []Rung{{Model: ClosedForm}, {FullWave, "fine"}, {FullWave, "fine"}}},
 		{"ladder, its last asked for", ladder, "standard", []Rung{{Model: ClosedForm}, {FullWave, "standard"}, {FullWave, "standard"}}},
 		{"closed form", [2]string{"model: full-wave", "model: closed-form"}, "fine", []Rung{{Model: ClosedForm}}},
+		{"ladder of full waves", [2]string{"model: full-wave", "model: {ladder: [full-wave draft, full-wave fine]}"}, "", []Rung{{FullWave, "draft"}, {FullWave, "fine"}}},
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			bareEnvironment(t)

@@ -120,7 +120,7 @@ func (r *reader) step(k *block, v *objectives.Vary) {
 	off := math.Abs(steps - whole)
 	rounding := 1.5 / gridsPerUnit[d] // of two ends, and a little more
 	switch {
-	case whole < 1 || off > 1e-6*math.Max(1, whole) && off*step > rounding:
+	case whole < 1 || off*step > rounding:
 		below := v.From + math.Floor(steps)*v.Step
 		k.fault("step", "does not divide the way from "+show(v.From, d)+" to "+show(v.To, d), "let it end at "+show(onGrid(below, d), d)+" or "+show(onGrid(below+v.Step, d), d)+", or choose another step")
 	case whole > mostLevels:
