@@ -116,7 +116,7 @@ func (f *former) roll(p drawing.Point) r3.Vec {
 	if f.cone() {
 		apex, sin := f.apex(), math.Sin(f.tilt())
 		along := apex.Distance(p)
-		turn := math.Atan2(p.X, math.Abs(p.Y-apex.Y)) * 180 / math.Pi
+		turn := math.Atan2(p.X, math.Copysign(1, f.slope)*(p.Y-apex.Y)) * 180 / math.Pi
 		azimuth = 180 + turn/math.Abs(sin)
 		// The surface's radius is straight over height: undo it.
 		z = (along*math.Abs(sin) - f.surface(0)) / f.slope
@@ -126,8 +126,16 @@ func (f *former) roll(p drawing.Point) r3.Vec {
 	return r3.Vec{X: r * cos, Y: r * sin, Z: z - f.under*math.Sin(f.tilt())}
 }
 
-// foot is where the lower end of the surface's bare stretch begins: the
-// plate; head is where the former ends, past the open end.
+// overhang is how far the former goes past the open end, mm.
 const overhang = 10.0
 
-func (f *former) head() float64 { return 1e3*f.curve.Top() + overhang }
+// head is the height at which the former ends; a cone that would come to its
+// point before that ends blunt.
+func (f *former) head() float64 {
+	head := 1e3*f.curve.Top() + overhang
+	if !f.combs && f.slope < 0 {
+		const blunt = 1.0 // mm of radius
+		head = math.Min(head, (f.surface(0)-blunt)/-f.slope)
+	}
+	return head
+}

@@ -65,7 +65,7 @@ func Settle(ctx context.Context, rung objectives.Rung, d models.Design, brief *o
 // to show: at least 2 % of mid-band to either side.
 func wideBand(b models.Band) models.Band {
 	more := math.Max((b.To-b.From)/2, 0.02*b.Mid())
-	return models.Band{From: b.From - more, To: b.To + more, Samples: 61}
+	return models.Band{From: b.From - more, To: b.To + more, Samples: 41}
 }
 
 // settleAt tries one resolution.

@@ -52,12 +52,12 @@ var antennas = map[string]models.Design{
 		Ground: models.Ground{Kind: models.Disc, Diameter: 0.2}, Band: models.Band{From: 1.66e9, To: 1.70e9, Samples: 5},
 	},
 	"large": {
-		Title: strings.Repeat("a title that runs on and on ", 5), Turns: 26, Diameter: models.Law{0.22}, Spacing: models.Law{0.15}, Handedness: models.Left,
-		Conductor: copper(0.010), Feed: models.Feed{Height: 0.025, Impedance: 50}, Band: models.Band{From: 433e6, To: 435e6, Samples: 3},
+		Title: strings.Repeat("a title that runs on and on ", 5), Turns: 25, Diameter: models.Law{0.22}, Spacing: models.Law{0.15}, Handedness: models.Left,
+		Conductor: copper(0.010), Feed: models.Feed{Height: 0.025, Impedance: 50}, Band: models.Band{From: 434e6, To: 434e6, Samples: 1},
 	},
 	"short": {
 		Turns: 0.9, Diameter: models.Law{0.05}, Spacing: models.Law{0.03}, Handedness: models.Left, Conductor: copper(0.002),
-		Feed: models.Feed{Height: 0.006, Impedance: 75}, Band: models.Band{From: 1.9e9, To: 2.0e9, Samples: 11},
+		Feed: models.Feed{Height: 0.006, Impedance: 75}, Band: models.Band{From: 1.95e9, To: 1.97e9, Samples: 11},
 	},
 }
 
@@ -173,7 +173,8 @@ func TestCautions(t *testing.T) {
 // TestMirror: the mirror image of a design has every word and arrow of
 // handedness turned round, and nothing else of its numbers changed.
 func TestMirror(t *testing.T) {
-	for name, d := range antennas {
+	for _, name := range []string{"cylinder", "cone", "free", "short"} {
+		d := antennas[name]
 		other := d
 		other.Handedness = -d.Handedness
 		a, b := sheetOf(t, d, Power{}), sheetOf(t, other, Power{})
