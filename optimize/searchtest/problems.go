@@ -6,6 +6,7 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"strings"
 
 	"turnwise/optimize"
 	"turnwise/optimize/front"
@@ -62,6 +63,17 @@ func Problems() []*Problem {
 		zdt1(shifts), zdt2(shifts), zdt3(shifts), zdt4(shifts), zdt6(shifts), dtlz2(shifts),
 		bnh(), srn(), tnk(), osy(),
 	}
+}
+
+// ZDT1In10 is ZDT1 with 10 variables and its shifted twin, for searchers that
+// may ask little.
+func ZDT1In10() []*Problem {
+	short := func(p *Problem) *Problem {
+		p.Name = "zdt1-10" + strings.TrimPrefix(p.Name, "zdt1")
+		p.Domain.Space = p.Domain.Space[:10]
+		return p
+	}
+	return []*Problem{short(zdt1(nil)), short(zdt1(shifts))}
 }
 
 // ProblemByName finds a problem; it panics when there is none.
