@@ -178,7 +178,9 @@ func sayBuilt(s streams, out string, b *workshop.Settled, files []workshop.File)
 		fmt.Fprintf(&text, "design %s is %s rounded to %s: gain moves by %+.3f dB at most\n", id, b.Original, b.Resolution, b.Moved)
 	}
 	fmt.Fprintf(&text, "gain %.2f dBic, axial ratio %.2f dB, VSWR %.2f over the band\n", b.Figures[objectives.Gain], b.Figures[objectives.AxialRatio], b.Figures[objectives.VSWR])
-	fmt.Fprintf(&text, "%s\n", workshop.HandWords(&b.Design)[0])
+	for _, words := range workshop.HandWords(&b.Design) {
+		fmt.Fprintf(&text, "%s\n", words)
+	}
 	for _, f := range files {
 		fmt.Fprintf(&text, "%s\n", filepath.Join(out, f.Name))
 	}
