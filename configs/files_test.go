@@ -91,8 +91,8 @@ func TestPathsThatAreNoFiles(t *testing.T) {
 	}
 }
 
-// A file cut short anywhere is read whole or refused, never half understood
-// as something else: the last line that is missing is always missed.
+// A file cut short anywhere is refused in so many words, unless what is left
+// is a design by itself, which then reads back.
 func TestTruncatedFiles(t *testing.T) {
 	for _, format := range []Format{YAML, TOML, JSON} {
 		whole := inFormat(t, soundDesign, format)
