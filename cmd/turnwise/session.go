@@ -42,9 +42,7 @@ type session struct {
 	past    []optimize.Evaluation
 	used    time.Duration // by earlier sessions
 	done    bool          // the run was finished before
-	starts  map[string]bool
-	written time.Time // when front.csv was last
-	shown   int       // front members then
+	written time.Time     // when front.csv was last
 	so      front.Archive
 	reused  atomic.Int64 // answers taken from other runs
 	all     []optimize.Evaluation

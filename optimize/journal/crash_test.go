@@ -325,7 +325,9 @@ func TestScribbled(t *testing.T) {
 		b := broken[[]string{"", "-wal"}[rand.Intn(2)]]
 		for range 1 + rand.Intn(30) {
 			at := rand.Intn(len(b))
-			rand.Read(b[at:min(len(b), at+1+rand.Intn(20))])
+			for k := at; k < min(len(b), at+1+rand.Intn(20)); k++ {
+				b[k] = byte(rand.Intn(256))
+			}
 		}
 		path := lie(t, memory(t), broken)
 		w, err := Open(path)

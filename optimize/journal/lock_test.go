@@ -103,8 +103,8 @@ func TestLockFoundLyingAbout(t *testing.T) {
 			}
 		})
 	}
-	if born(alive) == "" || born(alive) != born(alive) || born(alive) == born(os.Getpid()) {
-		t.Errorf("born %q and %q: no use", born(alive), born(os.Getpid()))
+	if first, again, own := born(alive), born(alive), born(os.Getpid()); first == "" || first != again || first == own {
+		t.Errorf("born %q, %q and %q: no use", first, again, own)
 	}
 }
 
