@@ -6,13 +6,19 @@ import (
 	"turnwise/cmd/internal/workshop/drawing"
 )
 
-// cautionsPage holds the cautions and the estimate of exposure.
+// cautionsPage holds the cautions, the model's own, and the estimate of
+// exposure.
 func (s *sheet) cautionsPage() leaf {
 	l := newLeaf("before you build or transmit", "")
 	y := top
 	y -= l.Heading(drawing.Point{X: left, Y: y}, across, heading, "Before you build or transmit")
 	for _, c := range Cautions {
 		y -= l.Paragraph(drawing.Point{X: left, Y: y}, across, body, c) + 1.5
+	}
+	y -= 4
+	y -= l.Heading(drawing.Point{X: left, Y: y}, across, heading, "What the figures rest on")
+	for _, w := range append([]string{s.Response.Statement}, s.Response.Warnings...) {
+		y -= l.Paragraph(drawing.Point{X: left, Y: y}, across, small, sentence(w)) + 1
 	}
 	y -= 4
 	y -= l.Heading(drawing.Point{X: left, Y: y}, across, heading, "Exposure in the beam")

@@ -8,10 +8,10 @@ import (
 	"turnwise/models"
 )
 
-// feedPage shows the riser and the first turn unrolled, its heights, the
-// strip's flat pattern and the line section.
+// feedPage shows the riser and the first turn unrolled, its heights and the
+// line section.
 func (s *sheet) feedPage() leaf {
-	view, name := s.firstTurn(across-30, 80)
+	view, name := s.firstTurn(across-30, 70)
 	l := newLeaf("feed: riser and first turn", name)
 	y := top
 	y -= l.Heading(drawing.Point{X: left, Y: y}, across, heading, "First turn, unrolled, seen from outside, scale "+name)
@@ -24,20 +24,17 @@ func (s *sheet) feedPage() leaf {
 	for _, words := range s.feedWords() {
 		y -= l.Paragraph(drawing.Point{X: left, Y: y}, across, body, words) + 1
 	}
-	y -= s.riserSection(l, drawing.Point{X: left, Y: y - 3}) + 8
-	if s.Design.Feed.Strip.Turns > 0 {
-		s.stripPattern(l, drawing.Point{X: left, Y: y})
-	}
+	s.riserSection(l, drawing.Point{X: left, Y: y - 3})
 	return l
 }
 
 // riserSection draws plate, opening and riser cut through the riser's axis,
-// seen from outside, below a place; it gives the height it takes.
-func (s *sheet) riserSection(l leaf, at drawing.Point) float64 {
+// seen from outside, below a place.
+func (s *sheet) riserSection(l leaf, at drawing.Point) {
 	r, c := s.Resolution, s.Curve
 	pin, wide, height := 1e3*s.Design.PinDiameter(), opening*1e3*s.Design.PinDiameter(), 1e3*c.Riser()
 	reach := math.Max(2*wide, 1.5*height)
-	name, k := fitScale(2*reach, 1.7*height, 110, 45)
+	name, k := fitScale(2*reach, 1.7*height, 110, 40)
 	h := l.Heading(at, across, heading, "Section through the riser, seen from outside, scale "+name)
 	d := new(drawing.Drawing)
 	const plate = 4.0 // mm of paper: as thick as the plate is
@@ -59,7 +56,6 @@ func (s *sheet) riserSection(l leaf, at drawing.Point) float64 {
 	d.Leader(drawing.Point{X: side, Y: height * k / 2}, drawing.Point{X: hand * (reach*k + 6), Y: height * k / 2}, "riser Ø "+bought(s.Design.PinDiameter()))
 	b := d.Bounds()
 	l.Place(d, at.X+(across-b.Width())/2-b.Min.X, at.Y-h-3-b.Max.Y)
-	return h + 3 + b.Height()
 }
 
 // windingStart draws both edges of the conductor from the riser's top on.
@@ -177,49 +173,4 @@ func (s *sheet) feedWords() []string {
 		out = append(out, fmt.Sprintf("Line section between connector and plate: %s Ω, %s long, for a line with a velocity of %s of light's. In another line the length goes with its velocity.", fixed(t.Impedance, r.digits), r.mm(t.Length), shortest(velocity)))
 	}
 	return append(out, fmt.Sprintf("Expected for a connection of %s Ω. Heights of the first turn decide the match: set them with gauge blocks before anything is glued.", shortest(f.Impedance)))
-}
-
-// strip is a strip cut flat: part of a ring. A flat strip on edgeless rise
-// follows the winding's curvature within its own face, R/(R² + c²) for a
-// radius R and a rise of 2πc a turn (geodesic curvature of a helix on the
-// right helicoid, any text on differential geometry).
-type strip struct {
-	radius, angle, length, width float64 // m, degrees, m, m
-}
-
-func (s *sheet) flatStrip() strip {
-	c, st := s.Curve, s.Design.Feed.Strip
-	length := c.Arc(st.Turns) - c.Riser()
-	r := (c.Diameter(0) + c.Diameter(st.Turns)) / 4
-	rise := (c.Height(st.Turns) - c.Height(0)) / st.Turns / (2 * math.Pi)
-	radius := (r*r + rise*rise) / r
-	return strip{radius: radius, angle: length / radius * 180 / math.Pi, length: length, width: st.Width}
-}
-
-// stripPattern draws the strip's flat pattern below a place.
-func (s *sheet) stripPattern(l leaf, at drawing.Point) {
-	p, r := s.flatStrip(), s.Resolution
-	sweep := math.Min(p.angle, 355)
-	outer, inner := 1e3*(p.radius+p.width/2), 1e3*math.Max(p.radius-p.width/2, 0)
-	name, k := fitScale(2*outer, outer*(1-math.Cos(math.Min(sweep/2, 180)*math.Pi/180))+1e3*p.width, 80, 55)
-	h := l.Heading(at, across, heading, "Strip, flat pattern, scale "+name)
-	d := new(drawing.Drawing)
-	from := 90 - sweep/2
-	for _, radius := range []float64{inner, outer} {
-		d.Add(drawing.Arc{Layer: drawing.Outline, Radius: radius * k, From: from, Sweep: sweep})
-	}
-	d.Add(drawing.Arc{Layer: drawing.Axis, Radius: 1e3 * p.radius * k, From: from, Sweep: sweep})
-	for _, a := range []float64{from, from + sweep} {
-		d.Line(drawing.Outline, drawing.Point{}.Toward(a, inner*k), drawing.Point{}.Toward(a, outer*k))
-	}
-	b := d.Bounds()
-	l.Place(d, at.X+4-b.Min.X, at.Y-h-4-b.Max.Y)
-	t := &drawing.Table{Size: small, Row: 4.6, Columns: []drawing.Column{{Title: "flat strip", Width: 45}, {Title: "mm, °", Width: 22, Align: drawing.Right}}, Rows: [][]string{
-		{"inner radius", r.mm(math.Max(p.radius-p.width/2, 0))}, {"outer radius", r.mm(p.radius + p.width/2)}, {"width", r.mm(p.width)},
-		{"angle", degree(p.angle)}, {"length along the middle", r.mm(p.length)},
-	}}
-	if p.angle > 355 {
-		t.Rows = append(t.Rows, []string{"more than a ring: cut in parts", ""})
-	}
-	l.Table(drawing.Point{X: left + 100, Y: at.Y - h - 4}, t)
 }

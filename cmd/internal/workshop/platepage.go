@@ -83,22 +83,24 @@ func (s *sheet) plateWords() []string {
 		"The plate conducts over its whole upper face: bare metal under the connector's flange, no paint.")
 }
 
-// plateView draws the plate from above with its holes.
+// plateView draws the plate from above with its holes; the plate's own edge
+// where it fits beside them.
 func (s *sheet) plateView(holes []hole, room float64) (*drawing.Drawing, string) {
 	g := s.Design.Ground
-	finite := g.Kind == models.Disc || g.Kind == models.Cup
 	half := 650 * s.Curve.Diameter(0)
-	if finite {
-		half = 500 * g.Diameter
-	}
 	name, k := fitScale(2*half, 2*half, across-60, room)
+	edge := 500 * g.Diameter
+	finite := (g.Kind == models.Disc || g.Kind == models.Cup) && 2*edge*k <= room
+	if finite {
+		half = math.Max(half, edge)
+	}
 	d := new(drawing.Drawing)
 	h := half * k
 	d.Line(drawing.Axis, drawing.Point{X: -h - 5}, drawing.Point{X: h + 5})
 	d.Line(drawing.Axis, drawing.Point{Y: -h - 5}, drawing.Point{Y: h + 5})
 	d.Add(drawing.Text{Layer: drawing.Lettering, At: drawing.Point{X: h + 6, Y: -1}, Size: body, S: "+x"}, drawing.Text{Layer: drawing.Lettering, At: drawing.Point{X: 1.5, Y: h + 3.5}, Size: body, S: "+y"})
 	if finite {
-		d.Circle(drawing.Outline, drawing.Point{}, h)
+		d.Circle(drawing.Outline, drawing.Point{}, edge*k)
 	}
 	if !s.former.combs {
 		d.Circle(drawing.Axis, drawing.Point{}, s.former.surface(0)*k)
@@ -112,7 +114,7 @@ func (s *sheet) plateView(holes []hole, room float64) (*drawing.Drawing, string)
 	}
 	d.Measure(drawing.Point{}, drawing.Point{X: holes[0].At.X * k}, 0, -h-6, s.Resolution.mm(holes[0].At.X/1e3))
 	if finite {
-		d.Measure(drawing.Point{X: -h}, drawing.Point{X: h}, 0, -h-13, "Ø "+s.Resolution.mm(g.Diameter))
+		d.Measure(drawing.Point{X: -edge * k}, drawing.Point{X: edge * k}, 0, -h-13, "Ø "+s.Resolution.mm(g.Diameter))
 	}
 	return d, name
 }

@@ -51,7 +51,11 @@ const (
 func (s *sheet) pages() []*drawing.Page {
 	leaves := []leaf{s.viewsPage()}
 	leaves = append(leaves, s.windingPages()...)
-	leaves = append(leaves, s.feedPage(), s.platePage(), s.testPage(), s.trimPage(), s.cautionsPage())
+	leaves = append(leaves, s.feedPage())
+	if s.Design.Feed.Strip.Turns > 0 {
+		leaves = append(leaves, s.stripPage())
+	}
+	leaves = append(leaves, s.platePage(), s.testPage(), s.trimPage(), s.cautionsPage())
 	pages := make([]*drawing.Page, len(leaves))
 	for i, l := range leaves {
 		s.titleBlock(l, i+1, len(leaves))

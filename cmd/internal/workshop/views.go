@@ -11,7 +11,7 @@ import (
 // viewsPage shows the antenna from the side and from its open end, with its
 // main dimensions and the way to wind it.
 func (s *sheet) viewsPage() leaf {
-	side, name := s.sideView(across-40, 75)
+	side, name := s.sideView(across-40, 62)
 	l := newLeaf("antenna, views and main dimensions", name)
 	y := top
 	y -= l.Heading(drawing.Point{X: left, Y: y}, across, heading, "Side view, riser at the upper edge, scale "+name)
@@ -145,7 +145,7 @@ func (s *sheet) sideDimensions(d *drawing.Drawing, k, half float64) {
 	}
 	d.Measure(drawing.Point{X: end, Y: -last}, drawing.Point{X: end, Y: last}, 90, -9, "Ø "+r.mm(c.Diameter(c.Turns())))
 	if len(s.Design.Diameter) > 1 {
-		d.Measure(drawing.Point{Y: -start}, drawing.Point{Y: start}, 90, 7, "Ø "+r.mm(c.Diameter(0)))
+		d.Measure(drawing.Point{Y: start}, drawing.Point{Y: -start}, 90, 7, "Ø "+r.mm(c.Diameter(0)))
 	}
 }
 

@@ -2,6 +2,8 @@ package workshop
 
 import (
 	"fmt"
+	"unicode"
+	"unicode/utf8"
 
 	"turnwise/models"
 )
@@ -38,6 +40,12 @@ func HandWords(d *models.Design) []string {
 		words = append(words, fmt.Sprintf("CAUTION: the design file wants %s-hand circular, which this winding does not radiate. Ask before winding.", d.Wanted()))
 	}
 	return words
+}
+
+// sentence makes a sentence of a clause.
+func sentence(s string) string {
+	first, n := utf8.DecodeRuneInString(s)
+	return string(unicode.ToUpper(first)) + s[n:] + "."
 }
 
 // Cautions are what a workshop and an operator must be told, in the README's

@@ -2,13 +2,17 @@ package workshop
 
 import (
 	"context"
+	"fmt"
 	"os"
 	"strings"
 	"testing"
 
+	"pgregory.net/rapid"
+
 	"turnwise/cmd/internal/workshop/drawing"
 	"turnwise/configs"
 	"turnwise/models"
+	"turnwise/models/helix"
 	"turnwise/models/moment"
 	"turnwise/objectives"
 )
@@ -121,26 +125,65 @@ func words(pages []*drawing.Page) string {
 
 // TestLayout: on no sheet does writing lie on writing or outside the frame.
 func TestLayout(t *testing.T) {
-	frame := drawing.Window{Min: drawing.Point{X: frameLeft, Y: frameBottom}, Max: drawing.Point{X: drawing.A4Width - frameRight, Y: drawing.A4Height - frameTop}}
 	for name, d := range antennas {
 		for i, p := range sheetOf(t, d, Power{Watts: 10, Limit: 5}).pages() {
-			all := texts(&p.Drawing)
-			for j, a := range all {
-				box := boxOf(a)
-				if !frame.Holds(box.Min) || !frame.Holds(box.Max) {
-					t.Errorf("%s, sheet %d: %q leaves the frame: %.1f", name, i+1, a.S, box)
-				}
-				for _, b := range all[:j] {
-					if box.Overlaps(boxOf(b)) {
-						t.Errorf("%s, sheet %d: %q lies on %q", name, i+1, a.S, b.S)
-					}
-				}
-			}
-			if b := p.Bounds().Grown(-0.01); !frame.Holds(b.Min) || !frame.Holds(b.Max) {
-				t.Errorf("%s, sheet %d: drawn from %v to %v, outside the frame", name, i+1, b.Min, b.Max)
+			for _, fault := range layoutFaults(p) {
+				t.Errorf("%s, sheet %d: %s", name, i+1, fault)
 			}
 		}
 	}
+}
+
+// TestLayoutOfAny draws windings of all kinds with everything that can be
+// said of one, on the answers of another.
+func TestLayoutOfAny(t *testing.T) {
+	canned := sheetOf(t, antennas["cone"], Power{})
+	rapid.Check(t, func(t *rapid.T) {
+		d := wound.Draw(t, "design")
+		d.Title, d.Band, d.FeedsReflector, d.Sense = "any", antennas["cone"].Band, true, -d.Handedness
+		d.Conductor.Wall, d.Insulation = 0.0003, models.Insulation{Thickness: 0.0002, Permittivity: 2.3}
+		d.Feed.Transformer = antennas["cone"].Feed.Transformer
+		if rapid.Bool().Draw(t, "cup") {
+			d.Ground = models.Ground{Kind: models.Cup, Diameter: rapid.Float64Range(0.25, 0.9).Draw(t, "cup Ø"), Rim: rapid.Float64Range(0.01, 0.2).Draw(t, "rim")}
+		}
+		c, err := helix.Wind(&d)
+		if err != nil {
+			t.Fatal(err)
+		}
+		settled := *canned.Settled
+		settled.Design, settled.Curve, settled.Resolution = d, c, rapid.SampledFrom([]Resolution{Coarse, Fine}).Draw(t, "resolution")
+		settled.Response.Warnings = []string{strings.Repeat("a long warning of how the model ends ", 6), strings.Repeat("and another one ", 12), "and a third"}
+		s := &sheet{Settled: &settled, former: newFormer(&d, c), trim: canned.trim, power: Power{Watts: 1234.5, Limit: 0.123},
+			margins: objectives.Margins{Diameter: 0.0005, Spacing: 0.0003, FeedHeight: 0.0002}, stock: objectives.Stock{Name: "a stock with a long name", Coil: 0.01}}
+		for i, p := range s.pages() {
+			for _, fault := range layoutFaults(p) {
+				t.Errorf("sheet %d: %s", i+1, fault)
+			}
+		}
+	})
+}
+
+// layoutFaults says what of a page lies where it must not.
+func layoutFaults(p *drawing.Page) []string {
+	frame := drawing.Window{Min: drawing.Point{X: frameLeft, Y: frameBottom}, Max: drawing.Point{X: drawing.A4Width - frameRight, Y: drawing.A4Height - frameTop}}
+	var faults []string
+	all := texts(&p.Drawing)
+	boxes := make([]drawing.Window, len(all))
+	for j, a := range all {
+		boxes[j] = boxOf(a)
+		if box := boxes[j]; !frame.Holds(box.Min) || !frame.Holds(box.Max) {
+			faults = append(faults, fmt.Sprintf("%q leaves the frame: %.1f", a.S, box))
+		}
+		for k, b := range all[:j] {
+			if boxes[j].Overlaps(boxes[k]) {
+				faults = append(faults, fmt.Sprintf("%q lies on %q", a.S, b.S))
+			}
+		}
+	}
+	if b := p.Bounds().Grown(-0.01); !frame.Holds(b.Min) || !frame.Holds(b.Max) {
+		faults = append(faults, fmt.Sprintf("drawn from %.1f to %.1f, outside the frame", b.Min, b.Max))
+	}
+	return faults
 }
 
 // boxOf is a text's body, without the leading that lines may share.
