@@ -107,7 +107,7 @@ func (g *genome) Mutate(rng *rand.Rand) {
 // variation, whose steps shrink with the population along every direction.
 // Storn, Price, J. Global Optim. 11, 341, 1997.
 func (g *genome) differ(rng *rand.Rand) {
-	factor := 0.9 * rng.Float64()
+	factor := 0.8 * rng.Float64()
 	take := rng.Float64()
 	for _, i := range g.free {
 		v := &g.space[i]

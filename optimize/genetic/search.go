@@ -23,7 +23,7 @@ type Config struct {
 }
 
 // rivals is how many members a tournament has.
-const rivals = 6
+const rivals = 8
 
 // mostRejections is how many points a screen may reject for each that it
 // passes before the search gives up.

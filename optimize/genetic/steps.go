@@ -8,29 +8,29 @@ import (
 )
 
 // cross is simulated binary crossover within bounds: Deb, Agrawal, Complex
-// Systems 9, 115, 1995, with the spread cut off at the nearer bound so that
-// no child has to be clipped.
+// Systems 9, 115, 1995, with the spread of both children cut off at the
+// bound that is nearer, so that neither has to be clipped.
 func cross(a, b, low, high float64, rng *rand.Rand) (float64, float64) {
-	if a == b || low == high {
+	if a == b {
 		return a, b
-	}
-	if a > b {
-		b, a = cross(b, a, low, high, rng)
-		return a, b
-	}
-	u := rng.Float64()
-	spread := func(room float64) float64 {
-		beta := 1 + 2*room/(b-a)
-		alpha := 2 - math.Pow(beta, -(crossoverIndex+1))
-		if u <= 1/alpha {
-			return math.Pow(u*alpha, 1.0/(crossoverIndex+1))
-		}
-		return math.Pow(1/(2-u*alpha), 1.0/(crossoverIndex+1))
 	}
 	mid, half := (a+b)/2, (b-a)/2
-	c := mid - half*spread(a-low)
-	d := mid + half*spread(high-b)
-	return math.Min(math.Max(c, low), high), math.Min(math.Max(d, low), high)
+	widest := math.Min(mid-low, high-mid) / math.Abs(half)
+	u := rng.Float64() * (2 - 1/whole(widest, crossoverIndex+1))
+	if u > 1 {
+		u = 1 / (2 - u)
+	}
+	spread := half * math.Pow(u, 1.0/(crossoverIndex+1))
+	return math.Min(math.Max(mid-spread, low), high), math.Min(math.Max(mid+spread, low), high)
+}
+
+// whole is x to the power n, much faster than math.Pow.
+func whole(x float64, n int) float64 {
+	p := 1.0
+	for range n {
+		p *= x
+	}
+	return p
 }
 
 // mutate is polynomial mutation within bounds: Deb, Goyal, Computer Science
@@ -41,10 +41,10 @@ func mutate(x, low, high float64, rng *rand.Rand) float64 {
 	var step float64
 	if u < 0.5 {
 		near := 1 - (x-low)/width
-		step = math.Pow(2*u+(1-2*u)*math.Pow(near, mutationIndex+1), 1.0/(mutationIndex+1)) - 1
+		step = math.Pow(2*u+(1-2*u)*whole(near, mutationIndex+1), 1.0/(mutationIndex+1)) - 1
 	} else {
 		near := 1 - (high-x)/width
-		step = 1 - math.Pow(2*(1-u)+(2*u-1)*math.Pow(near, mutationIndex+1), 1.0/(mutationIndex+1))
+		step = 1 - math.Pow(2*(1-u)+(2*u-1)*whole(near, mutationIndex+1), 1.0/(mutationIndex+1))
 	}
 	return math.Min(math.Max(x+step*width, low), high)
 }
