@@ -39,5 +39,9 @@ fuzz:
 diskfull:
 	$(GO) test -tags diskfull -run DiskFull -v ./cmd/turnwise
 
+# The report in a real browser. Wants a Chromium on the path.
+browser:
+	$(GO) test -tags browser -run '^TestBrowser' ./cmd/turnwise
+
 clean:
 	rm -f turnwise cover.out

@@ -15,6 +15,7 @@ import (
 	"testing"
 	"time"
 
+	"turnwise/models"
 	"turnwise/optimize/journal"
 )
 
@@ -135,13 +136,21 @@ func (l *laboratory) front(run string) []byte {
 	return data
 }
 
-// calls counts the questions that the model has answered.
+// calls counts the questions of the search that the model has answered. The
+// report asks its own, over more than the band and at its two ends.
 func (l *laboratory) calls(run string) int {
 	data, err := os.ReadFile(l.path(run + ".calls"))
 	if err != nil && !errors.Is(err, os.ErrNotExist) {
 		l.t.Fatal(err)
 	}
-	return bytes.Count(data, []byte("\n"))
+	wide, _ := surroundings(models.Band{From: 1.66e9, To: 1.70e9, Samples: 3})
+	n := 0
+	for line := range bytes.Lines(data) {
+		if hz := len(bytes.Fields(line[bytes.LastIndexByte(line, '['):])); hz != len(wide) && hz != 2 {
+			n++
+		}
+	}
+	return n
 }
 
 // read opens a run's journal; nil where there is none yet.

@@ -71,7 +71,16 @@ func reportRun(ctx context.Context, s streams, run, charts string) error {
 	if err := vacant(charts); err != nil {
 		return wrong(err)
 	}
-	r, err := gather(ctx, s, f)
+	b, err := configs.ReadBrief(f.Path(folder.BriefFile))
+	if err != nil {
+		return wrong(err)
+	}
+	p, err := newProblem(b, b.Spec)
+	if err != nil {
+		return wrong(err)
+	}
+	defer closeModels(p)
+	r, err := gather(ctx, s, f, b, p)
 	if err != nil {
 		return err
 	}
@@ -95,7 +104,7 @@ func reportRun(ctx context.Context, s streams, run, charts string) error {
 // report ends a search with its report. A report that fails takes nothing
 // away from the search: it is said, and can be made later.
 func (ses *session) report(ctx context.Context) {
-	r, err := gather(ctx, ses.s, ses.folder)
+	r, err := gather(ctx, ses.s, ses.folder, ses.brief, ses.problem)
 	if err == nil {
 		err = writeReport(ses.folder, r)
 	}
@@ -137,7 +146,7 @@ func writeCharts(ctx context.Context, dir string, r *report.Run) error {
 		return failed(fmt.Errorf("cannot make %s: %w", dir, err))
 	}
 	write := func(name string, data []byte) error {
-		return folder.WriteFile(filepath.Join(dir, name), data)
+		return os.WriteFile(filepath.Join(dir, name), data, 0o644)
 	}
 	for _, c := range r.Charts() {
 		if ctx.Err() != nil {
@@ -170,15 +179,7 @@ func writeCharts(ctx context.Context, dir string, r *report.Run) error {
 
 // gather reads all of a run that its report tells, and simulates the designs
 // that get a sheet.
-func gather(ctx context.Context, s streams, f folder.Folder) (*report.Run, error) {
-	b, err := configs.ReadBrief(f.Path(folder.BriefFile))
-	if err != nil {
-		return nil, wrong(err)
-	}
-	p, err := newProblem(b, b.Spec)
-	if err != nil {
-		return nil, wrong(err)
-	}
+func gather(ctx context.Context, s streams, f folder.Folder, b configs.Brief, p *objectives.Problem) (*report.Run, error) {
 	t, err := folder.ReadTable(f.Path(folder.FrontFile))
 	if err != nil {
 		return nil, wrong(err)
@@ -346,15 +347,15 @@ func simulateSheet(ctx context.Context, r *report.Run, sheet *report.Sheet) {
 	}
 	sheet.Wire, sheet.Laws = wireOf(curve), lawsOf(curve)
 	rung, band := r.Problem.Finest(), r.Problem.Band
-	ask := func(hz []float64, more models.Outputs) (models.Response, error) {
-		q := models.Question{Hz: hz, Outputs: models.Axis | more}
-		if r.Problem.Cone > 0 {
+	ask := func(hz []float64, what models.Outputs) (models.Response, error) {
+		q := models.Question{Hz: hz, Outputs: what}
+		if r.Problem.Cone > 0 && what != models.Axis {
 			q.Outputs |= models.Cone
 			q.Cone = r.Problem.Cone
 		}
 		return rung.Simulator.Simulate(ctx, d, q)
 	}
-	const all = models.Cuts | models.Balance | models.Spread
+	const all = models.Axis | models.Cuts | models.Balance | models.Spread | models.Pattern
 	hz, in := surroundings(band)
 	answer, err := ask(hz, all)
 	if err != nil {
@@ -365,11 +366,11 @@ func simulateSheet(ctx context.Context, r *report.Run, sheet *report.Sheet) {
 		sheet.Err = firstLine(err.Error())
 		return
 	}
-	sheet.Band = in
-	if err := addPattern(sheet, &answer, ask); err != nil {
-		sheet.Err = firstLine(err.Error())
-		return
+	if ends, err := ask(slices.Compact([]float64{band.From, band.To}), models.Axis); err == nil {
+		// What leaves the model's range is told of the band alone.
+		answer.Warnings = ends.Warnings
 	}
+	sheet.Band, sheet.Pattern = in, answer.Samples[in[1]].Pattern
 	hand, err := closedform.HandFormulas(&d, band.Mid())
 	if err != nil {
 		sheet.Err = err.Error()
@@ -385,25 +386,6 @@ func simulateSheet(ctx context.Context, r *report.Run, sheet *report.Sheet) {
 	if objectives.WrongSense(&d, &inBand) {
 		sheet.Simulation.Warnings = append(sheet.Simulation.Warnings, fmt.Sprintf("somewhere in the band it radiates the %s-hand sense on the axis", -d.Wanted()))
 	}
-}
-
-// addPattern asks for mid-band's far field. What leaves the model's range is
-// told of the band alone, not of its surroundings.
-func addPattern(sheet *report.Sheet, answer *models.Response, ask func([]float64, models.Outputs) (models.Response, error)) error {
-	in := sheet.Band
-	hz := []float64{answer.Samples[in[1]].Hz}
-	if in[0] < in[1] {
-		hz = []float64{answer.Samples[in[0]].Hz, hz[0], answer.Samples[in[2]].Hz}
-	}
-	cuts, err := ask(hz, models.Pattern)
-	if err != nil {
-		return err
-	}
-	if cuts.Answered&models.Pattern != 0 {
-		sheet.Pattern = cuts.Samples[len(hz)/2].Pattern
-	}
-	answer.Warnings = cuts.Warnings
-	return nil
 }
 
 // wireSteps is how many straight pieces a turn is drawn in.

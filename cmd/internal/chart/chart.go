@@ -29,8 +29,8 @@ const (
 	Wide  = 680.0
 )
 
-// dotsPerInch gives a PNG three dots a unit.
-const dotsPerInch = 216
+// dotsPerInch gives a PNG two dots a unit.
+const dotsPerInch = 144
 
 // PNG is the figure as a picture on white.
 func PNG(f Figure) ([]byte, error) {

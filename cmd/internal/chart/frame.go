@@ -35,7 +35,7 @@ func newFrame(w, h float64, x, y Axis, rows int) frame {
 
 // Ticks of x lie at least tickApart from each other; y has yTicks at the most.
 const (
-	tickApart = 50.0
+	tickApart = 45.0
 	yTicks    = 7
 )
 
@@ -61,7 +61,7 @@ func (f frame) draw(b brush) {
 	b.stroke(hairline, rule, nil)
 	b.line(at{f.left, f.bottom}, at{f.right, f.bottom}, at{f.right, f.top}, at{f.left, f.top}, at{f.left, f.bottom}, at{f.right, f.bottom})
 	for _, x := range xs {
-		b.text(tickText(x, xd), at{f.place(x, 0).x, f.bottom - tickRoom - tickSize*0.75}, tickSize, centre, quiet)
+		b.text(tickText(x, xd), at{f.place(x, 0).x, f.bottom - tickRoom - tickSize*0.85}, tickSize, centre, quiet)
 	}
 	for _, y := range ys {
 		b.text(tickText(y, yd), at{f.left - tickRoom, f.place(0, y).y - tickSize*0.35}, tickSize, right, quiet)

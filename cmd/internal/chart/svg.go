@@ -20,7 +20,7 @@ import (
 // browser's font makes it leave its place. Label is what a screen reader says.
 func SVG(f Figure, label string) []byte {
 	w, h := f.Size()
-	s := &svg{height: h, state: state{width: 1, color: color.Black, m: identity}}
+	s := newSVG(h)
 	fmt.Fprintf(&s.b, `<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 %s %s" width="%s" height="%s" role="img" font-family="Arial, Helvetica, 'Liberation Sans', sans-serif" fill="none">`,
 		num(w), num(h), num(w), num(h))
 	s.b.WriteString("<title>" + escape(label) + "</title>")
@@ -64,6 +64,10 @@ type svg struct {
 }
 
 var _ vg.Canvas = (*svg)(nil)
+
+func newSVG(height float64) *svg {
+	return &svg{height: height, state: state{width: 1, color: color.Black, m: identity}}
+}
 
 func (s *svg) SetLineWidth(w vg.Length)                  { s.width = float64(w) }
 func (s *svg) SetLineDash(d []vg.Length, from vg.Length) { s.dash, s.from = d, from }
