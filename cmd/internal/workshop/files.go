@@ -1,5 +1,6 @@
 // Package workshop writes what others take from a design: Touchstone and
-// pattern files.
+// pattern files, and the pack that a workshop builds from, with its sheet, its
+// 1:1 template, its centre line and the design as it was drawn.
 package workshop
 
 import (

@@ -80,7 +80,7 @@ func (s *sheet) bandRow(a *models.Sample) []string {
 }
 
 func (s *sheet) testWords() string {
-	words := fmt.Sprintf("Calibrate at the connector's reference plane, point the antenna at open sky, no person or metal within two wavelengths (%.1f m). Z is at the connector against %s Ω; the band lies between the two upright lines. Gain is on the axis in the wanted sense, over an infinite plane. Inside its range the model is worth about 0.05 dB in gain and 10 %% in impedance; a real plate, a former and tolerances come on top.",
+	words := fmt.Sprintf("Calibrate at the connector's reference plane, point the antenna at open sky, no person or metal within two wavelengths (%.2g m). Z is at the connector against %s Ω; the band lies between the two upright lines. Gain is on the axis in the wanted sense, over an infinite plane. Inside its range the model is worth about 0.05 dB in gain and 10 %% in impedance; a real plate, a former and tolerances come on top.",
 		2*s.wavelength(), shortest(s.Design.Feed.Impedance))
 	if len(s.Response.Warnings) > 0 {
 		words += " The design leaves the model's range: see the last sheet."
@@ -203,6 +203,9 @@ func (s *sheet) arrowKey(d *drawing.Drawing, at drawing.Point) {
 		stands := m.Stands
 		if m.Down == 0 {
 			stands += "; no room to " + m.Less + " it by 1 mm"
+		}
+		if m.Up == 0 {
+			stands += "; no room to " + m.More + " it by 1 mm"
 		}
 		t.Rows = append(t.Rows, []string{fmt.Sprint(i + 1), m.Name, stands})
 	}

@@ -241,9 +241,17 @@ func (s *sheet) mainTable() *drawing.Table {
 		row("cut the wire to", fixed(1e3*k.Length(), 0))
 	}
 	row("wire, plate to open end", r.mm(c.WireLength()))
-	row("mass of the conductor, g", fixed(1e3*g.Mass, 1))
+	row("mass of the conductor", grams(g.Mass))
 	row("ground", s.groundWords())
 	return t
+}
+
+// grams is a mass with its unit, three digits and more of it.
+func grams(kg float64) string {
+	if kg < 0.001 {
+		return fixed(1e6*kg, 1) + " mg"
+	}
+	return fixed(1e3*kg, 1) + " g"
 }
 
 func (s *sheet) material() string {
