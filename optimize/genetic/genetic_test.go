@@ -15,10 +15,10 @@ func TestContract(t *testing.T) {
 	})
 }
 
-// A guard on quality at a tenth of the benchmark's budget: fractions measured
+// A guard on quality at a fifth of the benchmark's budget: fractions measured
 // with seeds 1 to 11, less some room.
 func TestReachesFronts(t *testing.T) {
-	for name, least := range map[string]float64{"zdt1": 0.70, "zdt3": 0.70, "bnh": 0.99, "tnk": 0.97, "dtlz2": 0.88} {
+	for name, least := range map[string]float64{"zdt1": 0.78, "zdt1-shifted": 0.82, "zdt3": 0.78, "bnh": 0.99, "tnk": 0.97, "dtlz2": 0.91, "osy": 0.90} {
 		if got := fraction(searchtest.ProblemByName(name), 1, 5000); got < least {
 			t.Errorf("%s: %.4f of the front, want %.2f", name, got, least)
 		}
