@@ -42,7 +42,7 @@ var inks = map[Layer]ink{
 	Hole:      {width: 0.25, r: 150, dxf: 6},
 	Axis:      {width: 0.13, dash: []float64{5, 1, 1, 1}, r: 90, g: 90, b: 90, dxf: 9},
 	Dimension: {width: 0.13, dxf: 4},
-	Check:     {width: 0.18, dxf: 2},
+	Check:     {width: 0.1, dxf: 2},
 	Grid:      {width: 0.1, r: 150, g: 150, b: 150, dxf: 8},
 	Trace:     {width: 0.45, r: 20, g: 60, b: 150, dxf: 5},
 	Second:    {width: 0.45, r: 176, g: 72, b: 16, dxf: 1},
