@@ -380,13 +380,21 @@ var free = map[string]bool{"budget": true}
 // all but the budget. Designs to start from count with what they hold.
 func (br *Brief) Digest() string {
 	h := sha256.New()
-	own := *br
+	own := br.byContent()
 	own.Budget = Budget{}
 	h.Write(own.Write())
-	for i := range br.Starts {
-		h.Write([]byte(br.Starts[i].Canonical()))
-	}
 	return hex.EncodeToString(h.Sum(nil))
+}
+
+// byContent is the brief with its designs to start from named by what they
+// hold, not by where they lie.
+func (br *Brief) byContent() Brief {
+	own := *br
+	own.StartFrom = make([]string, len(br.Starts))
+	for i := range br.Starts {
+		own.StartFrom[i] = br.Starts[i].Hash()
+	}
+	return own
 }
 
 // Diff names the keys in which two briefs differ, the budget's not among
@@ -411,7 +419,8 @@ func Diff(a, b *Brief) []string {
 // keys are the top keys and one level below, each with its text.
 func (br *Brief) keys() map[string]string {
 	var doc map[string]yaml.Node
-	if err := yaml.Unmarshal(br.Write(), &doc); err != nil {
+	own := br.byContent()
+	if err := yaml.Unmarshal(own.Write(), &doc); err != nil {
 		panic("configs: a brief was written that does not read: " + err.Error())
 	}
 	out := map[string]string{}

@@ -104,7 +104,7 @@ func (ses *session) open(c *cobra.Command, o searchOptions) error {
 	if o.brief == "" {
 		ses.brief, err = configs.ReadScenario(configs.DefaultScenario)
 	} else {
-		name = o.brief
+		name, ses.from = o.brief, o.brief
 		ses.brief, err = configs.ReadBrief(o.brief)
 	}
 	if err != nil {

@@ -6,7 +6,9 @@ import (
 	"errors"
 	"fmt"
 	"os"
+	"path/filepath"
 	"runtime"
+	"strconv"
 	"strings"
 	"sync/atomic"
 	"time"
@@ -29,6 +31,7 @@ type session struct {
 	s       streams
 	set     configs.Settings
 	brief   configs.Brief
+	from    string // the brief's file
 	problem *objectives.Problem
 	until   time.Time
 	timeout time.Duration
@@ -96,6 +99,9 @@ func (ses *session) begin() (err error) {
 	if ses.lock, err = journal.Lock(ses.folder.Dir); err != nil {
 		return err
 	}
+	if err = ses.keepStarts(); err != nil {
+		return err
+	}
 	if err = folder.WriteFile(ses.folder.Path(folder.BriefFile), ses.resolved()); err != nil {
 		return err
 	}
@@ -108,8 +114,33 @@ func (ses *session) begin() (err error) {
 	return ses.book.Decide(journal.Start, startDetail{ses.planned[0], ses.set.Workers, version})
 }
 
-// resolved is the brief as the run keeps it: defaults filled in, designs to
-// start from by their full path.
+// keepStarts copies the designs to start from into the run, so that its brief
+// goes on to name them.
+func (ses *session) keepStarts() error {
+	names := make([]string, len(ses.brief.StartFrom))
+	for i, name := range ses.brief.StartFrom {
+		if !filepath.IsAbs(name) {
+			name = filepath.Join(filepath.Dir(ses.from), name)
+		}
+		data, err := os.ReadFile(name)
+		if err != nil {
+			return err
+		}
+		if i == 0 {
+			if err := os.MkdirAll(ses.folder.Path(folder.StartsDir), 0o755); err != nil {
+				return err
+			}
+		}
+		names[i] = folder.StartsDir + "/" + strconv.Itoa(i+1) + filepath.Ext(name)
+		if err := folder.WriteFile(ses.folder.Path(names[i]), data); err != nil {
+			return err
+		}
+	}
+	ses.brief.StartFrom = names
+	return nil
+}
+
+// resolved is the brief as the run keeps it: defaults filled in.
 func (ses *session) resolved() []byte {
 	b := ses.brief
 	return append([]byte("# The brief of this run, as it was read.\n"), b.Write()...)

@@ -18,6 +18,7 @@ const (
 	FrontFile   = "front.csv"
 	NearFile    = "near.csv"
 	JournalFile = "journal.db"
+	StartsDir   = "start" // designs that the brief starts from
 	DesignsDir  = "designs"
 )
 
