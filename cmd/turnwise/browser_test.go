@@ -132,23 +132,25 @@ const escaped = `[...document.querySelectorAll("svg text")].filter(t => t.getCli
 const sideways = `document.documentElement.scrollWidth - document.documentElement.clientWidth`
 
 func TestBrowserShowsReport(t *testing.T) {
-	run := madeRun(t, small)
-	path := filepath.Join(run, reportFile)
-	for _, width := range []int{1280, 800, 320} {
-		t.Run(fmt.Sprint(width), func(t *testing.T) {
-			b := show(t, path, width, true)
-			if got := eval[[]string](b, escaped); len(got) > 0 {
-				t.Errorf("labels leave their pictures: %q", got)
-			}
-			if got := eval[float64](b, sideways); got > 0 {
-				t.Errorf("the page is %g pixels wider than its window of %d", got, width)
-			}
-			if n := eval[int](b, `document.querySelectorAll(".sheet").length - document.querySelectorAll(".sheet.open").length`); n != mostSheets-1 {
-				t.Errorf("%d sheets are closed, all but one are due", n)
-			}
-			b.picture(fmt.Sprint("report-", width), float64(width), 5000)
-			b.quiet()
-		})
+	for _, brief := range []string{small, "testdata/dish.yaml"} {
+		path := filepath.Join(madeRun(t, brief), reportFile)
+		for _, width := range []int{1280, 800, 320} {
+			name := fmt.Sprintf("%s-%d", strings.TrimSuffix(filepath.Base(brief), ".yaml"), width)
+			t.Run(name, func(t *testing.T) {
+				b := show(t, path, width, true)
+				if got := eval[[]string](b, escaped); len(got) > 0 {
+					t.Errorf("labels leave their pictures: %q", got)
+				}
+				if got := eval[float64](b, sideways); got > 0 {
+					t.Errorf("the page is %g pixels wider than its window of %d", got, width)
+				}
+				if n := eval[int](b, `document.querySelectorAll(".sheet").length - document.querySelectorAll(".sheet.open").length`); n != mostSheets-1 {
+					t.Errorf("%d sheets are closed, all but one are due", n)
+				}
+				b.picture(name, float64(width), 5000)
+				b.quiet()
+			})
+		}
 	}
 }
 
@@ -259,7 +261,7 @@ func TestBrowserWithoutScripts(t *testing.T) {
 
 // On paper every sheet is there, nothing is cut off and no control is seen.
 func TestBrowserOnPaper(t *testing.T) {
-	run := madeRun(t, small)
+	run := madeRun(t, "testdata/dish.yaml")
 	b := show(t, filepath.Join(run, reportFile), 690, true)
 	call(b, emulation.SetEmulatedMedia, emulation.SetEmulatedMediaParams{Media: "print"})
 	if n := eval[int](b, `[...document.querySelectorAll(".sheet")].filter(s => s.getClientRects().length).length`); n != mostSheets {

@@ -140,7 +140,7 @@ func readPage(t *testing.T, dir string) []byte {
 
 // The page is well-formed, holds together and loads nothing.
 func TestReportPage(t *testing.T) {
-	dir := madeRun(t, small)
+	dir := madeRun(t, "testdata/dish.yaml")
 	page := readPage(t, dir)
 	root, parts := parsePage(t, page)
 	if len(page) > 5e6 {
