@@ -9,6 +9,8 @@ import (
 	"strconv"
 	"strings"
 
+	"golang.org/x/sync/singleflight"
+
 	"turnwise/models"
 	"turnwise/optimize"
 )
@@ -18,6 +20,7 @@ import (
 type inquiry struct {
 	rung    Rung
 	memory  Memory
+	flights *singleflight.Group // questions that are being asked, by key
 	answers []optimize.Answer
 }
 
@@ -36,15 +39,35 @@ func (q *inquiry) ask(ctx context.Context, d *models.Design, question models.Que
 			return r, nil
 		}
 	}
-	r, err := q.rung.Simulator.Simulate(ctx, *d, question)
+	r, stored, err := q.put(ctx, d, question, a.Key)
 	if err != nil {
 		return r, err
 	}
-	if a.Response, err = json.Marshal(&r); err != nil {
-		return r, fmt.Errorf("the answer cannot be kept: %w", err)
-	}
+	a.Response = stored
 	q.answers = append(q.answers, a)
 	return r, nil
+}
+
+// put asks the simulator, once where the same question is asked by several at
+// a time.
+func (q *inquiry) put(ctx context.Context, d *models.Design, question models.Question, key string) (models.Response, []byte, error) {
+	type reply struct {
+		models.Response
+		stored []byte
+	}
+	v, err, _ := q.flights.Do(key, func() (any, error) {
+		r, err := q.rung.Simulator.Simulate(ctx, *d, question)
+		if err != nil {
+			return reply{}, err
+		}
+		stored, err := json.Marshal(&r)
+		if err != nil {
+			err = fmt.Errorf("the answer cannot be kept: %w", err)
+		}
+		return reply{r, stored}, err
+	})
+	r := v.(reply)
+	return r.Response, r.stored, err
 }
 
 // QuestionKey is what a stored answer is found by: SHA-256 of the design's

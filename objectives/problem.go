@@ -6,6 +6,8 @@ import (
 	"fmt"
 	"math"
 
+	"golang.org/x/sync/singleflight"
+
 	"turnwise/models"
 	"turnwise/models/helix"
 	"turnwise/optimize"
@@ -40,7 +42,8 @@ type Problem struct {
 	// score carries the answers it rests on.
 	Memory Memory
 
-	rungs []Rung
+	rungs   []Rung
+	flights singleflight.Group
 }
 
 var _ optimize.Evaluator = (*Problem)(nil)
@@ -162,7 +165,7 @@ func (s figureSet) outputs() models.Outputs {
 // score reads the figures of a point and holds them against aims and limits.
 // Under margins every figure is the worst of the perturbed windings'.
 func (p *Problem) score(ctx context.Context, pt space.Point, r Rung, hz []float64, want figureSet) (optimize.Score, error) {
-	q := inquiry{rung: r, memory: p.Memory}
+	q := inquiry{rung: r, memory: p.Memory, flights: &p.flights}
 	row := emptyRow()
 	for _, d := range p.spread(p.Layout.Design(pt)) {
 		one, err := p.figures(ctx, &q, d, hz, want)

@@ -10,6 +10,7 @@ import (
 	"runtime"
 	"strconv"
 	"strings"
+	"sync"
 	"sync/atomic"
 	"time"
 
@@ -40,7 +41,8 @@ type session struct {
 	lock    *journal.Held
 	book    *journal.Writer
 	others  []*journal.Reader // runs whose answers may be reused
-	asks    bool              // of the journal: an answer may be on record
+	asks    bool              // of the journal, whatever was kept in this session
+	kept    sync.Map          // keys of the questions answered in this session
 	planned []int             // of the run, then of each extension
 	past    []optimize.Evaluation
 	used    time.Duration // by earlier sessions
@@ -325,10 +327,9 @@ func (ses *session) reuse(dirs []string) error {
 }
 
 // Recall finds an answer in the journal, or in those of other runs; the
-// problem's memory. While a new run searches there is nothing to find: the
-// loop asks no point twice.
+// problem's memory. A new run's journal holds what this session kept.
 func (ses *session) Recall(key string) ([]byte, bool) {
-	if !ses.asks {
+	if _, kept := ses.kept.Load(key); !kept && !ses.asks {
 		return nil, false
 	}
 	if a, ok, err := ses.book.Answer(context.Background(), key); ok && err == nil {
@@ -417,6 +418,9 @@ func (ses *session) keep(es []optimize.Evaluation) error {
 	better := false
 	for i := range es {
 		e := es[i]
+		for k := range e.Answers {
+			ses.kept.Store(e.Answers[k].Key, nil)
+		}
 		e.Answers = nil
 		ses.all = append(ses.all, e)
 		better = ses.so.Insert(e.ID, e.Value()) || better
@@ -426,6 +430,17 @@ func (ses *session) keep(es []optimize.Evaluation) error {
 	}
 	ses.written = time.Now()
 	return ses.folder.WriteFront(folder.NewTable(ses.problem, ses.soFar(), ses.brief.Seed))
+}
+
+// keepFinal records a confirmation.
+func (ses *session) keepFinal(e optimize.Evaluation) error {
+	if err := ses.book.RecordFinal([]optimize.Evaluation{e}); err != nil {
+		return err
+	}
+	for k := range e.Answers {
+		ses.kept.Store(e.Answers[k].Key, nil)
+	}
+	return nil
 }
 
 // soFar is the front of everything that is known, unchecked.
@@ -491,10 +506,9 @@ func (ses *session) interrupted(r optimize.Result, took time.Duration) error {
 // finish settles the front, writes it and says what was found.
 func (ses *session) finish(ctx context.Context, r optimize.Result, began time.Time) error {
 	show := newProgress(ses.s)
-	ses.asks = true
 	settled, err := optimize.Settle(ctx, r.Evaluations, ses.confirm, optimize.SettleOptions{
 		Most: ses.brief.FrontAtMost, Workers: ses.set.Workers,
-		Kept: func(e optimize.Evaluation) error { return ses.book.RecordFinal([]optimize.Evaluation{e}) },
+		Kept: ses.keepFinal,
 		Progress: func(done, of, round int) {
 			show.show(standing{stage: fmt.Sprintf("confirming the front, round %d", round), done: done, total: of, front: of})
 		},

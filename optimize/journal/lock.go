@@ -59,15 +59,23 @@ func Lock(dir string) (*Held, error) {
 	path := filepath.Join(dir, LockFile)
 	for range 100 {
 		held, err := try(path)
-		if err == nil || !errors.Is(err, errGone) {
+		switch {
+		case errors.Is(err, errFading):
+			time.Sleep(50 * time.Millisecond)
+		case !errors.Is(err, errGone):
 			return held, err
 		}
 	}
 	return nil, &Error{Path: path, Fault: ErrLocked, Remedy: "it changes hands all the time; try again"}
 }
 
-// errGone says that the file was removed between opening and locking it.
-var errGone = errors.New("lock file replaced")
+// errGone says that the file was removed between opening and locking it,
+// errFading that its lock outlives its dead holder for the moment it takes a
+// process that was just starting another to leave.
+var (
+	errGone   = errors.New("lock file replaced")
+	errFading = errors.New("holder dead, lock still held")
+)
 
 func try(path string) (*Held, error) {
 	f, err := os.OpenFile(path, os.O_CREATE|os.O_RDWR, 0o644)
@@ -79,6 +87,11 @@ func try(path string) (*Held, error) {
 		return nil, errors.Join(&Error{Path: path, Fault: ErrCannotWrite, Err: err, Remedy: remedyFolder}, f.Close())
 	}
 	if !ok {
+		if h, signed := signature(f); signed {
+			if alive, known := h.alive(); known && !alive {
+				return nil, errors.Join(errFading, f.Close())
+			}
+		}
 		return nil, errors.Join(refused(path, f), f.Close())
 	}
 	if here, err := os.Stat(path); err != nil || !same(here, f) {
