@@ -163,17 +163,23 @@ func (s figureSet) outputs() models.Outputs {
 }
 
 // score reads the figures of a point and holds them against aims and limits.
-// Under margins every figure is the worst of the perturbed windings'.
+// Under margins every figure is the worst of the perturbed windings', or what
+// the asked share of them reaches.
 func (p *Problem) score(ctx context.Context, pt space.Point, r Rung, hz []float64, want figureSet) (optimize.Score, error) {
 	q := inquiry{rung: r, memory: p.Memory, flights: &p.flights}
-	row := emptyRow()
+	var rows []Row
 	for _, d := range p.spread(p.Layout.Design(pt)) {
 		one, err := p.figures(ctx, &q, d, hz, want)
 		if err != nil {
 			return optimize.Score{Answers: q.answers}, err
 		}
-		row.worsen(&one)
+		rows = append(rows, one)
 	}
+	percent := p.Margins.Percentile
+	if percent == 0 {
+		percent = 100 // the worst
+	}
+	row := atPercentile(rows, percent)
 	if p.hides(r) {
 		row.hideMatch()
 	}
@@ -239,16 +245,6 @@ func (p *Problem) vswrLimit() float64 {
 		}
 	}
 	return 2
-}
-
-// worsen keeps, of each figure, the worse of two; a figure that either row
-// lacks is taken from the other.
-func (r *Row) worsen(o *Row) {
-	for f := range r {
-		if math.IsNaN(r[f]) || (Figures[f].More && o[f] < r[f]) || (!Figures[f].More && o[f] > r[f]) {
-			r[f] = o[f]
-		}
-	}
 }
 
 // hideMatch takes away what an indicative model must not be held to.

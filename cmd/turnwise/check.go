@@ -105,6 +105,13 @@ func describeBrief(w io.Writer, b *configs.Brief, p *objectives.Problem) {
 		}
 		fmt.Fprintf(w, "limit         %s %s %s\n", l.Figure, bound, report.Quantity(l.Figure, l.Value))
 	}
+	if n := p.Windings(); n > 1 {
+		at := "the worst"
+		if s.Margins.Percentile > 0 {
+			at = percent(s.Margins.Percentile / 100)
+		}
+		fmt.Fprintf(w, "margins       aims and limits hold at %s of %d windings, each simulated: %d times the cost\n", at, n, n)
+	}
 	for _, u := range p.Unapplied {
 		fmt.Fprintf(w, "set aside     %s: the model only indicates it (trust_indicative: true applies it)\n", u)
 	}

@@ -44,9 +44,6 @@ func newProblem(b configs.Brief, spec objectives.Spec) (*objectives.Problem, err
 	if len(b.Ladder) > 1 {
 		return nil, fmt.Errorf("model: a ladder of models %w; name one model", errNotYet)
 	}
-	if spec.Margins.Percentile > 0 {
-		return nil, fmt.Errorf("margins: a percentile %w; write at: worst", errNotYet)
-	}
 	if b.Ladder[0].Model == configs.ExternalModel {
 		return externalProblem(b, spec)
 	}
