@@ -3,6 +3,8 @@ package main
 import (
 	"bytes"
 	"context"
+	"crypto/sha256"
+	"encoding/base64"
 	"encoding/xml"
 	"errors"
 	"fmt"
@@ -168,6 +170,13 @@ func TestReportPage(t *testing.T) {
 	for _, a := range root.find("a") {
 		if target, inside := strings.CutPrefix(a.attrs["href"], "#"); !inside || !ids[target] {
 			t.Errorf("a link leads to %q, which is not on the page", a.attrs["href"])
+		}
+	}
+	policy := root.find("meta")[1].attrs["content"]
+	for _, name := range []string{"script", "style"} {
+		sum := sha256.Sum256([]byte(parts[name]))
+		if want := name + "-src 'sha256-" + base64.StdEncoding.EncodeToString(sum[:]) + "'"; !strings.Contains(policy, want) {
+			t.Errorf("the policy %q lacks %s", policy, want)
 		}
 	}
 	if n := len(root.find("article")); n != mostSheets {

@@ -21,8 +21,12 @@ import (
 func SVG(f Figure, label string) []byte {
 	w, h := f.Size()
 	s := newSVG(h)
-	fmt.Fprintf(&s.b, `<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 %s %s" width="%s" height="%s" role="img" font-family="Arial, Helvetica, 'Liberation Sans', sans-serif" fill="none">`,
-		num(w), num(h), num(w), num(h))
+	role := "img"
+	if _, links := f.(*Scatter); links {
+		role = "group" // an image has nothing inside that could be reached
+	}
+	fmt.Fprintf(&s.b, `<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 %s %s" width="%s" height="%s" role="%s" font-family="Arial, Helvetica, 'Liberation Sans', sans-serif" fill="none">`,
+		num(w), num(h), num(w), num(h), role)
 	s.b.WriteString("<title>" + escape(label) + "</title>")
 	f.Draw(s)
 	s.b.WriteString("</svg>")
