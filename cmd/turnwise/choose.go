@@ -1,6 +1,7 @@
 package main
 
 import (
+	"context"
 	"errors"
 	"fmt"
 	"io/fs"
@@ -14,6 +15,9 @@ import (
 	"turnwise/cmd/internal/folder"
 	"turnwise/cmd/internal/report"
 	"turnwise/configs"
+	"turnwise/models"
+	"turnwise/models/closedform"
+	"turnwise/models/helix"
 	"turnwise/objectives"
 	"turnwise/optimize/front"
 )
@@ -25,6 +29,8 @@ type choice struct {
 	least           string
 	out             string
 	json            bool
+	polish          bool
+	evaluations     int
 }
 
 func chooseCommand(s streams) *cobra.Command {
@@ -35,11 +41,12 @@ func chooseCommand(s streams) *cobra.Command {
 		Long: `Picks the shortest design on a run's front that meets the targets (or the one
 with the least of another figure), says why, and writes its design file.
 Targets are in the units of front.csv: --at-least gain=12 --at-most vswr=1.8.
-Without targets it picks the front's knee.`,
+Without targets it picks the front's knee. --refine searches on from there for
+less of that figure under the same targets, limits and margins.`,
 		Args: arguments(cobra.ExactArgs(1)),
-		RunE: func(_ *cobra.Command, args []string) error {
+		RunE: func(cmd *cobra.Command, args []string) error {
 			c.run = args[0]
-			return choose(s, c)
+			return choose(cmd.Context(), s, c)
 		},
 	}
 	f := cmd.Flags()
@@ -48,10 +55,15 @@ Without targets it picks the front's knee.`,
 	f.StringVar(&c.least, "least", "length", "the figure to have the least of")
 	f.StringVar(&c.out, "out", "", "where the design file goes (default RUN/chosen-ID.yaml)")
 	f.BoolVar(&c.json, "json", false, "say what was chosen as JSON")
+	f.BoolVar(&c.polish, "refine", false, "search on from the chosen design for less of the figure")
+	f.IntVar(&c.evaluations, "evaluations", 600, "of the refinement")
 	return cmd
 }
 
-func choose(s streams, c choice) error {
+func choose(ctx context.Context, s streams, c choice) error {
+	if c.evaluations < 1 || c.evaluations > mostRefinement {
+		return wrongf("--evaluations %d: give 1 to %d", c.evaluations, mostRefinement)
+	}
 	f, err := folder.Open(c.run)
 	if err != nil {
 		return wrong(err)
@@ -86,12 +98,28 @@ func choose(s streams, c choice) error {
 		near := front.Nearest(rows, targets...)
 		return unmet("no design on the front of %s meets %s; the nearest is %s with %s", c.run, c.words(), t.Members[near].ID, describe(&t.Members[near], targets))
 	}
-	return c.hand(s, f, t, &brief.Spec, at, figure, targets, knee)
+	if !c.polish {
+		return c.hand(s, f, f, t, &brief, at, figure, targets, knee)
+	}
+	if len(targets) == 0 {
+		return wrongf("--refine needs a target that must stay met, such as --at-least gain=12")
+	}
+	inner, refined, err := c.refine(ctx, s, f, t, brief, at, figure, targets)
+	if err != nil {
+		return err
+	}
+	if best := front.Least(figureRows(refined), int(figure), targets...); best >= 0 && refined.Members[best].Figures[figure] < t.Members[at].Figures[figure] {
+		fmt.Fprintln(s.err, gained(&t.Members[at], &refined.Members[best], figure))
+		return c.hand(s, f, inner, refined, &brief, best, figure, targets, false)
+	}
+	fmt.Fprintf(s.err, "the refinement found nothing with less %s\n", figure)
+	return c.hand(s, f, f, t, &brief, at, figure, targets, knee)
 }
 
-// hand writes the chosen design and says why it was chosen.
-func (c choice) hand(s streams, f folder.Folder, t *folder.Table, spec *objectives.Spec, at int, figure objectives.Figure, targets []front.Target, knee bool) error {
-	m := &t.Members[at]
+// hand writes the chosen design of the run in f into home, and says why it
+// was chosen.
+func (c choice) hand(s streams, home, f folder.Folder, t *folder.Table, brief *configs.Brief, at int, figure objectives.Figure, targets []front.Target, knee bool) error {
+	m, spec := &t.Members[at], &brief.Spec
 	d, err := configs.ReadDesign(f.Path(folder.DesignsDir, m.ID+".yaml"))
 	if err != nil {
 		return wrong(fmt.Errorf("the front names %s, but its design file is missing or broken: %w", m.ID, err))
@@ -102,7 +130,7 @@ func (c choice) hand(s streams, f folder.Folder, t *folder.Table, spec *objectiv
 	}
 	path := c.out
 	if path == "" {
-		path = f.Path("chosen-" + m.ID + ".yaml")
+		path = home.Path("chosen-" + m.ID + ".yaml")
 	} else if _, err := os.Lstat(path); !errors.Is(err, fs.ErrNotExist) {
 		return wrongf("%s exists already; name another file with --out", path)
 	}
@@ -113,17 +141,55 @@ func (c choice) hand(s streams, f folder.Folder, t *folder.Table, spec *objectiv
 	if !m.Checked {
 		fmt.Fprintf(s.err, "warning: %s is not checked: its figures are the search's own, not yet confirmed over a fine sweep\n", m.ID)
 	}
+	hand, err := handLength(&d, spec.Band.Mid(), m.Figures[objectives.Gain])
+	if err != nil {
+		return failed(err)
+	}
 	if c.json {
 		o := report.MemberJSON(t, m)
-		o["design_file"], o["why"] = path, why
+		o["design_file"], o["why"], o["hand_formula_length_m"] = path, why, hand
 		return failed(writeJSON(s.out, o))
 	}
 	fmt.Fprintln(s.out, why)
-	if err := report.WriteTable(s.out, &folder.Table{Varied: t.Varied, Members: t.Members[at : at+1]}, report.FrontColumns(spec)); err != nil {
+	fmt.Fprintln(s.out)
+	near := t.Members[max(at-1, 0):min(at+2, len(t.Members))]
+	if err := report.WriteTable(s.out, &folder.Table{Varied: t.Varied, Members: near}, report.FrontColumns(spec)); err != nil {
 		return failed(err)
 	}
-	_, err = fmt.Fprintf(s.out, "design file: %s\n", path)
+	if len(near) > 1 {
+		fmt.Fprintf(s.out, "(%s with its neighbours on the front)\n", m.ID)
+	}
+	fmt.Fprintln(s.out)
+	for _, l := range spec.Limits {
+		if x := m.Figures[l.Figure]; !math.IsNaN(x) {
+			fmt.Fprintf(s.out, "limit        %s\n", marginWords(l, x))
+		}
+	}
+	if x := m.Figures[objectives.Headroom]; !math.IsNaN(x) {
+		fmt.Fprintf(s.out, "headroom     %.1f %%: so far may every dimension grow before the gain falls 1 dB or a limit breaks\n", x)
+	}
+	fmt.Fprintf(s.out, "by hand      15 C²NS promises this gain in %.0f mm; this design has %.0f mm\n", hand*1e3, m.Figures[objectives.Length]*1e3)
+	_, err = fmt.Fprintf(s.out, "design file  %s\n", path)
 	return failed(err)
+}
+
+// marginWords says how far a limit is kept.
+func marginWords(l objectives.Limit, x float64) string {
+	bound, room := "at most", l.Value-x
+	if l.AtLeast {
+		bound, room = "at least", x-l.Value
+	}
+	return fmt.Sprintf("%s %s, %s %s: %s to spare", l.Figure, report.Quantity(l.Figure, x), bound, report.Quantity(l.Figure, l.Value), report.Quantity(l.Figure, room))
+}
+
+// handLength is the length, m, that the common hand formula would give a
+// winding of the design's mean circumference for a gain in dBi.
+func handLength(d *models.Design, hz, gain float64) (float64, error) {
+	curve, err := helix.Wind(d)
+	if err != nil {
+		return 0, err
+	}
+	return closedform.Kraus1949Length(curve, hz, math.Pow(10, gain/10)), nil
 }
 
 // explain says in two sentences why a member was chosen.
@@ -139,8 +205,11 @@ func explain(t *folder.Table, at int, figure objectives.Figure, targets []front.
 				meeting++
 			}
 		}
-		fmt.Fprintf(&b, "%s has the least %s (%s) of the %d designs, of %d on the front, that meet %s.", m.ID, objectives.Figures[figure].Name,
-			report.Quantity(figure, m.Figures[figure]), meeting, len(t.Members), targetWords(targets))
+		those := fmt.Sprintf("of the %d designs, of %d on the front, that meet", meeting, len(t.Members))
+		if meeting == 1 {
+			those = "and is the only design on the front to meet"
+		}
+		fmt.Fprintf(&b, "%s has the least %s (%s) %s %s.", m.ID, objectives.Figures[figure].Name, report.Quantity(figure, m.Figures[figure]), those, targetWords(targets))
 	}
 	fmt.Fprintf(&b, " It has %s", describe(m, targets))
 	if runner := runnerUp(t, at, figure, targets); runner >= 0 && !knee {

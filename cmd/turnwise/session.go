@@ -369,7 +369,7 @@ func (ses *session) run(ctx context.Context) error {
 	for _, u := range ses.problem.Unapplied {
 		fmt.Fprintf(ses.s.err, "%s is set aside: the model only indicates it; trust_indicative: true in the brief applies it\n", u)
 	}
-	fmt.Fprintf(ses.s.err, "searching in %s, %d evaluations planned, %d workers\n", ses.folder.Dir, sum(ses.planned), ses.set.Workers)
+	fmt.Fprintf(ses.s.err, "searching in %s, %s planned, %s\n", ses.folder.Dir, counted(sum(ses.planned), "evaluation"), counted(ses.set.Workers, "worker"))
 	show := newProgress(ses.s)
 	searcher := ses.searcher()
 	defer searcher.Close()
@@ -496,7 +496,7 @@ func (ses *session) interrupted(r optimize.Result, took time.Duration) error {
 	if r.Explanation != "" {
 		fmt.Fprintf(ses.s.err, " (%s)", r.Explanation)
 	}
-	fmt.Fprintf(ses.s.err, "; the front so far, unchecked, has %d designs. Go on with:\n  %s\n", len(t.Members), ses.goOn())
+	fmt.Fprintf(ses.s.err, "; the front so far, unchecked, has %s. Go on with:\n  %s\n", counted(len(t.Members), "design"), ses.goOn())
 	if r.Reason == optimize.Stopped {
 		return stopped(context.Canceled)
 	}

@@ -13,7 +13,7 @@ import (
 // summary prints the run's folder, why it stopped and the best of each aim.
 func (ses *session) summary(r optimize.Result, settled optimize.Settled, t *folder.Table, took time.Duration) error {
 	w := ses.s.out
-	fmt.Fprintf(w, "%s: %d designs on the front, from %d evaluations in %s; %s\n", ses.folder.Dir, len(t.Members), len(r.Evaluations), brief(took), r.Reason)
+	fmt.Fprintf(w, "%s: %s on the front, from %d evaluations in %s; %s\n", ses.folder.Dir, counted(len(t.Members), "design"), len(r.Evaluations), brief(took), r.Reason)
 	fmt.Fprintf(w, "found by      %s\n", strings.Join(byStage(settled.Front), ", "))
 	failedCount, reused := 0, 0
 	for i := range r.Evaluations {
@@ -93,4 +93,12 @@ func middleGain(t *folder.Table) float64 {
 func firstLine(s string) string {
 	line, _, _ := strings.Cut(s, "\n")
 	return line
+}
+
+// counted is a number with its noun.
+func counted(n int, noun string) string {
+	if n == 1 {
+		return "1 " + noun
+	}
+	return fmt.Sprintf("%d %ss", n, noun)
 }

@@ -1,6 +1,11 @@
 package closedform
 
-import "math"
+import (
+	"math"
+
+	"turnwise/models"
+	"turnwise/models/helix"
+)
 
 // The formulas of Kraus: J. D. Kraus, Antennas, 2nd ed., McGraw-Hill 1988,
 // chapter 7 (memory). Circumference c and spacing s in wavelengths, n turns.
@@ -10,6 +15,14 @@ import "math"
 // Kraus1949 is the directivity of 1949, 15 C²NS, a power ratio. Measured and
 // full-wave results lie 1 to 5 dB below it.
 func Kraus1949(n, c, s float64) float64 { return 15 * c * c * n * s }
+
+// Kraus1949Length is the length, m, at which [Kraus1949] promises a power
+// ratio to a winding of the curve's mean circumference at hz.
+func Kraus1949Length(curve *helix.Curve, hz, ratio float64) float64 {
+	wavelength := models.LightSpeed / hz
+	c := math.Pi * meanDiameter(curve) / wavelength
+	return ratio / (15 * c * c) * wavelength
+}
 
 // KrausLate is his later, more realistic directivity, 12 C²NS.
 func KrausLate(n, c, s float64) float64 { return 12 * c * c * n * s }

@@ -56,6 +56,17 @@ func Create(dir string) (Folder, error) {
 	return f, nil
 }
 
+// CreateBeside makes a folder of a run inside another run's, under a name with
+// the first free number.
+func CreateBeside(f Folder, name string) (Folder, error) {
+	for n := 1; ; n++ {
+		inner, err := Create(f.Path(name + "-" + strconv.Itoa(n)))
+		if !errors.Is(err, ErrExists) {
+			return inner, err
+		}
+	}
+}
+
 // Open finds the folder of an existing run.
 func Open(dir string) (Folder, error) {
 	f := Folder{Dir: dir}
