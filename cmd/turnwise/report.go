@@ -274,16 +274,18 @@ func tellSearch(ctx context.Context, book *journal.Reader, past []optimize.Evalu
 		Evaluations: n.Evaluations, Failed: n.Failed, TimedOut: n.TimedOut, Feasible: n.Feasible, Reused: n.Reused, Final: n.Final,
 		Stages: report.Stages(past, found), History: report.History(past),
 	}
-	s.Planned, s.Stopped = decided(ds)
+	s.Planned, _ = decided(ds)
 	for i, d := range ds {
 		if i == 0 {
 			s.Started = d.At
 		}
 		var x stopDetail
 		switch d.Kind {
+		case journal.Start:
+			s.Stopped = ""
 		case journal.Stop:
 			if json.Unmarshal(d.Detail, &x) == nil {
-				s.Seconds += x.Seconds
+				s.Stopped, s.Seconds = x.Reason, s.Seconds+x.Seconds
 			}
 		case journal.Finish:
 			s.Finished = true
@@ -371,6 +373,9 @@ func simulateSheet(ctx context.Context, r *report.Run, sheet *report.Sheet) {
 		answer.Warnings = ends.Warnings
 	}
 	sheet.Band, sheet.Pattern = in, answer.Samples[in[1]].Pattern
+	for i := range answer.Samples {
+		answer.Samples[i].Pattern = nil // but for mid-band nobody looks at it
+	}
 	hand, err := closedform.HandFormulas(&d, band.Mid())
 	if err != nil {
 		sheet.Err = err.Error()

@@ -360,6 +360,18 @@ func TestSheetOfABalkingModel(t *testing.T) {
 		if got := sampleCount(sheet); got != c.samples {
 			t.Errorf("%d samples, want %d", got, c.samples)
 		}
+		r := report.Run{
+			Brief: b, Problem: p, Table: &folder.Table{Varied: columnNames(p), Members: []folder.Member{*sheet.Member}}, Sheets: []report.Sheet{*sheet},
+			Cautions: workshop.Cautions,
+		}
+		page, err := r.HTML()
+		if err != nil {
+			t.Fatal(err)
+		}
+		root, _ := parsePage(t, page)
+		if says := strings.Contains(root.text, "could not be simulated: "+sheet.Err); says != (c.says != "") {
+			t.Errorf("says that it could not be simulated: %v", says)
+		}
 	}
 }
 
@@ -370,7 +382,7 @@ func balkedSheet(t *testing.T, p *objectives.Problem) *report.Sheet {
 		middle[i] = 0.5
 	}
 	d := p.Layout.Design(p.Layout.Space.FromUnit(middle))
-	sheet := &report.Sheet{Member: &folder.Member{ID: d.ID(), Design: d}}
+	sheet := &report.Sheet{Member: &folder.Member{ID: d.ID(), Design: d, Varied: make([]string, len(p.Layout.Columns))}}
 	simulateSheet(t.Context(), &report.Run{Problem: p}, sheet)
 	return sheet
 }
@@ -380,4 +392,12 @@ func sampleCount(s *report.Sheet) int {
 		return 0
 	}
 	return len(s.Simulation.Response.Samples)
+}
+
+func columnNames(p *objectives.Problem) []string {
+	var names []string
+	for _, c := range p.Layout.Columns {
+		names = append(names, c.Name)
+	}
+	return names
 }

@@ -34,7 +34,7 @@ func (r *Run) briefView() briefView {
 		v.Limits = append(v.Limits, pair{figureName(l.Figure), limitWords(l)})
 	}
 	if len(r.Problem.Unapplied) > 0 {
-		v.Notes = append(v.Notes, fmt.Sprintf("Set aside, since the model only indicates impedance and axial ratio: %s.", and(r.Problem.Unapplied)))
+		v.Notes = append(v.Notes, fmt.Sprintf("Set aside, since the model only indicates impedance and axial ratio: %s.", strings.ReplaceAll(and(r.Problem.Unapplied), "_", " ")))
 	}
 	if s.Cone > 0 && (r.judges(objectives.AxialRatioCone) || r.judges(objectives.EdgeGain)) {
 		v.Notes = append(v.Notes, fmt.Sprintf("Figures within the cone are taken to %s° from the axis.", trimmed(s.Cone*180/math.Pi, 3)))

@@ -56,8 +56,17 @@ func (r *Run) sheetCharts(s *Sheet) []Chart {
 	return append(charts, s.lawChart(), s.handChart())
 }
 
+// Names of the drawings, which stand apart from the charts.
+const (
+	sideName = "side"
+	feedName = "feed"
+)
+
 // drawings show the winding to scale.
 func (s *Sheet) drawings() []Chart {
+	if len(s.Wire) == 0 {
+		return nil
+	}
 	d := &s.Member.Design
 	w := &chart.Winding{
 		Diameter: d.Conductor.Diameter * 1e3, Right: d.Handedness != models.Left,
@@ -82,9 +91,9 @@ func (s *Sheet) drawings() []Chart {
 		w.Wire = append(w.Wire, [3]float64{p[0] * 1e3, p[1] * 1e3, p[2] * 1e3})
 	}
 	return []Chart{
-		{Name: "side", Title: "The winding from the side", Caption: "From the side, the feed on the left: the near half of each turn dark, the far half pale.",
+		{Name: sideName, Title: "The winding from the side", Caption: "From the side, the feed on the left: the near half of each turn dark, the far half pale.",
 			Figure: chart.SideView{Winding: w, Width: chart.Wide}, Narrow: chart.SideView{Winding: w, Width: chart.Small}},
-		{Name: "feed", Title: "The winding from the feed", Caption: "From behind the plane, along the axis. " + capital(threadWords(d.Handedness)) + ".",
+		{Name: feedName, Title: "The winding from the feed", Caption: "From behind the plane, along the axis. " + capital(threadWords(d.Handedness)) + ".",
 			Figure: chart.FeedView{Winding: w}},
 	}
 }

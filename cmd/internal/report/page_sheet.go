@@ -17,7 +17,7 @@ type sheetView struct {
 	Short            string // for the list of sheets
 	Figures          []figureRow
 	Dimensions       []pair
-	Side, Feed       figureView
+	Side, Feed       *figureView // the drawings
 	Charts           []figureView
 	Hand             []handRow
 	HandModel        string
@@ -52,10 +52,15 @@ func (r *Run) sheetView(i int) sheetView {
 	if i+1 < len(r.Sheets) {
 		v.Next = r.Sheets[i+1].Member.ID
 	}
-	charts := r.sheetCharts(s)
-	v.Side, v.Feed = charts[0].view(), charts[1].view()
-	for _, c := range charts[2:] {
-		v.Charts = append(v.Charts, c.view())
+	for _, c := range r.sheetCharts(s) {
+		switch figure := c.view(); c.Name {
+		case sideName:
+			v.Side = &figure
+		case feedName:
+			v.Feed = &figure
+		default:
+			v.Charts = append(v.Charts, figure)
+		}
 	}
 	if s.Simulation != nil {
 		v.Hand, v.HandModel, v.Balance = s.handRows(), named(s.Simulation.Model), s.balance()
