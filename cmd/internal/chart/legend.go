@@ -13,6 +13,8 @@ type entry struct {
 	x    float64
 	bare bool // a marker without a line
 	open bool // the marker is hollow
+	// marked puts a marker on the line.
+	marked bool
 }
 
 // Lengths of a legend's parts.
@@ -66,6 +68,9 @@ func (g *legend) draw(b brush, p at) {
 		} else {
 			b.stroke(strong, e.pen.tone, e.pen.dash)
 			b.line(at{x, y + tickSize*0.33}, at{x + sampleWidth, y + tickSize*0.33})
+			if e.marked {
+				b.mark(e.pen.marker, at{x + sampleWidth/2, y + tickSize*0.33}, 2.6, e.pen.tone, false)
+			}
 		}
 		b.text(e.name, at{x + e.sample() + sampleRoom, y}, tickSize, left, ink)
 	}

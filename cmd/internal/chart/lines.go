@@ -50,7 +50,7 @@ func (l *Lines) legend() *legend {
 	g := &legend{room: Small - 2*edge}
 	if len(l.Series) > 1 {
 		for i, s := range l.Series {
-			g.add(s.Name, pens[i%len(pens)])
+			g.put(entry{name: s.Name, pen: pens[i%len(pens)], marked: true})
 		}
 	}
 	return g
@@ -76,11 +76,28 @@ func (l *Lines) Draw(c vg.Canvas) {
 		p := pens[i%len(pens)]
 		b.stroke(strong, p.tone, p.dash)
 		f.curve(b, s.X, s.Y)
+		if len(l.Series) > 1 {
+			s.mark(b, f, p, i, len(l.Series))
+		}
 	}
 	for _, m := range l.Limits {
 		m.name(b, f)
 	}
 	g.draw(b, at{edge, h - edge - textSize*0.75})
+}
+
+// marksOfLine is about how many markers a line carries.
+const marksOfLine = 6
+
+// mark puts markers on a line, one of several, where its fellows have none.
+func (s *Series) mark(b brush, f frame, p pen, of, several int) {
+	every := max(1, len(s.X)/marksOfLine)
+	for k := every * (2*of + 1) / (2 * several); k < len(s.X); k += every {
+		at := f.place(s.X[k], s.Y[k])
+		if at.x >= f.left && at.x <= f.right && at.y >= f.bottom && at.y <= f.top {
+			b.mark(p.marker, at, 2.6, p.tone, false)
+		}
+	}
 }
 
 // sections rules the ends of the stretches and names those that have room.

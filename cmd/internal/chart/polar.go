@@ -40,6 +40,13 @@ const (
 	polarFoot = 14.0
 )
 
+// A cut carries a marker every so many rays, except near the middle, where
+// they would crowd.
+const (
+	markEvery   = 24
+	leastMarked = 0.25
+)
+
 // half reports whether nothing lies behind the plane.
 func (p *Polar) half() bool {
 	for _, c := range p.Cuts {
@@ -66,7 +73,7 @@ func (p *Polar) Size() (w, h float64) {
 func (p *Polar) legend() *legend {
 	g := &legend{room: Small - 2*edge}
 	for i, c := range p.Cuts {
-		g.add(c.Name, pens[i%len(pens)])
+		g.put(entry{name: c.Name, pen: pens[i%len(pens)], marked: true})
 	}
 	return g
 }
@@ -88,6 +95,11 @@ func (p *Polar) Draw(c vg.Canvas) {
 		}
 		b.stroke(strong, n.tone, n.dash)
 		b.line(points...)
+		for k := markEvery / 2 * (i + 1); k < len(points); k += markEvery {
+			if PolarRadius(cut.Level[k], p.Floor) > leastMarked {
+				b.mark(n.marker, points[k], 2.6, n.tone, false)
+			}
+		}
 	}
 	p.levels(b, o)
 	b.text("dB below the rim, against the angle from the axis, °", at{w / 2, edge + rowHeight}, textSize, centre, ink)

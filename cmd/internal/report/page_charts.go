@@ -273,7 +273,7 @@ func (s *Sheet) lawChart() Chart {
 	return Chart{
 		Name: "laws", Title: "How the winding runs", Caption: "Diameter and spacing from the feed to the open end, the lead included.",
 		Figure: &chart.Lines{
-			X: chart.Axis{Label: "turns from the feed", Max: s.Member.Design.Turns}, Y: chart.Around("mm", 0, high), Series: []chart.Series{d, a},
+			X: chart.Axis{Label: "turns from the feed", Max: s.Member.Design.Turns}, Y: chart.Around("diameter and spacing, mm", 0, high), Series: []chart.Series{d, a},
 		},
 	}
 }
