@@ -20,7 +20,8 @@ type panel struct {
 
 const (
 	arcTolerance = 1e-12
-	arcDepth     = 40 // halvings of a piece, never reached by a smooth law
+	arcRounding  = 1e-16 // of a piece's length: differences below it mean nothing
+	arcDepth     = 40    // halvings of a piece, never reached by a smooth law
 	gaussPoints  = 12
 )
 
@@ -50,13 +51,15 @@ func (c *Curve) measure() {
 	for i := range c.pieces {
 		p := &c.pieces[i]
 		width := p.to - p.from
-		c.split(i, 0, width, p.arc(0, width), arcDepth)
+		whole := p.arc(0, width)
+		c.split(i, 0, width, whole, arcRounding*whole, arcDepth)
 	}
 }
 
 // split lays panels from x = a to b of a piece, halving until the fixed rule
-// on the halves confirms the whole.
-func (c *Curve) split(i int, a, b, whole float64, depth int) {
+// on the halves confirms the whole, but for the slack that rounding needs: a
+// waist a millionth as wide as the winding would otherwise be halved for ever.
+func (c *Curve) split(i int, a, b, whole, slack float64, depth int) {
 	p := &c.pieces[i]
 	if p.uniform {
 		c.lay(i, a, b, whole)
@@ -64,13 +67,13 @@ func (c *Curve) split(i int, a, b, whole float64, depth int) {
 	}
 	mid := (a + b) / 2
 	left, right := p.arc(a, mid), p.arc(mid, b)
-	if depth == 0 || math.Abs(left+right-whole) <= arcTolerance*whole {
+	if depth == 0 || math.Abs(left+right-whole) <= arcTolerance*whole+slack {
 		c.lay(i, a, mid, left)
 		c.lay(i, mid, b, right)
 		return
 	}
-	c.split(i, a, mid, left, depth-1)
-	c.split(i, mid, b, right, depth-1)
+	c.split(i, a, mid, left, slack, depth-1)
+	c.split(i, mid, b, right, slack, depth-1)
 }
 
 func (c *Curve) lay(i int, a, b, length float64) {

@@ -96,11 +96,14 @@ func (f *faults) law(key string, l models.Law, example string) {
 	}
 }
 
-// narrowest is the least knot of a law, +Inf without any.
+// narrowest is the least knot of a law that is a length at all, +Inf without
+// any.
 func narrowest(l models.Law) float64 {
 	least := math.Inf(1)
 	for _, v := range l {
-		least = min(least, v)
+		if v >= leastSize {
+			least = min(least, v)
+		}
 	}
 	return least
 }
@@ -153,18 +156,19 @@ func (f *faults) feed(d *models.Feed, turns float64) {
 func (f *faults) lead(l *models.Lead, turns float64) {
 	sound := f.span("feed.lead.turns", l.Turns, leastTurns, mostTurns, "", "0.5")
 	f.span("feed.lead.spacing", l.Spacing, 0, mostLength, " m", "8 mm")
-	need := l.Turns
+	need, what := l.Turns, ""
 	switch l.Shape {
 	case models.Ramp, "":
 	case models.Flat:
-		need += blend
+		need, what = need+blend, " (a flat lead's quarter turn counted)"
 	default:
 		f.add("feed.lead.shape", "%q is unknown; ramp or flat is due", string(l.Shape))
 		return
 	}
-	if sound && need > turns {
-		f.add("feed.lead.turns", "%s turns (with a flat lead's quarter turn after it) are longer than the winding's %s turns; a shorter lead or more turns are due",
-			text(need), text(turns))
+	// The sum of two decimals may round past the decimal that it is.
+	if sound && need > turns+sameBreak {
+		f.add("feed.lead.turns", "%s turns%s are longer than the winding's %s turns; a shorter lead or more turns are due",
+			text(need), what, text(turns))
 	}
 }
 
@@ -184,7 +188,7 @@ func (f *faults) transformer(t *models.Transformer) {
 // ground also demands that the parts do not touch where they must not.
 func (f *faults) ground(d *models.Design) {
 	g := &d.Ground
-	if pin := d.PinDiameter(); len(d.Diameter) > 0 && pin >= d.Diameter[0] && d.Diameter[0] >= leastSize {
+	if pin := d.Feed.Pin; len(d.Diameter) > 0 && pin >= d.Diameter[0] && d.Diameter[0] >= leastSize {
 		f.add("feed.pin", "the riser is %s m thick and the winding %s m wide where it starts; a thinner one is due", text(pin), text(d.Diameter[0]))
 	}
 	if h, c := d.Feed.Height, d.Conductor.Diameter; d.Feed.Strip.Turns == 0 && h >= leastSize && c >= leastSize && h <= c/2 {

@@ -67,44 +67,8 @@ func (c *Curve) sharpest() float64 {
 			most = max(most, p.curvature(0))
 			continue
 		}
-		least := lowest(0, p.to-p.from, func(x float64) float64 { return -p.curvature(x) })
+		least := golden(0, p.to-p.from, func(x float64) float64 { return -p.curvature(x) })
 		most = max(most, -least)
 	}
 	return most
-}
-
-// probes is how finely lowest looks before it closes in.
-const probes = 8
-
-// lowest is the least value of a smooth f between a and b, both included:
-// evenly spread probes, then golden sections about the best of them.
-func lowest(a, b float64, f func(float64) float64) float64 {
-	step := (b - a) / probes
-	at, best := a, math.Inf(1)
-	for i := range probes + 1 {
-		x := a + step*float64(i)
-		if i == probes {
-			x = b
-		}
-		if y := f(x); y < best {
-			at, best = x, y
-		}
-	}
-	lo, hi := max(at-step, a), min(at+step, b)
-	const ratio = 0.6180339887498949
-	u, v := hi-ratio*(hi-lo), lo+ratio*(hi-lo)
-	fu, fv := f(u), f(v)
-	// The value is stationary: a bracket 1e-4 of a step wide holds it to 1e-8.
-	for range 18 {
-		if fu < fv {
-			hi, v, fv = v, u, fu
-			u = hi - ratio*(hi-lo)
-			fu = f(u)
-		} else {
-			lo, u, fu = u, v, fv
-			v = lo + ratio*(hi-lo)
-			fv = f(v)
-		}
-	}
-	return min(best, fu, fv)
 }
