@@ -20,6 +20,21 @@ func TestArcLengthAgainstQuadrature(t *testing.T) {
 	}
 }
 
+// Where a winding has a narrow waist or all but stands still, a fixed rule
+// fails and halving has to do it.
+func TestArcLengthOfNarrowWaists(t *testing.T) {
+	for _, waist := range []float64{0.01, 0.003, 0.0021} {
+		d := plain()
+		d.Turns, d.Diameter, d.Spacing = 2, models.Law{0.2, waist, 0.3, waist, 0.2}, models.Law{0.001}
+		c, want := wind(t, d), refer(d)
+		near(t, "wire length", c.WireLength(), want.arc(2), 1e-11*c.WireLength())
+		for _, at := range along(d, 32) {
+			near(t, "arc", c.Arc(at), want.arc(at), 1e-11*c.WireLength())
+			near(t, "arc of the parameter", c.Arc(c.Parameter(c.Arc(at))), c.Arc(at), 1e-14)
+		}
+	}
+}
+
 // A flat spiral of the same plane has a length in closed form (any calculus
 // text): r = r₀ + kθ, L = k/2·[u√(1 + u²) + asinh u] between the ends' u = r/k.
 func TestFlatSpiralIsTheClosedForm(t *testing.T) {
