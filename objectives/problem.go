@@ -93,7 +93,7 @@ func (p *Problem) hides(r Rung) bool { return r.Indicative && !p.TrustIndicative
 
 // Domain is what a searcher may know of the problem.
 func (p *Problem) Domain() optimize.Domain {
-	return optimize.Domain{Space: p.Layout.Space, Aims: len(p.Aims), Limits: len(p.Limits), Screen: p.Screen}
+	return optimize.Domain{Space: p.Layout.Space, Aims: len(p.Aims), Limits: len(p.Limits), Screen: p.Screen, Views: p.Layout.views()}
 }
 
 // Evaluate answers a candidate over the band's samples, with the figures

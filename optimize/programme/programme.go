@@ -1,5 +1,7 @@
 // Package programme runs the stages of a search as one searcher: a first
 // sample, the genetic searcher on what it found, then simplexes on the front.
+// Where the problem has views of fewer variables, the genetic searcher is run
+// in each of them first, the coarsest first, and goes on from what it found.
 // Shares are of the evaluations planned at the start and never change; what a
 // stage leaves goes to the next, and what the last leaves to another round of
 // the genetic searcher and the simplexes.
@@ -21,6 +23,7 @@ import (
 const (
 	Start   = "start"
 	Sample  = "sample"
+	Simpler = "simpler"
 	Genetic = "genetic"
 	Simplex = "simplex"
 )
@@ -46,6 +49,7 @@ type segment struct {
 	stage string
 	end   int // evaluations of the whole programme at which it ends
 	id    int // distinguishes the random streams of stages of a kind
+	view  int // of a simpler stage
 }
 
 // Search is the programme as a searcher. Close it when it is no longer asked.
@@ -56,6 +60,7 @@ type Search struct {
 	at       int
 	stage    optimize.Searcher
 	told     []optimize.Evaluation
+	viewed   *view // the last simpler stage
 	asked    int
 	why      []string
 	idle     int // stages in a row that asked nothing
@@ -78,12 +83,28 @@ func New(d optimize.Domain, c Config) *Search {
 		sample := 0
 		if k == 0 {
 			sample = max(1, int(math.Round(c.Sample*float64(n))))
-			s.segments = append(s.segments, segment{Sample, begin + min(sample, n), k})
+			s.segments = append(s.segments, segment{stage: Sample, end: begin + min(sample, n), id: k})
 		}
 		walks := int(math.Round(c.Simplex * float64(n)))
-		s.segments = append(s.segments, segment{Genetic, end - walks, k}, segment{Simplex, end, k})
+		if k == 0 && c.Genetic > 0 {
+			s.simpler(begin+sample, end-walks)
+		}
+		s.segments = append(s.segments, segment{stage: Genetic, end: end - walks, id: k}, segment{stage: Simplex, end: end, id: k})
 	}
 	return s
+}
+
+// wholePart is the genetic searcher's part in the whole space, counted in
+// parts of one view.
+const wholePart = 2
+
+// simpler adds a stage for each view between two counts.
+func (s *Search) simpler(from, to int) {
+	views := len(s.domain.Views)
+	for v := range views {
+		end := from + (to-from)*(v+1)/(views+wholePart)
+		s.segments = append(s.segments, segment{stage: Simpler, end: end, view: v})
+	}
 }
 
 // Planned is the sum of the plan.
@@ -123,6 +144,9 @@ func (s *Search) open() bool {
 		case Sample:
 			seeds := s.c.Seeds[:min(len(s.c.Seeds), (n+1)/2)]
 			s.stage = newSample(s.domain, s.c.Seed, n, s.c.Start, seeds)
+		case Simpler:
+			s.viewed = newView(s.domain, g.view, s.viewed, genetic.Config{Population: s.population(n), Evaluations: n, Seed: s.c.Seed})
+			s.stage = s.viewed
 		case Genetic:
 			if s.c.Genetic > 0 {
 				s.stage = genetic.New(s.domain, genetic.Config{Population: s.population(n), Evaluations: n, Seed: s.c.Seed + uint64(g.id)}, s.told)
@@ -149,7 +173,7 @@ func (s *Search) again() bool {
 	id := s.segments[len(s.segments)-1].id + 1000
 	end := s.Planned()
 	walks := int(math.Round(float64(left) * s.c.Simplex / (s.c.Genetic + s.c.Simplex)))
-	s.segments = append(s.segments, segment{Genetic, end - walks, id}, segment{Simplex, end, id})
+	s.segments = append(s.segments, segment{stage: Genetic, end: end - walks, id: id}, segment{stage: Simplex, end: end, id: id})
 	return s.open()
 }
 
