@@ -43,7 +43,7 @@ type Problem struct {
 	Memory Memory
 
 	rungs   []Rung
-	flights singleflight.Group
+	flights *singleflight.Group
 }
 
 var _ optimize.Evaluator = (*Problem)(nil)
@@ -58,7 +58,7 @@ func NewProblem(s Spec, rungs ...Rung) (*Problem, error) {
 	if len(rungs) == 0 {
 		return nil, errors.New("objectives: a problem needs a model")
 	}
-	p := &Problem{Spec: s, rungs: rungs}
+	p := &Problem{Spec: s, rungs: rungs, flights: new(singleflight.Group)}
 	p.Layout = NewLayout(&p.Spec)
 	if p.hides(p.finest()) {
 		p.Aims, p.Limits = nil, nil
@@ -166,7 +166,7 @@ func (s figureSet) outputs() models.Outputs {
 // Under margins every figure is the worst of the perturbed windings', or what
 // the asked share of them reaches.
 func (p *Problem) score(ctx context.Context, pt space.Point, r Rung, hz []float64, want figureSet) (optimize.Score, error) {
-	q := inquiry{rung: r, memory: p.Memory, flights: &p.flights}
+	q := inquiry{rung: r, memory: p.Memory, flights: p.flights}
 	var rows []Row
 	for _, d := range p.spread(p.Layout.Design(pt)) {
 		one, err := p.figures(ctx, &q, d, hz, want)
