@@ -42,18 +42,22 @@ func newProgress(s streams) *progress {
 }
 
 // show takes in how the search stands; it draws only when it is time to.
-func (p *progress) show(s standing) {
+func (p *progress) show(s standing) { p.tell(s.done, s.total, s.line) }
+
+// tell takes in how far anything has come, with a line for when it is time to
+// draw.
+func (p *progress) tell(done, total int, line func() string) {
 	if p.bar != nil {
-		if s.total != p.bar.GetMax() && s.total > 0 {
-			p.bar.ChangeMax(s.total)
+		if total != p.bar.GetMax() && total > 0 {
+			p.bar.ChangeMax(total)
 		}
-		p.bar.Describe(s.line())
-		p.bar.Set(min(s.done, max(s.total-1, 0)))
+		p.bar.Describe(line())
+		p.bar.Set(min(done, max(total-1, 0)))
 		return
 	}
 	if now := p.now(); !now.Before(p.next) {
 		p.next = now.Add(p.every)
-		fmt.Fprintf(p.w, "%s  %d of %d  %s\n", now.Format(time.TimeOnly), s.done, s.total, s.line())
+		fmt.Fprintf(p.w, "%s  %d of %d  %s\n", now.Format(time.TimeOnly), done, total, line())
 	}
 }
 

@@ -1,0 +1,88 @@
+package tolerance
+
+import (
+	"context"
+	"fmt"
+	"math"
+	"math/cmplx"
+
+	"turnwise/models"
+)
+
+// Reflections are what the design and its copies show at the connector.
+type Reflections struct {
+	Hz       []float64
+	Nominal  []complex128
+	Copies   [][]complex128 // those that were answered
+	Failures []Failure
+}
+
+// Reach is how far the copies' reflections lie from the design's, at most, at
+// each frequency.
+func (r *Reflections) Reach() []float64 {
+	reach := make([]float64, len(r.Hz))
+	for _, c := range r.Copies {
+		for i := range reach {
+			reach[i] = math.Max(reach[i], cmplx.Abs(c[i]-r.Nominal[i]))
+		}
+	}
+	return reach
+}
+
+// Reflections answers the design and its copies at frequencies, rising, for
+// their reflections alone. Limits play no part.
+func (s *Study) Reflections(ctx context.Context, hz []float64) (*Reflections, error) {
+	s.Spreads = s.Spreads.Of(&s.Design)
+	r := &Reflections{Hz: hz}
+	var err error
+	if r.Nominal, err = s.reflect(ctx, s.Design, hz); err != nil {
+		return nil, fmt.Errorf("the design itself: %w", err)
+	}
+	if !s.Spreads.Any() {
+		return r, nil
+	}
+	copies := make([]Copy, s.Samples)
+	for i, e := range s.copies() {
+		copies[i].Errors = e
+	}
+	done, failed := 0, 0
+	err = Each(ctx, len(copies), s.Workers, func(i int) bool {
+		g, err := s.reflect(ctx, s.apply(copies[i].Errors), hz)
+		if err != nil {
+			copies[i].Err = err.Error()
+		}
+		copies[i].Reflection = g
+		return err == nil
+	}, func(ok bool) {
+		done++
+		if !ok {
+			failed++
+		}
+		if s.Progress != nil {
+			s.Progress(done, len(copies), failed)
+		}
+	})
+	if err != nil {
+		return nil, err
+	}
+	for i := range copies {
+		if copies[i].Err == "" {
+			r.Copies = append(r.Copies, copies[i].Reflection)
+		}
+	}
+	r.Failures = reasons(copies)
+	return r, nil
+}
+
+// reflect is a design's reflection at the connector.
+func (s *Study) reflect(ctx context.Context, d models.Design, hz []float64) ([]complex128, error) {
+	a, err := s.Rung.Simulator.Simulate(ctx, d, models.Question{Hz: hz, Outputs: models.Axis})
+	if err != nil {
+		return nil, err
+	}
+	out := make([]complex128, len(hz))
+	for i := range out {
+		out[i] = models.Reflection(a.Samples[i].Input, d.Feed.Impedance)
+	}
+	return out, nil
+}
