@@ -42,5 +42,9 @@ func plain(err error) error {
 	if errors.As(err, &pe) {
 		return pe.Err
 	}
+	var le *os.LinkError
+	if errors.As(err, &le) {
+		return le.Err
+	}
 	return err
 }

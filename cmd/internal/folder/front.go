@@ -6,7 +6,6 @@ import (
 	"fmt"
 	"io/fs"
 	"os"
-	"path/filepath"
 	"slices"
 	"strings"
 
@@ -116,15 +115,16 @@ func (f Folder) WriteResult(t, near *Table) error {
 
 // dropDesigns removes the design files of members that have left the front.
 func (f Folder) dropDesigns(keep map[string]bool) error {
-	files, err := filepath.Glob(f.Path(DesignsDir, "*.yaml"))
+	files, err := os.ReadDir(f.Path(DesignsDir))
 	if err != nil {
-		return err
+		return fmt.Errorf("cannot read %s: %w", f.Path(DesignsDir), plain(err))
 	}
-	for _, path := range files {
-		name := filepath.Base(path)
-		if keep[name] || len(strings.TrimSuffix(name, ".yaml")) != 10 {
+	for _, file := range files {
+		id, isDesign := strings.CutSuffix(file.Name(), ".yaml")
+		if !isDesign || !isID(id) || keep[file.Name()] {
 			continue
 		}
+		path := f.Path(DesignsDir, file.Name())
 		if err := os.Remove(path); err != nil {
 			return fmt.Errorf("cannot remove %s: %w", path, plain(err))
 		}

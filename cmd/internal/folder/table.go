@@ -3,10 +3,13 @@ package folder
 import (
 	"bytes"
 	"encoding/csv"
+	"errors"
 	"fmt"
+	"io"
 	"math"
 	"os"
 	"strconv"
+	"strings"
 
 	"turnwise/models"
 	"turnwise/objectives"
@@ -77,7 +80,7 @@ func figureText(x float64) string {
 		return ""
 	}
 	x, _ = strconv.ParseFloat(strconv.FormatFloat(x, 'e', 6, 64), 64)
-	return strconv.FormatFloat(x, 'f', -1, 64)
+	return strconv.FormatFloat(x+0, 'f', -1, 64) // −0 + 0 is 0
 }
 
 // VariedText is a varied quantity as the shortest decimal that reads back
@@ -97,53 +100,97 @@ func ReadTable(path string) (*Table, error) {
 	return t, nil
 }
 
-// ParseTable reads the text of a front.csv.
+// ParseTable reads the text of a front.csv. Its error names the line.
 func ParseTable(text []byte) (*Table, error) {
-	rows, err := csv.NewReader(bytes.NewReader(text)).ReadAll()
+	r := csv.NewReader(bytes.NewReader(text))
+	header, err := r.Read()
+	if err != nil && err != io.EOF {
+		return nil, err
+	}
+	t, err := parseHeader(header)
 	if err != nil {
 		return nil, err
 	}
-	fixed := 1 + objectives.FigureCount + 4
-	if len(rows) == 0 || len(rows[0]) < fixed {
-		return nil, fmt.Errorf("is not a front's table: its header row is missing or too short")
-	}
-	t := &Table{Varied: rows[0][1 : 1+len(rows[0])-fixed]}
-	want := t.header(false)
-	for i, name := range rows[0] {
-		if name != want[i] {
-			return nil, fmt.Errorf("column %d is %q; %q belongs there", i+1, name, want[i])
+	for {
+		row, err := r.Read()
+		if err == io.EOF {
+			return t, nil
 		}
-	}
-	for n, row := range rows[1:] {
-		m, err := parseMember(row, len(t.Varied))
 		if err != nil {
-			return nil, fmt.Errorf("row %d: %w", n+2, err)
+			return nil, err
+		}
+		m, err := parseMember(row, t.Varied)
+		if err != nil {
+			line, _ := r.FieldPos(0)
+			return nil, fmt.Errorf("line %d: %w", line, err)
 		}
 		t.Members = append(t.Members, m)
+	}
+}
+
+func parseHeader(row []string) (*Table, error) {
+	fixed := 1 + objectives.FigureCount + 4
+	if len(row) < fixed {
+		return nil, errors.New("is not a front's table: its header row is missing or too short")
+	}
+	t := &Table{Varied: row[1 : 1+len(row)-fixed]}
+	want := t.header(false)
+	for i, name := range row {
+		if name != want[i] {
+			return nil, fmt.Errorf("line 1: column %d is %q; %q belongs there", i+1, name, want[i])
+		}
 	}
 	return t, nil
 }
 
-func parseMember(row []string, varied int) (Member, error) {
-	m := Member{ID: row[0], Varied: row[1 : 1+varied]}
-	rest := row[1+varied:]
-	for f := range m.Figures {
-		m.Figures[f] = math.NaN()
-		if rest[f] == "" {
+func parseMember(row, varied []string) (Member, error) {
+	m := Member{ID: row[0], Varied: row[1 : 1+len(varied)]}
+	if !isID(m.ID) {
+		return m, fmt.Errorf("id: %q is not 10 hexadecimal digits", m.ID)
+	}
+	for i, name := range varied {
+		if name == string(objectives.Conductor) {
 			continue
 		}
-		x, err := strconv.ParseFloat(rest[f], 64)
-		if err != nil || math.IsNaN(x) || math.IsInf(x, 0) {
-			return m, fmt.Errorf("%s: %q is not a number", objectives.Figures[f].Column, rest[f])
+		if _, err := parseCell(name, m.Varied[i]); err != nil {
+			return m, err
+		}
+	}
+	rest := row[1+len(varied):]
+	for f := range m.Figures {
+		x, err := parseCell(objectives.Figures[f].Column, rest[f])
+		if err != nil {
+			return m, err
 		}
 		m.Figures[f] = x
 	}
 	rest = rest[objectives.FigureCount:]
 	m.Model, m.Fidelity, m.Checked = rest[0], rest[1], rest[2] == "true"
+	if !m.Checked && rest[2] != "false" {
+		return m, fmt.Errorf("checked: %q is neither true nor false", rest[2])
+	}
 	seed, err := strconv.ParseUint(rest[3], 10, 64)
 	if err != nil {
 		return m, fmt.Errorf("seed: %q is not a whole number", rest[3])
 	}
 	m.Seed = seed
 	return m, nil
+}
+
+// parseCell is a number, or NaN for the empty cell of one that does not
+// apply.
+func parseCell(column, text string) (float64, error) {
+	if text == "" {
+		return math.NaN(), nil
+	}
+	x, err := strconv.ParseFloat(text, 64)
+	if err != nil || math.IsNaN(x) || math.IsInf(x, 0) {
+		return 0, fmt.Errorf("%s: %q is not a number", column, text)
+	}
+	return x, nil
+}
+
+// isID reports whether a text has the form of a design's id.
+func isID(text string) bool {
+	return len(text) == 10 && strings.Trim(text, "0123456789abcdef") == ""
 }
