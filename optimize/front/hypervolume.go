@@ -38,6 +38,12 @@ func Contributions(points [][]float64, reference []float64) []float64 {
 	return out
 }
 
+// Gain is the hypervolume that a point would add to the others.
+func Gain(point []float64, others [][]float64, reference []float64) float64 {
+	var w volumes
+	return w.exclusive(append(slices.Clip(others), point), len(others), nil, reference)
+}
+
 // volumes is the workspace of hypervolume computations: repeated use
 // allocates nothing.
 type volumes struct {

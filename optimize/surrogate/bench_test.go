@@ -2,35 +2,115 @@ package surrogate_test
 
 import (
 	"fmt"
+	"math"
 	"sort"
 	"testing"
+	"time"
 
+	"turnwise/optimize"
 	"turnwise/optimize/front"
+	"turnwise/optimize/genetic"
 	"turnwise/optimize/searchtest"
+	"turnwise/optimize/space"
 	"turnwise/optimize/surrogate"
 )
 
 // BenchmarkExpensive is the searcher where simulations are dear: all that was
 // answered within the evaluations, seeds 1 to 11. Run it with -benchtime 1x.
+// nsga is what the genetic searcher with a population of 20 covers.
 func BenchmarkExpensive(b *testing.B) {
 	for _, p := range append(searchtest.Problems(), searchtest.ZDT1In10()...) {
 		for _, n := range []int{200, 500, 2000} {
 			b.Run(fmt.Sprintf("%s/evaluations=%d", p.Name, n), func(b *testing.B) {
 				for b.Loop() {
-					var fractions []float64
-					for seed := uint64(1); seed <= 11; seed++ {
-						all := searchtest.Drive(p, surrogate.New(p.Domain, surrogate.Config{Evaluations: n, Seed: seed}, nil))
-						values := make([]front.Value, len(all))
-						for i := range all {
-							values[i] = all[i].Value()
-						}
-						fractions = append(fractions, p.Fraction(values))
-					}
-					sort.Float64s(fractions)
-					b.ReportMetric(fractions[len(fractions)/2], "hv-fraction")
-					b.ReportMetric(fractions[0], "hv-fraction-worst")
+					dear := fractions(p, func(seed uint64) optimize.Searcher {
+						return surrogate.New(p.Domain, surrogate.Config{Evaluations: n, Seed: seed}, nil)
+					})
+					plain := fractions(p, func(seed uint64) optimize.Searcher {
+						return genetic.New(p.Domain, genetic.Config{Population: 20, Evaluations: n, Seed: seed}, nil)
+					})
+					b.ReportMetric(dear[len(dear)/2], "hv-fraction")
+					b.ReportMetric(dear[0], "hv-fraction-worst")
+					b.ReportMetric(plain[len(plain)/2], "nsga")
 				}
 			})
 		}
 	}
+}
+
+// fractions are what the searcher covers of a front, ascending, of 11 seeds.
+func fractions(p *searchtest.Problem, make func(seed uint64) optimize.Searcher) []float64 {
+	var out []float64
+	for seed := uint64(1); seed <= 11; seed++ {
+		out = append(out, p.Fraction(valuesOf(searchtest.Drive(p, make(seed)))))
+	}
+	sort.Float64s(out)
+	return out
+}
+
+func valuesOf(es []optimize.Evaluation) []front.Value {
+	values := make([]front.Value, len(es))
+	for i := range es {
+		values[i] = es[i].Value()
+	}
+	return values
+}
+
+// BenchmarkRound is what one round costs late in a search: 16 points asked
+// when 2,000 are known, of 10 variables, 3 aims and 4 limits.
+func BenchmarkRound(b *testing.B) {
+	d := optimize.Domain{Aims: 3, Limits: 4}
+	for i := range 10 {
+		d.Space = append(d.Space, space.NewReal(fmt.Sprintf("x%d", i), 0, 1, 0))
+	}
+	start := answered(d, genetic.New(d, genetic.Config{Population: 40, Evaluations: 2000, Seed: 1}, nil))
+	spent := time.Duration(0)
+	count := 0
+	for b.Loop() {
+		s := surrogate.New(d, surrogate.Config{Evaluations: 2000, Batch: 16, Seed: uint64(count)}, start)
+		for range 3 {
+			began := time.Now()
+			batch := s.Ask()
+			told := make([]optimize.Evaluation, len(batch))
+			for i, c := range batch {
+				told[i] = trade(d, c)
+			}
+			s.Tell(told)
+			spent += time.Since(began)
+			count++
+		}
+	}
+	b.ReportMetric(spent.Seconds()*1000/float64(count), "ms/round")
+}
+
+// answered drives a searcher on the trade to its end.
+func answered(d optimize.Domain, s optimize.Searcher) []optimize.Evaluation {
+	var all []optimize.Evaluation
+	for batch := s.Ask(); len(batch) > 0; batch = s.Ask() {
+		told := make([]optimize.Evaluation, len(batch))
+		for i, c := range batch {
+			told[i] = trade(d, c)
+		}
+		s.Tell(told)
+		all = append(all, told...)
+	}
+	return all
+}
+
+// trade answers with squared distances to as many places as there are aims,
+// and limits that cut corners off.
+func trade(d optimize.Domain, c optimize.Candidate) optimize.Evaluation {
+	e := optimize.Evaluation{Candidate: c, Status: optimize.OK}
+	u := d.Space.Unit(c.Point)
+	for m := range d.Aims {
+		sum := 0.0
+		for i, x := range u {
+			sum += math.Pow(x-float64((m+i)%3)/2, 2)
+		}
+		e.Aims = append(e.Aims, sum)
+	}
+	for l := range d.Limits {
+		e.Limits = append(e.Limits, u[l%len(u)]*u[(l+1)%len(u)]-0.5)
+	}
+	return e
 }

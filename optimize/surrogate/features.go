@@ -6,9 +6,9 @@ import (
 	"turnwise/optimize/space"
 )
 
-// features lays points out for the learned surfaces: every variable that can
-// move and has an order once, from 0 to 1; every choice as one coordinate a
-// name, so that two different names lie 1 apart.
+// features lays points out for the surfaces: every variable that can move
+// and has an order once, from 0 to 1; every choice as one coordinate a name,
+// so that two different names lie 1 apart.
 type features struct {
 	space   space.Space
 	ordered []int // variables with an order
@@ -26,15 +26,15 @@ func newFeatures(s space.Space) features {
 			f.size += v.Levels()
 		default:
 			f.ordered = append(f.ordered, i)
+			f.size++
 		}
 	}
-	f.size += len(f.ordered)
 	return f
 }
 
-// of writes the point's features to u: first those with an order.
-func (f *features) of(p space.Point, u []float64) {
-	clear(u)
+// of gives the point's features, first those with an order.
+func (f *features) of(p space.Point) []float64 {
+	u := make([]float64, f.size)
 	for k, i := range f.ordered {
 		v := &f.space[i]
 		u[k] = (p[i] - v.From) / (v.To - v.From)
@@ -44,14 +44,5 @@ func (f *features) of(p space.Point, u []float64) {
 		u[at+int(p[i])] = math.Sqrt2 / 2
 		at += f.space[i].Levels()
 	}
-}
-
-// distance is Euclid's.
-func distance(a, b []float64) float64 {
-	sum := 0.0
-	for i, x := range a {
-		d := x - b[i]
-		sum += d * d
-	}
-	return math.Sqrt(sum)
+	return u
 }

@@ -6,11 +6,8 @@
 package surrogate
 
 import (
-	"math"
-
 	"turnwise/optimize"
 	"turnwise/optimize/front"
-	"turnwise/optimize/genetic"
 	"turnwise/optimize/space"
 )
 
@@ -21,11 +18,17 @@ type Config struct {
 	Seed        uint64
 }
 
-// Bounds of a batch, and of what one surface is laid through.
+// Bounds of a batch, and the rounds that a search should have at least.
 const (
-	leastBatch  = 5
-	mostBatch   = 16
+	leastBatch = 5
+	mostBatch  = 16
+	rounds     = 60
+)
+
+// Bounds of what surfaces are laid through: all of it, and of that the best.
+const (
 	mostCentres = 300
+	mostBest    = 240
 )
 
 // Search is the learned searcher.
@@ -34,14 +37,14 @@ type Search struct {
 	c        Config
 	features features
 	known    []optimize.Evaluation // answered, each point once
-	seen     map[string]bool
+	places   [][]float64           // features of what is known
+	seen     map[string]bool       // keys of what is known
 	spent    int
 	round    int
-	asked    []origin   // of the last batch
-	share    float64    // of a batch that the surfaces choose
-	owed     float64    // parts of a point that they had not yet
-	smooth   bool       // the last batch's surfaces were smooth ones
-	merit    [2]float64 // of any surfaces, and of smooth ones
+	asked    []origin // of the last batch
+	parts    parts
+	caution  caution
+	promised []front.Value // by the surfaces, of the last batch
 	why      string
 }
 
@@ -52,6 +55,7 @@ const (
 	drawn origin = iota
 	learned
 	bred
+	origins int = iota
 )
 
 var _ optimize.Searcher = (*Search)(nil)
@@ -60,9 +64,12 @@ var _ optimize.Explainer = (*Search)(nil)
 // New is a searcher that starts from what is known.
 func New(d optimize.Domain, c Config, start []optimize.Evaluation) *Search {
 	if c.Batch <= 0 {
-		c.Batch = min(max(c.Evaluations/30, leastBatch), mostBatch)
+		c.Batch = min(max(c.Evaluations/rounds, leastBatch), mostBatch)
 	}
-	s := &Search{domain: d, c: c, features: newFeatures(d.Space), seen: map[string]bool{}, share: firstShare, merit: [2]float64{1, 1}}
+	s := &Search{
+		domain: d, c: c, features: newFeatures(d.Space), seen: map[string]bool{},
+		parts: parts{learned: firstPart}, caution: firstCaution,
+	}
 	s.take(start)
 	return s
 }
@@ -73,6 +80,7 @@ func (s *Search) take(es []optimize.Evaluation) {
 		if key := es[i].Point.Key(); !s.seen[key] {
 			s.seen[key] = true
 			s.known = append(s.known, es[i])
+			s.places = append(s.places, s.features.of(es[i].Point))
 		}
 	}
 }
@@ -86,22 +94,7 @@ func (s *Search) Ask() []optimize.Candidate {
 		return nil
 	}
 	s.round++
-	var points []space.Point
-	s.asked = s.asked[:0]
-	add := func(ps []space.Point, from origin) {
-		for _, p := range ps {
-			points = append(points, p)
-			s.asked = append(s.asked, from)
-		}
-	}
-	if short := s.first() - s.answered(); short > 0 {
-		add(s.draw(min(n, short)), drawn)
-	} else {
-		s.owed += s.share * float64(n)
-		add(s.infill(int(s.owed)), learned)
-		s.owed -= math.Floor(s.owed)
-		add(s.breed(n-len(points), points), bred)
-	}
+	points := s.points(n)
 	if len(points) == 0 {
 		s.finish("no point is left that passes the screens and is not known")
 		return nil
@@ -114,9 +107,29 @@ func (s *Search) Ask() []optimize.Candidate {
 	return batch
 }
 
-// first is how many answers the surfaces want to begin with.
+// points gives n of them and notes how they came about.
+func (s *Search) points(n int) []space.Point {
+	var points []space.Point
+	s.asked = s.asked[:0]
+	add := func(more []space.Point, from origin) {
+		for _, p := range more {
+			points = append(points, p)
+			s.asked = append(s.asked, from)
+		}
+	}
+	if short := s.first() - s.answered(); short > 0 {
+		add(s.draw(min(n, short)), drawn)
+		return points
+	}
+	add(s.infill(s.parts.take(n)), learned)
+	add(s.breed(n-len(points), points), bred)
+	return points
+}
+
+// first is how many answers the surfaces want to begin with: a third of the
+// evaluations at the most, but never next to nothing.
 func (s *Search) first() int {
-	return min(2*(s.features.size+1), max(s.c.Evaluations/3, s.features.size+2))
+	return min(2*(s.features.size+1), max(s.c.Evaluations/3, leastBatch))
 }
 
 // answered counts the evaluations that surfaces can be laid through.
@@ -130,115 +143,31 @@ func (s *Search) answered() int {
 	return n
 }
 
-// draw gives points of a Latin hypercube.
-func (s *Search) draw(n int) []space.Point {
-	rng := optimize.Stream(s.c.Seed, "surrogate draw", s.round)
-	var out []space.Point
-	d := len(s.domain.Space)
-	for range mostDraws {
-		cells := make([][]int, d)
-		for i := range cells {
-			cells[i] = rng.Perm(n)
-		}
-		u := make([]float64, d)
-		for k := range n {
-			for i := range u {
-				u[i] = (float64(cells[i][k]) + rng.Float64()) / float64(n)
-			}
-			p := s.domain.Space.FromUnit(u)
-			if key := p.Key(); len(out) < n && !s.seen[key] && s.domain.Passes(p) {
-				s.seen[key] = true
-				out = append(out, p)
-			}
-		}
-		if len(out) == n {
-			break
-		}
-	}
-	for _, p := range out {
-		delete(s.seen, p.Key())
-	}
-	return out
-}
-
-const mostDraws = 1000
-
-// breed gives children of the best that is known, made without surfaces.
-func (s *Search) breed(n int, beside []space.Point) []space.Point {
-	if n <= 0 {
-		return nil
-	}
-	g := genetic.New(s.domain, genetic.Config{Population: max(n+len(beside), 20), Evaluations: n + len(beside), Seed: s.stream("bred")}, s.known)
-	taken := map[string]bool{}
-	for _, p := range beside {
-		taken[p.Key()] = true
-	}
-	var out []space.Point
-	for _, c := range g.Ask() {
-		if len(out) < n && !taken[c.Point.Key()] {
-			out = append(out, c.Point)
-		}
-	}
-	return out
-}
-
-// stream is the seed of a part of this round.
-func (s *Search) stream(name string) uint64 {
-	return optimize.Stream(s.c.Seed, "surrogate "+name, s.round).Uint64()
-}
-
-// Parts of a batch: what the surfaces choose at first, the least of either,
-// and how fast they follow what is gained.
-const (
-	firstShare = 0.95
-	leastShare = 0.05
-	following  = 0.25
-	otherwise  = 3
-)
-
-// Tell takes a batch in and moves the parts towards the one that gained more.
+// Tell takes a batch in and learns from it how far to trust the surfaces.
 func (s *Search) Tell(batch []optimize.Evaluation) {
 	before := s.values()
 	s.take(batch)
-	var gain, count [3]float64
+	var of [origins][]front.Value
 	for i := range batch {
-		from := s.asked[i]
-		count[from]++
-		v := batch[i].Value()
-		if !v.Unknown && !beaten(v, before) {
-			gain[from]++
-		}
+		of[s.asked[i]] = append(of[s.asked[i]], batch[i].Value())
 	}
-	if count[learned] > 0 {
-		k := 0
-		if s.smooth {
-			k = 1
-		}
-		s.merit[k] += 0.3 * (gain[learned]/count[learned] - s.merit[k])
-	}
-	if count[learned] == 0 || count[bred] == 0 || gain[learned]+gain[bred] == 0 {
+	if len(of[learned]) == 0 {
 		return
 	}
-	a, b := gain[learned]/count[learned], gain[bred]/count[bred]
-	s.share = min(max((1-following)*s.share+following*a/(a+b), leastShare), 1-leastShare)
+	came := progress(before, of[learned])
+	s.caution.follow(progress(before, s.promised), came)
+	if n := float64(len(of[bred])); n > 0 {
+		s.parts.follow(came/float64(len(of[learned])), progress(before, of[bred])/n)
+	}
 }
 
+// values is what ranking sees of all that is known.
 func (s *Search) values() []front.Value {
-	vs := make([]front.Value, len(s.known))
+	values := make([]front.Value, len(s.known))
 	for i := range s.known {
-		vs[i] = s.known[i].Value()
+		values[i] = s.known[i].Value()
 	}
-	return vs
-}
-
-// beaten reports whether some value is at least as good as v.
-func beaten(v front.Value, by []front.Value) bool {
-	for _, o := range by {
-		if front.Dominates(o, v) {
-			return true
-		}
-	}
-	return false
+	return values
 }
 
 // Explain says why the search is done.
