@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 	"math/cmplx"
+	"slices"
 
 	"turnwise/models"
 )
@@ -27,6 +28,34 @@ func (r *Reflections) Reach() []float64 {
 		}
 	}
 	return reach
+}
+
+// At is the prediction and how far the copies reach at other frequencies, along
+// straight lines; beyond either end they stay as they are there.
+func (r *Reflections) At(hz []float64) (predicted []complex128, reach []float64) {
+	own := r.Reach()
+	predicted, reach = make([]complex128, len(hz)), make([]float64, len(hz))
+	for i, f := range hz {
+		k, u := place(r.Hz, f)
+		predicted[i], reach[i] = r.Nominal[k], own[k]
+		if u > 0 {
+			predicted[i] += complex(u, 0) * (r.Nominal[k+1] - r.Nominal[k])
+			reach[i] += u * (own[k+1] - own[k])
+		}
+	}
+	return predicted, reach
+}
+
+// place finds the interval of rising values that holds x, and its part in it.
+func place(rising []float64, x float64) (k int, u float64) {
+	k, exact := slices.BinarySearch(rising, x)
+	switch {
+	case exact || k == 0:
+		return min(k, len(rising)-1), 0
+	case k == len(rising):
+		return k - 1, 0
+	}
+	return k - 1, (x - rising[k-1]) / (rising[k] - rising[k-1])
 }
 
 // Reflections answers the design and its copies at frequencies, rising, for
