@@ -88,18 +88,36 @@ func (p *Problem) finest() Rung { return p.rungs[len(p.rungs)-1] }
 // Finest is the rung whose word is final.
 func (p *Problem) Finest() Rung { return p.finest() }
 
+// Rungs are the models, cheapest first.
+func (p *Problem) Rungs() []Rung { return p.rungs }
+
 // hides reports whether match and axial ratio stay unsaid on a rung.
 func (p *Problem) hides(r Rung) bool { return r.Indicative && !p.TrustIndicative }
 
 // Domain is what a searcher may know of the problem.
 func (p *Problem) Domain() optimize.Domain {
-	return optimize.Domain{Space: p.Layout.Space, Aims: len(p.Aims), Limits: len(p.Limits), Screen: p.Screen, Views: p.Layout.views()}
+	return optimize.Domain{Space: p.Layout.Space, Aims: len(p.Aims), Limits: len(p.Limits), Finest: len(p.rungs) - 1, Screen: p.Screen, Views: p.Layout.views()}
 }
 
 // Evaluate answers a candidate over the band's samples, with the figures
 // that aims and limits need and those that come for nothing.
 func (p *Problem) Evaluate(ctx context.Context, c optimize.Candidate) (optimize.Score, error) {
-	return p.score(ctx, c.Point, p.rungs[min(c.Rung, len(p.rungs)-1)], p.Band.Hz(), p.needed())
+	rung := min(c.Rung, len(p.rungs)-1)
+	s, err := p.score(ctx, c.Point, p.rungs[rung], p.Band.Hz(), p.needed())
+	if rung < len(p.rungs)-1 {
+		neutral(s.Aims)
+		neutral(s.Limits)
+	}
+	return s, err
+}
+
+// neutral puts 0 where a model below the finest has no answer.
+func neutral(xs []float64) {
+	for i, x := range xs {
+		if math.IsNaN(x) {
+			xs[i] = 0
+		}
+	}
 }
 
 // Confirm answers a point with the finest model over a sweep in steps of at

@@ -95,6 +95,8 @@ type Domain struct {
 	Space  space.Space
 	Aims   int
 	Limits int
+	// Finest is the rung of the ladder whose word counts; with one model 0.
+	Finest int
 	// Screen is a free check on a canonical point: violation 0 passes, and
 	// what does not pass is not worth an evaluation. Pure and safe for
 	// concurrent use; nil: everything passes.

@@ -15,6 +15,8 @@ type Options struct {
 	Workers int
 	// Evaluations is the budget, counted from candidate 0; 0: none.
 	Evaluations int
+	// Finest is the rung whose answers make the front.
+	Finest int
 	// For is how long this run may take; Until is when it must end. Zero: no
 	// such limit.
 	For   time.Duration
@@ -333,7 +335,9 @@ func (r *run) take(out []Evaluation, done []bool) []Evaluation {
 		if e.Status != OK {
 			r.failed++
 		}
-		r.archive.Insert(e.ID, e.Value())
+		if e.Rung >= r.o.Finest {
+			r.archive.Insert(e.ID, e.Value())
+		}
 		key := fmt.Sprintf("%d %s", e.Rung, e.Point.Key())
 		if _, ok := r.asked[key]; !ok {
 			r.asked[key] = len(r.all)

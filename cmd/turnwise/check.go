@@ -199,7 +199,7 @@ func timeEvaluation(ctx context.Context, p *objectives.Problem) (time.Duration, 
 	answered := 0
 	for i, pt := range append(points[:1:1], points...) {
 		began := time.Now()
-		_, err := p.Evaluate(ctx, optimize.Candidate{Point: pt})
+		_, err := p.Evaluate(ctx, optimize.Candidate{Point: pt, Rung: len(p.Rungs()) - 1})
 		if err != nil {
 			faults = append(faults, err)
 			continue

@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 
 	"github.com/spf13/cobra"
@@ -117,6 +118,8 @@ func everything(ctx context.Context, r *journal.Reader) (all []optimize.Evaluati
 	if err != nil {
 		return nil, nil, err
 	}
+	last := len(r.Header().Models) - 1
+	past = slices.DeleteFunc(past, func(e optimize.Evaluation) bool { return e.Rung < last })
 	confirmed := map[int]int{}
 	for i := range final {
 		confirmed[final[i].ID] = i

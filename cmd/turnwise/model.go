@@ -16,9 +16,6 @@ import (
 // defaultModel answers simulate where no model is named.
 const defaultModel = configs.FullWave
 
-// errNotYet names what a brief may ask for and this version cannot give.
-var errNotYet = errors.New("is not in this version")
-
 // newRung makes one step of a ladder of models.
 func newRung(model, fidelity string) (objectives.Rung, error) {
 	switch model {
@@ -41,17 +38,18 @@ func newRung(model, fidelity string) (objectives.Rung, error) {
 
 // newProblem binds a spec to the models that a brief names.
 func newProblem(b configs.Brief, spec objectives.Spec) (*objectives.Problem, error) {
-	if len(b.Ladder) > 1 {
-		return nil, fmt.Errorf("model: a ladder of models %w; name one model", errNotYet)
-	}
 	if b.Ladder[0].Model == configs.ExternalModel {
 		return externalProblem(b, spec)
 	}
-	rung, err := newRung(b.Ladder[0].Model, b.Ladder[0].Fidelity)
-	if err != nil {
-		return nil, err
+	var rungs []objectives.Rung
+	for _, r := range b.Ladder {
+		rung, err := newRung(r.Model, r.Fidelity)
+		if err != nil {
+			return nil, err
+		}
+		rungs = append(rungs, rung)
 	}
-	return objectives.NewProblem(spec, rung)
+	return objectives.NewProblem(spec, rungs...)
 }
 
 // mostPrograms bounds the processes of an external model; no more are started

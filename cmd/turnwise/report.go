@@ -193,6 +193,7 @@ func gather(ctx context.Context, s streams, f folder.Folder, b configs.Brief, p 
 	if err != nil {
 		return nil, failed(err)
 	}
+	past = finest(past, p)
 	r := &report.Run{Name: folderName(f.Dir), Brief: b, Problem: p, Table: t, Chosen: chosen(f), Cautions: workshop.Cautions}
 	if r.Origin, err = adopt(p, t, past); err != nil {
 		return nil, wrong(fmt.Errorf("%s: %w", f.Path(folder.FrontFile), err))

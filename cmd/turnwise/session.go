@@ -8,6 +8,7 @@ import (
 	"os"
 	"path/filepath"
 	"runtime"
+	"slices"
 	"strconv"
 	"strings"
 	"sync"
@@ -154,7 +155,7 @@ func (ses *session) header() journal.Header {
 	h := journal.Header{
 		Brief: string(ses.resolved()), Digest: ses.brief.Digest(), Program: "turnwise " + version, Seed: ses.brief.Seed,
 		Machine: fmt.Sprintf("%s, %s/%s, %d processors", host, runtime.GOOS, runtime.GOARCH, runtime.NumCPU()),
-		Models:  []string{p.Finest().Simulator.Identity()},
+		Models:  identities(p),
 	}
 	for i := range p.Layout.Space {
 		h.Variables = append(h.Variables, journal.Variable{Name: p.Layout.Space[i].Name, Choices: p.Layout.Space[i].Choices})
@@ -236,7 +237,7 @@ func (ses *session) recall(ctx context.Context, asked int) error {
 	if ses.book, err = journal.Open(ses.folder.Path(folder.JournalFile)); err != nil {
 		return failed(err)
 	}
-	if h := ses.book.Header(); h.Digest != ses.brief.Digest() || len(h.Models) != 1 || h.Models[0] != ses.problem.Finest().Simulator.Identity() {
+	if h := ses.book.Header(); h.Digest != ses.brief.Digest() || !slices.Equal(h.Models, identities(ses.problem)) {
 		return wrongf("the journal in %s was written for another brief or another version of the model: start a new run", ses.folder.Dir)
 	}
 	ds, err := ses.book.Decisions(ctx)
@@ -374,9 +375,9 @@ func (ses *session) run(ctx context.Context) error {
 	searcher := ses.searcher()
 	defer searcher.Close()
 	began := time.Now()
-	ses.all = append(ses.all, ses.past...)
-	for i := range ses.past {
-		ses.so.Insert(ses.past[i].ID, ses.past[i].Value())
+	ses.all = finest(ses.past, ses.problem)
+	for i := range ses.all {
+		ses.so.Insert(ses.all[i].ID, ses.all[i].Value())
 	}
 	r, err := optimize.Run(ctx, ses.problem, searcher, ses.past, ses.options(show))
 	show.end()
@@ -393,7 +394,7 @@ func (ses *session) run(ctx context.Context) error {
 // options are how the loop runs.
 func (ses *session) options(show *progress) optimize.Options {
 	o := optimize.Options{
-		Workers: ses.set.Workers, Evaluations: sum(ses.planned), For: ses.set.For, Until: ses.until, Timeout: ses.timeout,
+		Workers: ses.set.Workers, Evaluations: sum(ses.planned), Finest: len(ses.problem.Rungs()) - 1, For: ses.set.For, Until: ses.until, Timeout: ses.timeout,
 		Stagnation: optimize.Stagnation(ses.brief.Budget.Stagnation),
 		Record: func(es []optimize.Evaluation) error {
 			if err := ses.book.Record(es); err != nil {
@@ -422,6 +423,9 @@ func (ses *session) keep(es []optimize.Evaluation) error {
 			ses.kept.Store(e.Answers[k].Key, nil)
 		}
 		e.Answers = nil
+		if e.Rung < len(ses.problem.Rungs())-1 {
+			continue
+		}
 		ses.all = append(ses.all, e)
 		better = ses.so.Insert(e.ID, e.Value()) || better
 	}
@@ -470,6 +474,26 @@ func (ses *session) standing(p optimize.Progress) standing {
 	return s
 }
 
+// identities are those of the models, cheapest first.
+func identities(p *objectives.Problem) []string {
+	var out []string
+	for _, r := range p.Rungs() {
+		out = append(out, r.Simulator.Identity())
+	}
+	return out
+}
+
+// finest are the evaluations by the finest model.
+func finest(all []optimize.Evaluation, p *objectives.Problem) []optimize.Evaluation {
+	var out []optimize.Evaluation
+	for i := range all {
+		if all[i].Rung >= len(p.Rungs())-1 {
+			out = append(out, all[i])
+		}
+	}
+	return out
+}
+
 // stop records why this session ended.
 func (ses *session) stop(r optimize.Result, took time.Duration, finished bool) error {
 	err := ses.book.Decide(journal.Stop, stopDetail{string(r.Reason), len(r.Evaluations), took.Seconds()})
@@ -484,12 +508,12 @@ func (ses *session) goOn() string { return "turnwise search --resume --run " + s
 
 // interrupted writes what there is of a run that did not come to its end.
 func (ses *session) interrupted(r optimize.Result, took time.Duration) error {
-	ses.all = r.Evaluations
+	ses.all = finest(r.Evaluations, ses.problem)
 	if err := ses.stop(r, took, false); err != nil {
 		return failed(err)
 	}
 	t := folder.NewTable(ses.problem, ses.soFar(), ses.brief.Seed)
-	if err := ses.folder.WriteResult(t, folder.NearTable(ses.problem, r.Evaluations, ses.brief.Seed)); err != nil {
+	if err := ses.folder.WriteResult(t, folder.NearTable(ses.problem, ses.all, ses.brief.Seed)); err != nil {
 		return failed(err)
 	}
 	fmt.Fprintf(ses.s.err, "stopped after %d evaluations: %s", len(r.Evaluations), r.Reason)
@@ -506,7 +530,8 @@ func (ses *session) interrupted(r optimize.Result, took time.Duration) error {
 // finish settles the front, writes it and says what was found.
 func (ses *session) finish(ctx context.Context, r optimize.Result, began time.Time) error {
 	show := newProgress(ses.s)
-	settled, err := optimize.Settle(ctx, r.Evaluations, ses.confirm, optimize.SettleOptions{
+	answered := finest(r.Evaluations, ses.problem)
+	settled, err := optimize.Settle(ctx, answered, ses.confirm, optimize.SettleOptions{
 		Most: ses.brief.FrontAtMost, Workers: ses.set.Workers,
 		Kept: ses.keepFinal,
 		Progress: func(done, of, round int) {
@@ -522,7 +547,7 @@ func (ses *session) finish(ctx context.Context, r optimize.Result, began time.Ti
 		return failed(err)
 	}
 	t := folder.NewTable(ses.problem, settled.Front, ses.brief.Seed)
-	if err := ses.folder.WriteResult(t, folder.NearTable(ses.problem, r.Evaluations, ses.brief.Seed)); err != nil {
+	if err := ses.folder.WriteResult(t, folder.NearTable(ses.problem, answered, ses.brief.Seed)); err != nil {
 		return failed(err)
 	}
 	if err := ses.stop(r, time.Since(began), true); err != nil {

@@ -120,9 +120,13 @@ func (s *Search) Ask() []optimize.Candidate {
 		if len(batch) > 0 {
 			s.idle = 0
 			s.asked += len(batch)
+			_, cheapFirst := s.stage.(*ladder)
 			for i := range batch {
 				if batch[i].From == "" {
 					batch[i].From = s.segments[s.at].stage
+				}
+				if !cheapFirst {
+					batch[i].Rung = s.domain.Finest
 				}
 			}
 			return batch
@@ -157,6 +161,9 @@ func (s *Search) open() bool {
 			}
 		}
 		if s.stage != nil {
+			if s.domain.Finest > 0 && (g.stage == Simpler || g.stage == Genetic) {
+				s.stage = newLadder(s.stage, s.domain, n, s.c.Seed+uint64(s.at))
+			}
 			return true
 		}
 	}
@@ -206,7 +213,11 @@ func (s *Search) close() {
 
 // Tell hands on what came back.
 func (s *Search) Tell(batch []optimize.Evaluation) {
-	s.told = append(s.told, batch...)
+	for i := range batch {
+		if batch[i].Rung >= s.domain.Finest {
+			s.told = append(s.told, batch[i])
+		}
+	}
 	if s.stage != nil {
 		s.stage.Tell(batch)
 	}
