@@ -1,6 +1,7 @@
 package programme_test
 
 import (
+	"context"
 	"testing"
 
 	"turnwise/optimize"
@@ -17,7 +18,7 @@ func climb(p *searchtest.Problem, s optimize.Searcher) (all []optimize.Evaluatio
 		told := make([]optimize.Evaluation, len(batch))
 		for i, c := range batch {
 			c.ID = len(all) + i
-			score, _ := p.Evaluate(nil, c)
+			score, _ := p.Evaluate(context.Background(), c)
 			if c.Rung == 0 {
 				for m := range score.Aims {
 					score.Aims[m] = 0.3 + 1.1*score.Aims[m] + 0.05*c.Point[0]
@@ -98,7 +99,7 @@ func TestLadderWhoseFirstRungFails(t *testing.T) {
 			c.ID = count + i
 			told[i] = optimize.Evaluation{Candidate: c, Status: optimize.Failed, Err: "on purpose"}
 			if c.Rung == 1 {
-				score, _ := p.Evaluate(nil, c)
+				score, _ := p.Evaluate(context.Background(), c)
 				told[i] = optimize.Evaluation{Candidate: c, Score: score, Status: optimize.OK}
 				fine++
 			}
