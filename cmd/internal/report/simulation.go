@@ -34,19 +34,35 @@ type Simulation struct {
 
 // HandFigures are the figures of the published hand formulas.
 type HandFigures struct {
-	Kraus1949    float64 `json:"kraus_1949_dbi"`
-	KrausLate    float64 `json:"kraus_late_dbi"`
-	KingWong     float64 `json:"king_wong_dbi"`
-	BeamwidthDeg float64 `json:"beamwidth_deg"`
-	AxialRatioDB float64 `json:"axial_ratio_db"`
-	Resistance   float64 `json:"resistance_ohm"`
+	Kraus1949    float64
+	KrausLate    float64
+	KingWong     float64
+	BeamwidthDeg float64
+	AxialRatioDB float64
+	Resistance   float64
+}
+
+// MarshalJSON writes null where a formula, far outside its range, has no
+// number to give.
+func (h HandFigures) MarshalJSON() ([]byte, error) {
+	return json.Marshal(struct {
+		Kraus1949    number `json:"kraus_1949_dbi"`
+		KrausLate    number `json:"kraus_late_dbi"`
+		KingWong     number `json:"king_wong_dbi"`
+		BeamwidthDeg number `json:"beamwidth_deg"`
+		AxialRatioDB number `json:"axial_ratio_db"`
+		Resistance   number `json:"resistance_ohm"`
+	}{number(h.Kraus1949), number(h.KrausLate), number(h.KingWong), number(h.BeamwidthDeg), number(h.AxialRatioDB), number(h.Resistance)})
 }
 
 // number is a JSON number, or null where it does not apply.
 type number float64
 
+// known reports whether it is a number.
+func (n number) known() bool { return !math.IsNaN(float64(n)) && !math.IsInf(float64(n), 0) }
+
 func (n number) MarshalJSON() ([]byte, error) {
-	if x := float64(n); math.IsNaN(x) || math.IsInf(x, 0) {
+	if !n.known() {
 		return []byte("null"), nil
 	}
 	return json.Marshal(float64(n))
@@ -179,8 +195,8 @@ func (s *Simulation) WriteText(w io.Writer) error {
 	t := tabwriter.NewWriter(w, 0, 0, 2, ' ', tabwriter.AlignRight)
 	fmt.Fprintf(t, "MHz\tgain dBic\trealised%s\tAR dB%s\tsense\tVSWR%s\tport Ω%s\tefficiency\tbeamwidth°\tsidelobe dB\tbalance\t\n", mark, mark, mark, mark)
 	for _, r := range s.rows() {
-		fmt.Fprintf(t, "%.6g\t%.2f\t%.2f\t%.2f\t%s\t%s\t%.1f %+.1fj\t%.4f\t%s\t%s\t%s\t\n", r.Hz/1e6, float64(r.Gain), float64(r.RealisedGain), float64(r.AxialRatio),
-			r.Sense, short(r.VSWR, 2), float64(r.R), float64(r.X), float64(r.Efficiency), short(r.Beamwidth, 1), short(r.Sidelobe, 1), short(r.PowerBalance, 4))
+		fmt.Fprintf(t, "%.6g\t%s\t%s\t%s\t%s\t%s\t%s\t%s\t%s\t%s\t%s\t\n", r.Hz/1e6, short(r.Gain, 2), short(r.RealisedGain, 2), short(r.AxialRatio, 2),
+			r.Sense, short(r.VSWR, 2), ohms(r.R, r.X), short(r.Efficiency, 4), short(r.Beamwidth, 1), short(r.Sidelobe, 1), short(r.PowerBalance, 4))
 	}
 	if err := t.Flush(); err != nil {
 		return err
@@ -203,10 +219,10 @@ func (s *Simulation) writeHand(w io.Writer) {
 	t := tabwriter.NewWriter(w, 0, 0, 2, ' ', 0)
 	line := func(name string, x float64, unit string, answer number) {
 		difference := "–"
-		if !math.IsNaN(float64(answer)) {
-			difference = fmt.Sprintf("%+.2f", x-float64(answer))
+		if away := number(x) - answer; away.known() {
+			difference = fmt.Sprintf("%+.2f", float64(away))
 		}
-		fmt.Fprintf(t, "  %s\t%.2f %s\t%s\n", name, x, unit, difference)
+		fmt.Fprintf(t, "  %s\t%s %s\t%s\n", name, short(number(x), 2), unit, difference)
 	}
 	line("Kraus 1949, 15 C²NS", s.Hand.Kraus1949, "dBi", mid.Directivity)
 	line("Kraus later, 12 C²NS", s.Hand.KrausLate, "dBi", mid.Directivity)
@@ -219,10 +235,18 @@ func (s *Simulation) writeHand(w io.Writer) {
 }
 
 func short(x number, digits int) string {
-	if math.IsNaN(float64(x)) {
+	if !x.known() {
 		return "–"
 	}
 	return fmt.Sprintf("%.*f", digits, float64(x))
+}
+
+// ohms is an impedance as a person reads it.
+func ohms(r, x number) string {
+	if !r.known() || !x.known() {
+		return "–"
+	}
+	return fmt.Sprintf("%.1f %+.1fj", float64(r), float64(x))
 }
 
 func titleOr(title, otherwise string) string {

@@ -122,7 +122,7 @@ func Amount(f objectives.Figure, x float64) string {
 
 // Quantity is a figure's value with its unit, as a person reads it.
 func Quantity(f objectives.Figure, x float64) string {
-	if unit := shownUnit(f); unit != "" {
+	if unit := shownUnit(f); unit != "" && !math.IsNaN(x) {
 		return Amount(f, x) + " " + unit
 	}
 	return Amount(f, x)
@@ -144,10 +144,12 @@ func WriteTableJSON(w io.Writer, t *folder.Table) error {
 func MemberJSON(t *folder.Table, m *folder.Member) map[string]any {
 	o := map[string]any{"id": m.ID, "model": m.Model, "fidelity": orNull(m.Fidelity), "checked": m.Checked, "seed": m.Seed}
 	for i, name := range t.Varied {
-		if x, err := strconv.ParseFloat(m.Varied[i], 64); err == nil && name != string(objectives.Conductor) {
+		if name == string(objectives.Conductor) {
+			o[name] = m.Varied[i]
+		} else if x, err := strconv.ParseFloat(m.Varied[i], 64); err == nil {
 			o[name] = x
 		} else {
-			o[name] = m.Varied[i]
+			o[name] = nil
 		}
 	}
 	for f, x := range m.Figures {
