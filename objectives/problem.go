@@ -91,6 +91,19 @@ func (p *Problem) Finest() Rung { return p.finest() }
 // Rungs are the models, cheapest first.
 func (p *Problem) Rungs() []Rung { return p.rungs }
 
+// Wrap puts a wrapper around the simulator of every rung. It must keep the
+// simulator's identity.
+func (p *Problem) Wrap(wrap func(models.Simulator) (models.Simulator, error)) error {
+	for i := range p.rungs {
+		w, err := wrap(p.rungs[i].Simulator)
+		if err != nil {
+			return err
+		}
+		p.rungs[i].Simulator = w
+	}
+	return nil
+}
+
 // hides reports whether match and axial ratio stay unsaid on a rung.
 func (p *Problem) hides(r Rung) bool { return r.Indicative && !p.TrustIndicative }
 

@@ -25,6 +25,7 @@ var insideArrows = map[string][]string{
 	"models/moment":     {"models", "models/helix", "models/moment", "models/simtest", "models/internal"},
 	"models/closedform": {"models", "models/helix", "models/closedform", "models/simtest", "models/internal"},
 	"models/external":   {"models", "models/helix", "models/external", "models/simtest", "models/internal"},
+	"models/remote":     {"models", "models/helix", "models/remote", "models/simtest", "models/internal", "models/closedform", "models/moment"},
 	"models/helix":      {"models", "models/helix", "models/internal"},
 	"optimize/space":    {"optimize/space"},
 	"optimize/front":    {"optimize/front"},
@@ -40,6 +41,7 @@ var confined = map[string][]string{
 	"database/sql":                      {"optimize/journal"},
 	"modernc.org/sqlite":                {"optimize/journal"},
 	"github.com/schollz/progressbar/v3": {"cmd"},
+	"github.com/nats-io":                {"models/remote"},
 }
 
 type listed struct {

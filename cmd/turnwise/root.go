@@ -30,7 +30,7 @@ Start with:  turnwise start     a commented brief to edit
 	})
 	root.AddCommand(
 		startCommand(s), checkCommand(s), searchCommand(s), frontCommand(s),
-		chooseCommand(s), simulateCommand(s), buildCommand(s), reportCommand(s), watchCommand(s), versionCommand(s),
+		chooseCommand(s), simulateCommand(s), buildCommand(s), reportCommand(s), watchCommand(s), workerCommand(s), versionCommand(s),
 		toleranceCommand(s), compareCommand(s),
 	)
 	return root

@@ -19,6 +19,7 @@ type searchOptions struct {
 	resume  bool
 	timeout time.Duration
 	reuse   []string // folders of other runs
+	spread  spread
 }
 
 func searchCommand(s streams) *cobra.Command {
@@ -52,6 +53,7 @@ once; the journal stays whole.`,
 	f.DurationVar(&o.timeout, "timeout", 0, "the longest that one evaluation may take, such as 30s (default no limit)")
 	f.StringArrayVar(&o.reuse, "reuse", nil, "take answers to the same questions from another run's folder (repeatable)")
 	f.BoolVar(&o.resume, "resume", false, "go on with the run in --run")
+	o.spread.flags(f)
 	return c
 }
 
@@ -66,6 +68,11 @@ func search(c *cobra.Command, s streams, o searchOptions) error {
 	}
 	ses := &session{s: s, until: until, timeout: o.timeout}
 	defer ses.close()
+	far, err := o.spread.open(c.Context(), s)
+	if err != nil {
+		return err
+	}
+	defer far.close()
 	if err := ses.reuse(o.reuse); err != nil {
 		return err
 	}
@@ -75,6 +82,9 @@ func search(c *cobra.Command, s streams, o searchOptions) error {
 		err = ses.open(c, o)
 	}
 	if err != nil {
+		return err
+	}
+	if err := far.join(c, ses); err != nil {
 		return err
 	}
 	return ses.run(c.Context())

@@ -12,6 +12,7 @@ import (
 
 	"turnwise/cmd/internal/folder"
 	"turnwise/cmd/internal/report"
+	"turnwise/models/remote"
 	"turnwise/objectives"
 	"turnwise/optimize/journal"
 )
@@ -54,6 +55,9 @@ func watch(ctx context.Context, s streams, run string, once, json bool) error {
 			return failed(err)
 		}
 		v := newView(run, r.Header(), &p)
+		if p.Alive {
+			v.Queue = readStanding(f)
+		}
 		if json {
 			err = writeJSON(s.out, v)
 		} else {
@@ -90,6 +94,8 @@ type view struct {
 	Failures    []viewFailure `json:"failures"`
 	Stages      []viewStage   `json:"stages"`
 	Stopped     string        `json:"stopped,omitempty"`
+	// Queue is set while other machines answer.
+	Queue *remote.Standing `json:"queue,omitempty"`
 }
 
 type viewBest struct {
@@ -173,6 +179,9 @@ func (v *view) write(w io.Writer) error {
 	}
 	for _, r := range v.Failures {
 		fmt.Fprintf(t, "  %s\t%d times\t%s\n", r.Status, r.Times, r.Reason)
+	}
+	if v.Queue != nil {
+		writeStanding(t, v.Queue)
 	}
 	return t.Flush()
 }
