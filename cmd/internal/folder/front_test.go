@@ -94,6 +94,22 @@ func TestNearTable(t *testing.T) {
 	}
 }
 
+// Among many equals the first asked stay, in the order of asking.
+func TestNearTableKeepsTheOrderOfAsking(t *testing.T) {
+	p := problem(t)
+	var all []optimize.Evaluation
+	for i := range 36 {
+		e := answer(12-0.25*float64(i), 0.1, 0, 10, 0.5)
+		e.Limits = []float64{0.5 * float64(i%2)}
+		all = append(all, e)
+	}
+	for i, m := range NearTable(p, all, 7).Members {
+		if want := VariedText(12 - 0.5*float64(i)); m.Varied[0] != want {
+			t.Errorf("place %d has %s turns, want %s", i, m.Varied[0], want)
+		}
+	}
+}
+
 func write(t *testing.T, path, text string) {
 	t.Helper()
 	if err := os.MkdirAll(filepath.Dir(path), 0o755); err != nil {
