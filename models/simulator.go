@@ -1,6 +1,11 @@
 package models
 
-import "context"
+import (
+	"context"
+	"errors"
+	"fmt"
+	"math"
+)
 
 // Outputs says which answers a question asks for, as a set of bits.
 type Outputs uint
@@ -21,6 +26,25 @@ type Question struct {
 	Hz      []float64 // rising
 	Outputs Outputs
 	Cone    float64 // rad, half-angle about the axis, for the Cone output
+}
+
+// Check names what cannot be answered: frequencies have to be positive and
+// rising, a cone that is asked about within a quarter turn of the axis.
+func (q *Question) Check() error {
+	if len(q.Hz) == 0 {
+		return errors.New("no frequency was asked for; give at least one")
+	}
+	last := 0.0
+	for _, hz := range q.Hz {
+		if !(hz > last) || math.IsInf(hz, 0) {
+			return fmt.Errorf("a frequency of %g Hz after %g Hz cannot be answered; positive ones, rising, are due", hz, last)
+		}
+		last = hz
+	}
+	if q.Outputs&Cone != 0 && !(q.Cone > 0 && q.Cone <= math.Pi/2) {
+		return fmt.Errorf("a cone of %g rad about the axis cannot be answered; above 0 and at most π/2 is due", q.Cone)
+	}
+	return nil
 }
 
 // Simulator answers questions about designs. It is safe for concurrent use,

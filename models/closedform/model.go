@@ -33,8 +33,8 @@ func (*Model) Identity() string { return "closed-form 1" }
 
 // Simulate answers everything but power balance and port spread.
 func (m *Model) Simulate(ctx context.Context, d models.Design, q models.Question) (models.Response, error) {
-	if err := checkQuestion(q); err != nil {
-		return models.Response{}, err
+	if err := q.Check(); err != nil {
+		return models.Response{}, fmt.Errorf("closed form: %w", err)
 	}
 	curve := m.curves.Get().(*helix.Curve)
 	defer m.curves.Put(curve)
@@ -56,22 +56,6 @@ func (m *Model) Simulate(ctx context.Context, d models.Design, q models.Question
 	}
 	r.Warnings = w.warnings(q.Hz)
 	return r, nil
-}
-
-// checkQuestion refuses frequencies and cones that are none.
-func checkQuestion(q models.Question) error {
-	if len(q.Hz) == 0 {
-		return fmt.Errorf("closed form: no frequency was asked for; give at least one")
-	}
-	for _, hz := range q.Hz {
-		if !(hz > 0) || math.IsInf(hz, 0) {
-			return fmt.Errorf("closed form: a frequency of %g Hz cannot be answered; give a positive one", hz)
-		}
-	}
-	if q.Outputs&models.Cone != 0 && !(q.Cone > 0 && q.Cone <= math.Pi/2) {
-		return fmt.Errorf("closed form: a cone of %g rad about the axis cannot be answered; above 0 and at most π/2 is due", q.Cone)
-	}
-	return nil
 }
 
 // winding is what the formulas see of a design. Lengths in m.

@@ -2,8 +2,6 @@ package external
 
 import (
 	"encoding/json"
-	"fmt"
-	"math"
 
 	"turnwise/models"
 	"turnwise/models/helix"
@@ -24,7 +22,7 @@ type question struct {
 // design what makes its hash and no more, so that equal hashes get equal
 // answers.
 func newQuestion(d models.Design, q models.Question, can models.Outputs) (question, error) {
-	if err := checkQuestion(q); err != nil {
+	if err := q.Check(); err != nil {
 		return question{}, err
 	}
 	if err := helix.Check(&d); err != nil {
@@ -38,24 +36,6 @@ func newQuestion(d models.Design, q models.Question, can models.Outputs) (questi
 		out.Cone = q.Cone
 	}
 	return out, nil
-}
-
-// checkQuestion refuses frequencies and cones that are none.
-func checkQuestion(q models.Question) error {
-	if len(q.Hz) == 0 {
-		return fmt.Errorf("no frequency was asked for; give at least one")
-	}
-	last := 0.0
-	for _, hz := range q.Hz {
-		if !(hz > last) || math.IsInf(hz, 0) {
-			return fmt.Errorf("a frequency of %g Hz after %g Hz cannot be answered; positive ones, rising, are due", hz, last)
-		}
-		last = hz
-	}
-	if q.Outputs&models.Cone != 0 && !(q.Cone > 0 && q.Cone <= math.Pi/2) {
-		return fmt.Errorf("a cone of %g rad about the axis cannot be answered; above 0 and at most π/2 is due", q.Cone)
-	}
-	return nil
 }
 
 // line is the question with a number, ready to be written.

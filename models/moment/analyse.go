@@ -21,7 +21,8 @@ func Analyse(ctx context.Context, a *Antenna, f Fidelity, hz []float64, see func
 	if !ok {
 		return fmt.Errorf("fidelity %q: there is none such; write draft, standard or fine", string(f))
 	}
-	if err := errors.Join(a.check(), checkQuestion(models.Question{Hz: hz})); err != nil {
+	q := models.Question{Hz: hz}
+	if err := errors.Join(a.check(), q.Check()); err != nil {
 		return err
 	}
 	return new(work).sweep(ctx, a, set, hz, watcher(see))

@@ -2,9 +2,7 @@ package moment
 
 import (
 	"context"
-	"errors"
 	"fmt"
-	"math"
 	"runtime"
 	"sync"
 
@@ -50,8 +48,8 @@ func (s *Solver) Identity() string {
 // answer always holds the power balance. An answer whose balance misses by
 // more than 1 % is an error.
 func (s *Solver) Simulate(ctx context.Context, d models.Design, q models.Question) (models.Response, error) {
-	if err := checkQuestion(q); err != nil {
-		return models.Response{}, err
+	if err := q.Check(); err != nil {
+		return models.Response{}, fmt.Errorf("full wave: %w", err)
 	}
 	if s.fidelity == Fine {
 		q.Outputs |= models.Balance
@@ -67,22 +65,4 @@ func (s *Solver) Simulate(ctx context.Context, d models.Design, q models.Questio
 	}
 	r.Warnings = w.warnings(q.Hz)
 	return r, nil
-}
-
-// checkQuestion refuses frequencies that are none.
-func checkQuestion(q models.Question) error {
-	if len(q.Hz) == 0 {
-		return errors.New("full wave: no frequency was asked for; give at least one")
-	}
-	last := 0.0
-	for _, hz := range q.Hz {
-		if !(hz > last) || math.IsInf(hz, 0) {
-			return fmt.Errorf("full wave: a frequency of %g Hz after %g Hz cannot be answered; positive ones, rising, are due", hz, last)
-		}
-		last = hz
-	}
-	if q.Outputs&models.Cone != 0 && !(q.Cone > 0 && q.Cone <= math.Pi/2) {
-		return fmt.Errorf("full wave: a cone of %g rad about the axis cannot be answered; above 0 and at most π/2 is due", q.Cone)
-	}
-	return nil
 }
