@@ -2,7 +2,6 @@ package surrogate_test
 
 import (
 	"fmt"
-	"math"
 	"sort"
 	"testing"
 	"time"
@@ -11,7 +10,6 @@ import (
 	"turnwise/optimize/front"
 	"turnwise/optimize/genetic"
 	"turnwise/optimize/searchtest"
-	"turnwise/optimize/space"
 	"turnwise/optimize/surrogate"
 )
 
@@ -59,11 +57,8 @@ func valuesOf(es []optimize.Evaluation) []front.Value {
 // BenchmarkRound is what one round costs late in a search: 16 points asked
 // when 2,000 are known, of 10 variables, 3 aims and 4 limits.
 func BenchmarkRound(b *testing.B) {
-	d := optimize.Domain{Aims: 3, Limits: 4}
-	for i := range 10 {
-		d.Space = append(d.Space, space.NewReal(fmt.Sprintf("x%d", i), 0, 1, 0))
-	}
-	start := answered(d, genetic.New(d, genetic.Config{Population: 40, Evaluations: 2000, Seed: 1}, nil))
+	d := cube(10, 3, 4)
+	start := drive(genetic.New(d, genetic.Config{Population: 40, Evaluations: 2000, Seed: 1}, nil), trade(d))
 	spent := time.Duration(0)
 	count := 0
 	for b.Loop() {
@@ -73,7 +68,7 @@ func BenchmarkRound(b *testing.B) {
 			batch := s.Ask()
 			told := make([]optimize.Evaluation, len(batch))
 			for i, c := range batch {
-				told[i] = trade(d, c)
+				told[i] = trade(d)(c)
 			}
 			s.Tell(told)
 			spent += time.Since(began)
@@ -81,36 +76,4 @@ func BenchmarkRound(b *testing.B) {
 		}
 	}
 	b.ReportMetric(spent.Seconds()*1000/float64(count), "ms/round")
-}
-
-// answered drives a searcher on the trade to its end.
-func answered(d optimize.Domain, s optimize.Searcher) []optimize.Evaluation {
-	var all []optimize.Evaluation
-	for batch := s.Ask(); len(batch) > 0; batch = s.Ask() {
-		told := make([]optimize.Evaluation, len(batch))
-		for i, c := range batch {
-			told[i] = trade(d, c)
-		}
-		s.Tell(told)
-		all = append(all, told...)
-	}
-	return all
-}
-
-// trade answers with squared distances to as many places as there are aims,
-// and limits that cut corners off.
-func trade(d optimize.Domain, c optimize.Candidate) optimize.Evaluation {
-	e := optimize.Evaluation{Candidate: c, Status: optimize.OK}
-	u := d.Space.Unit(c.Point)
-	for m := range d.Aims {
-		sum := 0.0
-		for i, x := range u {
-			sum += math.Pow(x-float64((m+i)%3)/2, 2)
-		}
-		e.Aims = append(e.Aims, sum)
-	}
-	for l := range d.Limits {
-		e.Limits = append(e.Limits, u[l%len(u)]*u[(l+1)%len(u)]-0.5)
-	}
-	return e
 }

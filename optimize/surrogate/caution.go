@@ -24,3 +24,6 @@ func (c *caution) follow(promised, came float64) {
 		*c = min(*c+moreCaution, mostCaution)
 	}
 }
+
+// yield lets go of caution where it leaves nothing that promises anything.
+func (c *caution) yield() { *c = max(*c-moreCaution, leastCaution) }

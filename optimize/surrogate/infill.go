@@ -42,6 +42,9 @@ func (s *Search) infill(n int) []space.Point {
 		points = append(points, p.point)
 		s.promised = append(s.promised, p.value)
 	}
+	if len(points) < n {
+		s.caution.yield()
+	}
 	return points
 }
 

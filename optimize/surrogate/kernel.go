@@ -5,7 +5,8 @@ import "math"
 // kernel is a radial basis, linear or cubic, over the distance of two points
 // in all coordinates, in each one alone, or in each pair. The fewer
 // coordinates a term sees, the fewer answers teach it: sums over one and two
-// learn figures that are sums of functions of one and two variables.
+// learn figures that are sums of functions of one and two variables. Cubic
+// ones learn what is smooth, linear ones what has kinks.
 type kernel int
 
 const (
@@ -13,12 +14,15 @@ const (
 	cubicSum
 	cubicPairs
 	linearSum
-	linearPairs
-	kernels int = iota
+	linearMixed     // half over each one alone, half over all
+	kernels     int = iota
 )
 
 // mostPaired is the most features whose pairs are worth their time.
 const mostPaired = 16
+
+// worth reports whether a kernel pays for so many features.
+func (k kernel) worth(features int) bool { return k != cubicPairs || features <= mostPaired }
 
 // of is the kernel between two points. The sign makes the matrix over any
 // points positive definite where their weights are free of a linear trend.
@@ -38,21 +42,17 @@ func (k kernel) of(a, b []float64) float64 {
 			sum -= math.Abs(x - b[i])
 		}
 	case cubicPairs:
-		pairs(a, b, func(q float64) { sum += q * math.Sqrt(q) })
-	case linearPairs:
-		pairs(a, b, func(q float64) { sum -= math.Sqrt(q) })
+		for i := range a {
+			p := (a[i] - b[i]) * (a[i] - b[i])
+			for j := range i {
+				q := p + (a[j]-b[j])*(a[j]-b[j])
+				sum += q * math.Sqrt(q)
+			}
+		}
+	case linearMixed:
+		sum = (linearSum.of(a, b) - distance(a, b)) / 2
 	}
 	return sum
-}
-
-// pairs gives the squared distance in every pair of coordinates.
-func pairs(a, b []float64, to func(q float64)) {
-	for i := range a {
-		p := (a[i] - b[i]) * (a[i] - b[i])
-		for j := range i {
-			to(p + (a[j]-b[j])*(a[j]-b[j]))
-		}
-	}
 }
 
 // distance is Euclid's.

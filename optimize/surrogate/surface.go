@@ -57,11 +57,6 @@ func learn(centres [][]float64, ordered int, outputs [][]float64, telling int) (
 	return s, true
 }
 
-// worth reports whether a kernel pays for so many features.
-func (k kernel) worth(features int) bool {
-	return k != cubicPairs && k != linearPairs || features <= mostPaired
-}
-
 // try gives a kernel to the figures that it foretells better than their own.
 func (s *surfaces) try(k kernel, right *mat.Dense, telling int) {
 	var inverse, solved mat.Dense
