@@ -3,9 +3,9 @@ package remote
 import (
 	"context"
 	"crypto/tls"
-	"crypto/x509"
 	"errors"
 	"fmt"
+	"net"
 	"time"
 
 	"github.com/nats-io/nats.go"
@@ -69,18 +69,15 @@ func lasting() []nats.Option {
 
 // final reports whether asking again is of no use.
 func final(err error) bool {
-	for _, e := range []error{nats.ErrAuthorization, nats.ErrAuthExpired, nats.ErrAuthRevoked, nats.ErrSecureConnRequired, nats.ErrSecureConnWanted} {
+	for _, e := range []error{nats.ErrAuthorization, nats.ErrAuthExpired, nats.ErrAuthRevoked, nats.ErrSecureConnWanted} {
 		if errors.Is(err, e) {
 			return true
 		}
 	}
-	var unknown x509.UnknownAuthorityError
-	var host x509.HostnameError
-	var invalid x509.CertificateInvalidError
 	var untrusted *tls.CertificateVerificationError
 	var record tls.RecordHeaderError
-	var alert tls.AlertError
-	return errors.As(err, &unknown) || errors.As(err, &host) || errors.As(err, &invalid) || errors.As(err, &untrusted) || errors.As(err, &record) || errors.As(err, &alert)
+	var alert *net.OpError // what a server says of our certificate
+	return errors.As(err, &untrusted) || errors.As(err, &record) || errors.As(err, &alert) && alert.Op == "remote error"
 }
 
 // plainly says what a refusal means and what helps.
@@ -88,8 +85,8 @@ func plainly(err error) error {
 	switch {
 	case errors.Is(err, nats.ErrAuthorization):
 		return fmt.Errorf("the token is missing or wrong; --token-file names the file with the one that the queue has (%w)", err)
-	case errors.Is(err, nats.ErrSecureConnRequired):
-		return fmt.Errorf("it speaks TLS only; --tls-ca names the authority to know it by (%w)", err)
+	case errors.As(err, new(*tls.CertificateVerificationError)):
+		return fmt.Errorf("it is not the one that is trusted; --tls-ca names the authority to know it by (%w)", err)
 	case errors.Is(err, nats.ErrSecureConnWanted):
 		return fmt.Errorf("it does not speak TLS, which is demanded here (%w)", err)
 	}
