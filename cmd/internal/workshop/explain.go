@@ -62,7 +62,9 @@ func Explain(ctx context.Context, rung objectives.Rung, d models.Design, spreads
 	}
 	var out []Explanation
 	for _, c := range append(causes, more...) {
-		out = append(out, c.explain(due, whole))
+		if e := c.explain(due, whole); e.By != 0 {
+			out = append(out, e)
+		}
 	}
 	slices.SortStableFunc(out, func(a, b Explanation) int { return cmp.Compare(a.Left, b.Left) })
 	return out, nil

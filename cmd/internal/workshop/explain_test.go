@@ -1,0 +1,111 @@
+package workshop
+
+import (
+	"context"
+	"math"
+	"slices"
+	"strings"
+	"testing"
+
+	"turnwise/models"
+	"turnwise/models/helix"
+	"turnwise/models/moment"
+	"turnwise/objectives/tolerance"
+)
+
+// differing is what a change makes of a design's reflection.
+func differing(t *testing.T, d models.Design, hz []float64, change func(d *models.Design)) []complex128 {
+	t.Helper()
+	rung := fullWave(t, moment.Standard)
+	was, err1 := sweptReflection(context.Background(), rung, d, hz)
+	change(&d)
+	is, err2 := sweptReflection(context.Background(), rung, d, hz)
+	if err1 != nil || err2 != nil {
+		t.Fatal(err1, err2)
+	}
+	for i := range is {
+		is[i] -= was[i]
+	}
+	return is
+}
+
+func explain(t *testing.T, d models.Design, hz []float64, difference []complex128) []Explanation {
+	t.Helper()
+	out, err := Explain(context.Background(), fullWave(t, moment.Standard), d, tolerance.Defaults(), hz, difference)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if !slices.IsSortedFunc(out, func(a, b Explanation) int { return int(math.Copysign(1, a.Left-b.Left)) }) {
+		t.Error("the best explanation is not first")
+	}
+	return out
+}
+
+// TestExplain finds the one thing that was changed, and by how much.
+func TestExplain(t *testing.T) {
+	d := antennas["cylinder"]
+	d.Turns = 4
+	d.Insulation = models.Insulation{Thickness: 0.0001, Permittivity: 2.3}
+	d.Feed.Transformer = models.Transformer{Impedance: 85, Length: 0.044}
+	hz := models.Band{From: 1.6e9, To: 1.76e9, Samples: 9}.Hz()
+	for name, c := range map[string]struct {
+		change func(d *models.Design)
+		by     float64
+		undo   string
+	}{
+		"riser height":                   {func(d *models.Design) { d.Feed.Height += 1.4e-3 }, 1.4e-3, "lower"},
+		"line section":                   {func(d *models.Design) { d.Feed.Transformer.Length -= 2e-3 }, -2e-3, "lengthen"},
+		"winding diameter":               {func(d *models.Design) { d.Diameter = models.Law{d.Diameter[0] + 1e-3} }, 1e-3, ""},
+		"spacing per turn":               {func(d *models.Design) { d.Spacing = models.Law{d.Spacing[0] - 0.6e-3} }, -0.6e-3, ""},
+		"permittivity of the insulation": {func(d *models.Design) { d.Insulation.Permittivity += 0.3 }, 0.3, ""},
+	} {
+		best := explain(t, d, hz, differing(t, d, hz, c.change))[0]
+		if best.Name != name || math.Abs(best.By/c.by-1) > 0.06 || best.Left > 0.01 || best.Undo != c.undo {
+			t.Errorf("%s by %g: %+v", name, c.by, best)
+		}
+	}
+	if out := explain(t, d, hz, make([]complex128, len(hz))); out != nil {
+		t.Errorf("no difference, but %+v", out)
+	}
+}
+
+// TestExplainBend finds a bend of the first turn, and says how to undo it.
+func TestExplainBend(t *testing.T) {
+	d := antennas["cylinder"]
+	d.Turns = 4
+	c, err := helix.Wind(&d)
+	if err != nil {
+		t.Fatal(err)
+	}
+	hz := d.Band.Hz()
+	difference := make([]complex128, len(hz))
+	for i, f := range hz {
+		bent := bend{curve: c, at: 0.5, reach: 0.5, by: -0.0025}
+		straight := bent
+		straight.by = 0
+		z1, err1 := bent.port(context.Background(), moment.Standard, &d, f)
+		z0, err2 := straight.port(context.Background(), moment.Standard, &d, f)
+		if err1 != nil || err2 != nil {
+			t.Fatal(err1, err2)
+		}
+		difference[i] = models.Reflection(z1, 50) - models.Reflection(z0, 50)
+	}
+	best := explain(t, d, hz, difference)[0]
+	if best.Name != "height at ½ turn" || math.Abs(best.By+0.0025) > 0.2e-3 || best.Undo != "lift" {
+		t.Errorf("%+v", best)
+	}
+	if w, u := best.Words(), best.UndoWords(); !strings.HasPrefix(w, "height at ½ turn −2.") || !strings.HasPrefix(u, "lift by 2.") {
+		t.Errorf("%q, %q", w, u)
+	}
+}
+
+func TestThinned(t *testing.T) {
+	for _, c := range []struct {
+		n, most int
+		want    []int
+	}{{0, 5, nil}, {1, 5, []int{0}}, {3, 5, []int{0, 1, 2}}, {9, 5, []int{0, 2, 4, 6, 8}}, {100, 3, []int{0, 50, 99}}, {7, 1, []int{0}}} {
+		if got := Thinned(c.n, c.most); !slices.Equal(got, c.want) {
+			t.Errorf("%d of %d: %v, want %v", c.most, c.n, got, c.want)
+		}
+	}
+}
