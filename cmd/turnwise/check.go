@@ -68,10 +68,10 @@ func check(ctx context.Context, s streams, path, lasting string) error {
 	planned := plannedEvaluations(&b, one, workers)
 	whole := time.Duration(float64(one) * float64(planned) / float64(workers))
 	fmt.Fprintf(w, "time          one evaluation %s here; %d of them on %d workers about %s, and the final front besides\n", brief(one), planned, workers, brief(whole))
-	_, err = fmt.Fprintf(w, "journal       about %s\n", bytesText(float64(planned)*journalBytes(p)))
+	_, err = fmt.Fprintf(w, "journal       about %s\n", bytesText(journalBytes(&b, planned)))
 	if limit > 0 {
 		n := timedPlan(limit, one, workers)
-		_, err = fmt.Fprintf(w, "in %-10s about %d evaluations and %s of journal\n", brief(limit), n, bytesText(float64(n)*journalBytes(p)))
+		_, err = fmt.Fprintf(w, "in %-10s about %d evaluations and %s of journal\n", brief(limit), n, bytesText(journalBytes(&b, n)))
 	}
 	return failed(err)
 }
@@ -234,10 +234,11 @@ func timedPlan(t, one time.Duration, workers int) int {
 	return int(math.Min(math.Max(n, 100), 100_000_000))
 }
 
-// journalBytes is about how many bytes an evaluation takes on disk, measured
+// journalBytes is about how many bytes a journal takes on disk: a row and an
+// answer an evaluation, and the sweeps of the final front's members. Measured
 // on journals of the built-in briefs.
-func journalBytes(p *objectives.Problem) float64 {
-	return 900 + 230*float64(p.Band.Samples)
+func journalBytes(b *configs.Brief, evaluations int) float64 {
+	return float64(evaluations)*(800+320*float64(b.Spec.Band.Samples)) + 60e3*float64(b.FrontAtMost)
 }
 
 func bytesText(n float64) string {
