@@ -175,6 +175,21 @@ func TestHypervolumeCountsCells(t *testing.T) {
 	})
 }
 
+// What a point gains is what the hypervolume grows by.
+func TestGainByDefinition(t *testing.T) {
+	rapid.Check(t, func(t *rapid.T) {
+		aims := rapid.IntRange(1, 4).Draw(t, "aims")
+		at := rapid.SliceOfN(rapid.Map(rapid.IntRange(0, 6), func(k int) float64 { return float64(k) }), aims, aims)
+		points := rapid.SliceOfN(at, 0, 12).Draw(t, "points")
+		one := at.Draw(t, "one")
+		reference := slices.Repeat([]float64{5}, aims)
+		want := front.Hypervolume(append(slices.Clone(points), one), reference) - front.Hypervolume(points, reference)
+		if got := front.Gain(one, points, reference); math.Abs(got-want) > 1e-9 {
+			t.Fatalf("%v gains %g, the hypervolume grows by %g", one, got, want)
+		}
+	})
+}
+
 // Closed form: the unit square under a quarter circle, sampled finely.
 func TestHypervolumeOfACircle(t *testing.T) {
 	var ps [][]float64

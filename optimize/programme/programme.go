@@ -2,6 +2,7 @@
 // sample, the genetic searcher on what it found, then simplexes on the front.
 // Where the problem has views of fewer variables, the genetic searcher is run
 // in each of them first, the coarsest first, and goes on from what it found.
+// Where evaluations are dear the learned searcher takes their place.
 // Shares are of the evaluations planned at the start and never change; what a
 // stage leaves goes to the next, and what the last leaves to another round of
 // the genetic searcher and the simplexes.
@@ -16,6 +17,7 @@ import (
 	"turnwise/optimize/genetic"
 	"turnwise/optimize/simplex"
 	"turnwise/optimize/space"
+	"turnwise/optimize/surrogate"
 )
 
 // Names of the stages, as candidates carry them. Start marks designs that the
@@ -25,23 +27,36 @@ const (
 	Sample  = "sample"
 	Simpler = "simpler"
 	Genetic = "genetic"
+	Learned = "learned"
 	Simplex = "simplex"
 )
 
 // Config says how to search.
 type Config struct {
 	// Plan lists the evaluations planned: of the run first, then of each
-	// extension. An extension is a further genetic and simplex stage, so that
+	// extension. An extension is a further genetic or learned and simplex stage, so that
 	// a run extended at a count is the same run however often it was stopped.
 	Plan []int
 	// Shares of each plan; an extension leaves the sample's to the others.
 	Sample, Genetic, Simplex float64
+	// Dear marks evaluations that take so long that few can be had: the share
+	// of the genetic searcher, and of the simpler views, goes to the learned
+	// one, and each is answered by the finest model.
+	Dear bool
 	// Population of the genetic searcher; 0: fitted to the plan.
 	Population int
 	Seed       uint64
 	// Start are points of the user's own; Seeds are those of hand rules, at
 	// most half of the sample.
 	Start, Seeds []space.Point
+}
+
+// main is the stage between the sample and the simplexes.
+func (c *Config) main() string {
+	if c.Dear {
+		return Learned
+	}
+	return Genetic
 }
 
 // segment is one stage with its part of the plan.
@@ -86,10 +101,10 @@ func New(d optimize.Domain, c Config) *Search {
 			s.segments = append(s.segments, segment{stage: Sample, end: begin + min(sample, n), id: k})
 		}
 		walks := int(math.Round(c.Simplex * float64(n)))
-		if k == 0 && c.Genetic > 0 {
+		if k == 0 && c.Genetic > 0 && !c.Dear {
 			s.simpler(begin+sample, end-walks)
 		}
-		s.segments = append(s.segments, segment{stage: Genetic, end: end - walks, id: k}, segment{stage: Simplex, end: end, id: k})
+		s.segments = append(s.segments, segment{stage: c.main(), end: end - walks, id: k}, segment{stage: Simplex, end: end, id: k})
 	}
 	return s
 }
@@ -155,6 +170,10 @@ func (s *Search) open() bool {
 			if s.c.Genetic > 0 {
 				s.stage = genetic.New(s.domain, genetic.Config{Population: s.population(n), Evaluations: n, Seed: s.c.Seed + uint64(g.id)}, s.told)
 			}
+		case Learned:
+			if s.c.Genetic > 0 {
+				s.stage = surrogate.New(s.domain, surrogate.Config{Evaluations: n, Seed: s.c.Seed + uint64(g.id)}, s.told)
+			}
 		case Simplex:
 			if s.c.Simplex > 0 {
 				s.stage = simplex.New(s.domain, simplex.Config{Evaluations: n}, s.told)
@@ -180,7 +199,7 @@ func (s *Search) again() bool {
 	id := s.segments[len(s.segments)-1].id + 1000
 	end := s.Planned()
 	walks := int(math.Round(float64(left) * s.c.Simplex / (s.c.Genetic + s.c.Simplex)))
-	s.segments = append(s.segments, segment{stage: Genetic, end: end - walks, id: id}, segment{stage: Simplex, end: end, id: id})
+	s.segments = append(s.segments, segment{stage: s.c.main(), end: end - walks, id: id}, segment{stage: Simplex, end: end, id: id})
 	return s.open()
 }
 

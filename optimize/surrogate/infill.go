@@ -93,12 +93,18 @@ func (s *Search) learn(centres []int) (*surfaces, bool) {
 	return learn(points, len(s.features.ordered), outputs, telling)
 }
 
+// afresh is how often bold searches of the surfaces start from nothing, to
+// find what lies behind infeasible ground.
+const afresh = 3
+
 // foretold runs the genetic searcher on the surfaces and gives all that it
 // asked.
 func (s *Search) foretold(f *surfaces, centres []int) []promise {
-	start := make([]optimize.Evaluation, len(centres))
-	for k, i := range centres {
-		start[k] = s.known[i]
+	var start []optimize.Evaluation
+	if s.caution >= 0 || s.round%afresh != 0 {
+		for _, i := range centres {
+			start = append(start, s.known[i])
+		}
 	}
 	g := genetic.New(s.domain, genetic.Config{
 		Population:  innerPopulation,
