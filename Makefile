@@ -31,7 +31,7 @@ cover:
 # A minute of fuzzing for each fuzz target: files that people write, answers
 # of other programs.
 fuzz:
-	for p in ./configs ./models/external; do \
+	for p in ./configs ./models/external ./cmd/internal/workshop; do \
 		for f in $$($(GO) test -list '^Fuzz' $$p | grep ^Fuzz); do $(GO) test -run '^$$' -fuzz "^$$f$$" -fuzztime 60s $$p || exit 1; done; \
 	done
 

@@ -163,7 +163,7 @@ func (o *comparing) predict(ctx context.Context, s streams, st *tolerance.Study,
 	if err != nil {
 		return nil, err
 	}
-	out := &report.Comparison{Study: st, Copies: len(r.Copies), Failures: r.Failures, Hz: hz, Measured: measured, Allowance: o.allowance}
+	out := &report.Comparison{Study: st, Copies: len(r.Copies), Failures: r.Failures, Statement: r.Statement, Warnings: r.Warnings, Hz: hz, Measured: measured, Allowance: o.allowance}
 	out.Predicted, out.Reach = r.At(hz)
 	difference := make([]complex128, len(hz))
 	for i := range hz {

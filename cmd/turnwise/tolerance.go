@@ -49,13 +49,15 @@ const mostCopies = 1_000_000
 func (o *spreading) study(brief *objectives.Spec) (tolerance.Study, [tolerance.DimensionCount]string, error) {
 	st := tolerance.Study{Spreads: tolerance.Defaults(), Distribution: tolerance.Distribution(o.distribution), Samples: o.samples, Seed: uint64(o.seed), Workers: o.workers}
 	var from [tolerance.DimensionCount]string
+	var margins tolerance.Spreads
 	if brief != nil {
+		margins = margins.Margins(brief.Margins)
 		st.Spreads = st.Spreads.Margins(brief.Margins)
 	}
 	faults := []error{st.Distribution.Check()}
 	for i := range from {
 		from[i] = "default"
-		if st.Spreads[i] != tolerance.Dimensions[i].Default {
+		if margins[i] > 0 {
 			from[i] = "brief"
 		}
 		if o.widths[i] == "" {
@@ -100,7 +102,8 @@ func toleranceCommand(s streams) *cobra.Command {
 		Long: `Makes copies of one design as a workshop would, every dimension off by an
 error within its half-width, and says how many of them keep the brief's limits,
 which dimension is the tightest, and which adjustment brings the match of a
-poor copy back. The same seed gives the same copies.
+poor copy back. The same seed gives the same copies. Figures are read, as those
+of a final front are, from a sweep in steps of at most 0.25 % of mid-band.
 
 A half-width is the option's; else the brief's margin; else the default, which
 is common practice and no standard. A law is off as a whole, one error a law.`,

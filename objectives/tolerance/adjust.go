@@ -175,7 +175,7 @@ func (s *Study) adjust(ctx context.Context, res *Result, p *plan) error {
 	err := Each(ctx, len(res.Adjustments), s.Workers, func(i int) bool {
 		a := &res.Adjustments[i]
 		k := kinds[slices.IndexFunc(kinds, func(k kind) bool { return k.name == a.Name })]
-		trimmed := s.answer(ctx, k.apply(s.apply(res.Copies[res.Poor].Errors), a.By))
+		trimmed := s.listen(ctx, k.apply(s.apply(res.Copies[res.Poor].Errors), a.By))
 		if a.After = trimmed.Figures[objectives.VSWR]; trimmed.Err != "" {
 			a.By, a.After = 0, a.Before
 		}

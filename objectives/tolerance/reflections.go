@@ -16,6 +16,9 @@ type Reflections struct {
 	Nominal  []complex128
 	Copies   [][]complex128 // those that were answered
 	Failures []Failure
+	// Statement is what the model says of itself, Warnings of the design.
+	Statement string
+	Warnings  []string
 }
 
 // Reach is how far the copies' reflections lie from the design's, at most, at
@@ -62,11 +65,11 @@ func place(rising []float64, x float64) (k int, u float64) {
 // their reflections alone. Limits play no part.
 func (s *Study) Reflections(ctx context.Context, hz []float64) (*Reflections, error) {
 	s.Spreads = s.Spreads.Of(&s.Design)
-	r := &Reflections{Hz: hz}
-	var err error
-	if r.Nominal, err = s.reflect(ctx, s.Design, hz); err != nil {
+	nominal, err := s.Rung.Simulator.Simulate(ctx, s.Design, models.Question{Hz: hz, Outputs: models.Axis})
+	if err != nil {
 		return nil, fmt.Errorf("the design itself: %w", err)
 	}
+	r := &Reflections{Hz: hz, Nominal: reflections(&nominal, s.Design.Feed.Impedance), Statement: nominal.Statement, Warnings: nominal.Warnings}
 	if !s.Spreads.Any() {
 		return r, nil
 	}
@@ -109,9 +112,14 @@ func (s *Study) reflect(ctx context.Context, d models.Design, hz []float64) ([]c
 	if err != nil {
 		return nil, err
 	}
-	out := make([]complex128, len(hz))
+	return reflections(&a, d.Feed.Impedance), nil
+}
+
+// reflections are those at the connector, at every sample of an answer.
+func reflections(a *models.Response, reference float64) []complex128 {
+	out := make([]complex128, len(a.Samples))
 	for i := range out {
-		out[i] = models.Reflection(a.Samples[i].Input, d.Feed.Impedance)
+		out[i] = models.Reflection(a.Samples[i].Input, reference)
 	}
-	return out, nil
+	return out
 }

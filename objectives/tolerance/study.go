@@ -60,6 +60,9 @@ type Result struct {
 	Deciding      int
 	// Adjustments has the one that recovers most first.
 	Adjustments []Adjustment
+	// Statement is what the model says of itself, Warnings of the design.
+	Statement string
+	Warnings  []string
 	// Poor is the copy that the adjustments are shown on, −1: none.
 	Poor int
 }
@@ -103,13 +106,15 @@ func (s *Study) Run(ctx context.Context) (*Result, error) {
 	}
 	s.Spreads = s.Spreads.Of(&s.Design)
 	res := &Result{Hz: objectives.FineSweep(s.Spec.Band), Limits: probe.Limits, Figures: probe.Judged(), Unapplied: probe.Unapplied, Poor: -1}
-	res.Nominal = s.answer(ctx, s.Design)
+	ear := &listener{Simulator: s.Rung.Simulator}
+	res.Nominal = s.answer(ctx, s.Design, ear)
 	if ctx.Err() != nil {
 		return nil, ctx.Err()
 	}
 	if res.Nominal.Err != "" {
 		return nil, fmt.Errorf("the design itself: %s", res.Nominal.Err)
 	}
+	res.Statement, res.Warnings = ear.band.Statement, ear.band.Warnings
 	plan := s.plan(&res.Nominal)
 	if err := s.answerAll(ctx, plan); err != nil {
 		return nil, err
@@ -153,11 +158,16 @@ func (s *Study) wanted() []objectives.Aim {
 	return out
 }
 
-// answer is one copy's figures, or why there are none.
-func (s *Study) answer(ctx context.Context, d models.Design) Copy {
+// listen is answer for those who only want the figures.
+func (s *Study) listen(ctx context.Context, d models.Design) Copy {
+	return s.answer(ctx, d, &listener{Simulator: s.Rung.Simulator})
+}
+
+// answer is one copy's figures, or why there are none; ear hears the sweep
+// they come from.
+func (s *Study) answer(ctx context.Context, d models.Design, ear *listener) Copy {
 	c := Copy{}
 	rung := s.Rung
-	ear := &listener{Simulator: s.Rung.Simulator}
 	rung.Simulator = ear
 	p, err := s.problem(d, rung)
 	if err != nil {
@@ -174,10 +184,7 @@ func (s *Study) answer(ctx context.Context, d models.Design) Copy {
 			return Copy{Err: fmt.Sprintf("%s does not apply to this design, so its limit cannot be judged", p.Limits[i].Figure)}
 		}
 	}
-	c.Reflection = make([]complex128, len(ear.band.Samples))
-	for i := range c.Reflection {
-		c.Reflection[i] = models.Reflection(ear.band.Samples[i].Input, d.Feed.Impedance)
-	}
+	c.Reflection = reflections(ear.band, d.Feed.Impedance)
 	return c
 }
 
@@ -259,7 +266,7 @@ func (s *Study) answerAll(ctx context.Context, p *plan) error {
 	done, failed := 0, 0
 	return Each(ctx, len(tasks), s.Workers, func(i int) bool {
 		errors := tasks[i].into.Errors
-		*tasks[i].into = s.answer(ctx, tasks[i].design)
+		*tasks[i].into = s.listen(ctx, tasks[i].design)
 		tasks[i].into.Errors = errors
 		return tasks[i].into.Err == ""
 	}, func(ok bool) {

@@ -261,6 +261,35 @@ func TestNoAnswer(t *testing.T) {
 	}
 }
 
+// TestStopped: a signal in the middle ends a study soon.
+func TestStopped(t *testing.T) {
+	ctx, cancel := context.WithCancel(context.Background())
+	s := study(still)
+	s.Samples = 500
+	most := 0
+	s.Progress = func(done, _, _ int) {
+		if most = done; done == 5 {
+			cancel()
+		}
+	}
+	if res, err := s.Run(ctx); !errors.Is(err, context.Canceled) || res != nil || most > 5+s.Workers {
+		t.Errorf("%v after %d answers", err, most)
+	}
+}
+
+// TestStatement: what the model says of itself and the design is kept.
+func TestStatement(t *testing.T) {
+	sim := fullWave(t)
+	s := study(sim)
+	s.Samples, s.Design.Conductor.Diameter = 1, 0.009
+	s.Design.Feed.Height, s.Design.Feed.Lead = 0.02, models.Lead{}
+	res := run(t, s)
+	r, err := s.Reflections(context.Background(), []float64{1.68e9})
+	if err != nil || res.Statement == "" || r.Statement != res.Statement || len(res.Warnings) == 0 || len(r.Warnings) == 0 {
+		t.Errorf("%q %q, %q %q: %v", res.Statement, res.Warnings, r.Statement, r.Warnings, err)
+	}
+}
+
 // TestIndicative: what a model only indicates is neither judged nor trimmed.
 func TestIndicative(t *testing.T) {
 	s := study(still, objectives.Limit{Figure: objectives.Gain, AtLeast: true, Value: 9}, objectives.Limit{Figure: objectives.VSWR, Value: 1.1})

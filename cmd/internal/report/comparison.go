@@ -19,6 +19,9 @@ type Comparison struct {
 	// Copies is how many were answered; Failures says why others were not.
 	Copies   int
 	Failures []tolerance.Failure
+	// Statement is what the model says of itself, Warnings of the design.
+	Statement string
+	Warnings  []string
 	// At each measured frequency in the band, against the design's reference.
 	Hz                  []float64
 	Predicted, Measured []complex128
@@ -94,6 +97,8 @@ func (c *Comparison) WriteText(w io.Writer) error {
 	for _, f := range c.Failures {
 		fmt.Fprintf(&b, "no answer from %d of %d copies: %s\n", f.Count, st.Samples, f.Reason)
 	}
+	b.WriteString("\n")
+	writeStatement(&b, c.Warnings, c.Statement)
 	_, err := io.WriteString(w, b.String())
 	return err
 }
@@ -163,6 +168,6 @@ func (c *Comparison) WriteJSON(w io.Writer) error {
 		"design_id": c.Study.Design.ID(), "model": c.Study.Rung.Model, "fidelity": orNull(c.Study.Rung.Fidelity),
 		"reference_ohm": c.Study.Design.Feed.Impedance, "copies": c.Copies, "distribution": c.Study.Distribution, "seed": c.Study.Seed,
 		"failures": failureObjects(c.Failures), "allowance": c.Allowance, "left_aside": c.Outside,
-		"passes": c.Left() == 0, "outside": c.Left(), "sweep": rows, "explanations": causes,
+		"warnings": stated(c.Warnings, c.Statement), "passes": c.Left() == 0, "outside": c.Left(), "sweep": rows, "explanations": causes,
 	})
 }

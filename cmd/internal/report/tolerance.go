@@ -45,8 +45,22 @@ func (r *Tolerance) WriteText(w io.Writer) error {
 	for _, f := range res.Failures {
 		fmt.Fprintf(&b, "no answer from %d of %d copies, counted in the interval both ways: %s\n", f.Count, st.Samples, f.Reason)
 	}
+	writeStatement(&b, res.Warnings, res.Statement)
 	_, err := io.WriteString(w, b.String())
 	return err
+}
+
+// writeStatement says the model's warnings, and what it is worth.
+func writeStatement(w io.Writer, warnings []string, statement string) {
+	for _, text := range warnings {
+		fmt.Fprintf(w, "warning: %s\n", text)
+	}
+	fmt.Fprintf(w, "%s\n", statement)
+}
+
+// stated are the warnings with the statement last, as scripts read them.
+func stated(warnings []string, statement string) []string {
+	return append(append([]string{}, warnings...), statement)
 }
 
 func (r *Tolerance) spreads(w io.Writer) {
@@ -188,7 +202,7 @@ func (r *Tolerance) object() map[string]any {
 		"design_id": st.Design.ID(), "model": st.Rung.Model, "fidelity": orNull(st.Rung.Fidelity),
 		"distribution": st.Distribution, "samples": st.Samples, "seed": st.Seed, "answered": res.Answered,
 		"half_widths": widths, "limits": r.limitObjects(), "figures": r.figureObjects(), "sensitivities": r.sensitivityObjects(),
-		"adjustments": r.adjustmentObjects(), "failures": failureObjects(res.Failures), "set_aside": append([]string{}, res.Unapplied...),
+		"adjustments": r.adjustmentObjects(), "failures": failureObjects(res.Failures), "warnings": stated(res.Warnings, res.Statement), "set_aside": append([]string{}, res.Unapplied...),
 		"yield_pct": nil, "yield_low_pct": nil, "yield_high_pct": nil, "interval": "Wilson 1927, 95 %",
 	}
 	if len(res.Limits) > 0 {
