@@ -2,6 +2,7 @@ package main
 
 import (
 	"errors"
+	"net"
 	"os"
 	"os/exec"
 	"strconv"
@@ -24,6 +25,7 @@ func TestScripts(t *testing.T) {
 		Dir: "testdata/script",
 		Cmds: map[string]func(*testscript.TestScript, bool, []string){
 			"exits":  exits,
+			"port":   port,
 			"rows":   rows,
 			"shared": shared,
 			"until":  until,
@@ -55,6 +57,25 @@ func exits(ts *testscript.TestScript, neg bool, args []string) {
 	if code != want {
 		ts.Fatalf("exit code %d, %d is due", code, want)
 	}
+}
+
+// port NAME sets a variable to a port of loopback that is free.
+func port(ts *testscript.TestScript, neg bool, args []string) {
+	if neg || len(args) != 1 {
+		ts.Fatalf("usage: port name")
+	}
+	address, err := freeAddress()
+	ts.Check(err)
+	ts.Setenv(args[0], strconv.Itoa(address.Port))
+}
+
+// freeAddress is an address of loopback that is free.
+func freeAddress() (*net.TCPAddr, error) {
+	l, err := net.ListenTCP("tcp", &net.TCPAddr{IP: net.IPv4(127, 0, 0, 1)})
+	if err != nil {
+		return nil, err
+	}
+	return l.Addr().(*net.TCPAddr), l.Close()
 }
 
 // rows FILE LEAST MOST counts the rows of a table under its header.

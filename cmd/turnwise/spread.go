@@ -22,12 +22,21 @@ import (
 // this program alone: nothing listens.
 type spread struct {
 	serve, queue string
+	lease        time.Duration
 	access       remote.Access
 }
+
+// A lease is renewed three times before it runs out, so it must leave room
+// for the network.
+const (
+	usualLease = 10 * time.Second
+	leastLease = 200 * time.Millisecond
+)
 
 func (d *spread) flags(f *pflag.FlagSet) {
 	f.StringVar(&d.serve, "serve", "", "have workers answer: open a queue for them at this address, such as 127.0.0.1:4222")
 	f.StringVar(&d.queue, "queue", "", "have workers answer: use the queue that is there, such as nats://127.0.0.1:4222")
+	f.DurationVar(&d.lease, "lease", usualLease, "how long a worker may be silent before what it has is handed to another")
 	accessFlags(f, &d.access)
 }
 
@@ -56,15 +65,17 @@ func (d spread) open(ctx context.Context, s streams) (*outpost, error) {
 			return nil, wrongf("--token-file and --tls-… are for a queue: give --serve or --queue too")
 		}
 		return nil, nil
+	case d.lease < leastLease:
+		return nil, wrongf("--lease %v: write at least %v, such as 10s", d.lease, leastLease)
 	case d.serve != "" && d.queue != "":
 		return nil, wrongf("--serve opens a queue and --queue uses another: give one of them")
 	}
 	far := &outpost{s: s, done: make(chan struct{})}
-	o := remote.Options{Say: func(text string) { fmt.Fprintln(s.err, text) }}
+	o := remote.Options{Lease: d.lease, Say: func(text string) { fmt.Fprintln(s.err, text) }}
 	var err error
 	if d.queue != "" {
 		if far.queue, err = remote.Open(ctx, d.queue, d.access, o); err != nil {
-			return nil, refused("--queue "+d.queue, err)
+			return nil, refused("--queue", err)
 		}
 		return far, nil
 	}
@@ -95,6 +106,8 @@ const mostAsked = 256
 // join has a session's questions answered by workers.
 func (far *outpost) join(c *cobra.Command, ses *session) error {
 	if far == nil || ses.done {
+		// A session that was killed has left one.
+		os.Remove(ses.folder.Path(workersFile))
 		return nil
 	}
 	if !c.Flags().Changed("workers") && os.Getenv("TURNWISE_WORKERS") == "" {

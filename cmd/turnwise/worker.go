@@ -84,7 +84,7 @@ func work(ctx context.Context, s streams, o employment) error {
 	}()
 	w := &remote.Worker{Name: o.name, Slots: o.slots, Models: ms, Say: func(text string) { fmt.Fprintln(s.err, text) }}
 	if err := w.Run(ctx, o.queue, o.access); err != nil && ctx.Err() == nil {
-		return wrong(fmt.Errorf("--queue %s: %w", o.queue, err))
+		return wrong(fmt.Errorf("--queue: %w", err))
 	}
 	return nil
 }
