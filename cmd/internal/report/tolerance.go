@@ -106,10 +106,33 @@ func signedAmount(f objectives.Figure, x float64) string {
 	if x < 0 {
 		sign = "−"
 	}
-	if objectives.Figures[f].Unit == objectives.DBic {
-		return sign + Amount(f, math.Abs(x)) + " dB"
+	return asDifference(sign+Amount(f, math.Abs(x)), f)
+}
+
+// smallChange is a difference of a figure in two digits, its sign always said.
+func smallChange(f objectives.Figure, x float64) string {
+	x = scale(f, x)
+	size := math.Abs(x)
+	text := fmt.Sprintf("%.2g", size)
+	switch {
+	case size < 5e-4:
+		return "0"
+	case size >= 99:
+		text = fmt.Sprintf("%.0f", size)
 	}
-	return sign + Quantity(f, math.Abs(x))
+	if x < 0 {
+		return "−" + text
+	}
+	return "+" + text
+}
+
+// asDifference puts the unit of a figure's difference behind a number.
+func asDifference(text string, f objectives.Figure) string {
+	unit := shownUnit(f)
+	if unit == string(objectives.DBic) {
+		unit = string(objectives.Decibel)
+	}
+	return strings.TrimSpace(text + " " + unit)
 }
 
 func (r *Tolerance) figures(w io.Writer) {
@@ -137,9 +160,9 @@ func (r *Tolerance) sensitivities(w io.Writer) {
 		return
 	}
 	judges := res.Judges()
-	fmt.Fprintf(w, "tightest dimension first, by its share of the variance of %s; change of room per half-width (as +, as −)\n", judges[max(res.Deciding, 0)].Figure)
+	fmt.Fprintf(w, "tightest dimension first, by its share of the variance of %s; for each limit the change of room at plus / minus a half-width, and that share\n", judges[max(res.Deciding, 0)].Figure)
 	t := tabwriter.NewWriter(w, 0, 0, 2, ' ', 0)
-	fmt.Fprintf(t, "dimension\thalf-width\tshare")
+	fmt.Fprintf(t, "dimension\thalf-width")
 	for _, l := range judges {
 		fmt.Fprintf(t, "\t%s", l.Figure)
 	}
@@ -147,12 +170,12 @@ func (r *Tolerance) sensitivities(w io.Writer) {
 	for _, s := range res.Sensitivities {
 		fmt.Fprintf(t, "%s\t±%s", s.Dimension, HalfWidth(s.Dimension, s.HalfWidth))
 		if s.Err != "" {
-			fmt.Fprintf(t, "\t–\tno answer at an end: %s\n", s.Err)
+			fmt.Fprintf(t, "\tno answer at an end: %s\n", s.Err)
 			continue
 		}
-		fmt.Fprintf(t, "\t%.0f %%", 100*s.Changes[max(res.Deciding, 0)].Share)
 		for i, c := range s.Changes {
-			fmt.Fprintf(t, "\t%s (%s, %s)", signedAmount(judges[i].Figure, c.PerHalfWidth()), signedAmount(judges[i].Figure, c.Up), signedAmount(judges[i].Figure, c.Down))
+			f := judges[i].Figure
+			fmt.Fprintf(t, "\t%s / %s, %.0f %%", smallChange(f, c.Up), asDifference(smallChange(f, c.Down), f), 100*c.Share)
 		}
 		fmt.Fprintln(t)
 	}
