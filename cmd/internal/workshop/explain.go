@@ -110,7 +110,8 @@ func fitterCauses(ctx context.Context, rung objectives.Rung, d models.Design, hz
 }
 
 // windingCauses are the dimensions that only winding anew would mend, each
-// moved up to four half-widths. The riser is a fitter's.
+// moved up to four half-widths; and the lead's spacing, which a fitter bends as
+// far as the rest. The riser is among the fitter's moves already.
 func windingCauses(ctx context.Context, rung objectives.Rung, d models.Design, spreads tolerance.Spreads, hz []float64) ([]cause, error) {
 	from, err := sweptReflection(ctx, rung, d, hz)
 	if err != nil {
@@ -127,9 +128,14 @@ func windingCauses(ctx context.Context, rung objectives.Rung, d models.Design, s
 		if half == 0 {
 			half = info.Default
 		}
+		m := move{Name: info.Words, Stands: "made so from the start"}
 		c := cause{plain: dim == tolerance.Permittivity, at: make([]move, len(hz))}
+		if dim == tolerance.LeadSpacing {
+			c.fitter, half = true, (&trimChart{Hz: hz[0]}).reach()/4
+			m = move{Name: info.Words, Stands: "whole lead, the winding after it moves with it", More: "widen", Less: "narrow"}
+		}
 		for k := range hz {
-			c.at[k] = move{Name: info.Words, Stands: "made so from the start"}
+			c.at[k] = m
 		}
 		for _, times := range []float64{-4, -2, -1, 0, 1, 2, 4} {
 			g, err := sweptReflection(ctx, rung, dim.Shift(d, times*half), hz)

@@ -64,6 +64,11 @@ func TestExplain(t *testing.T) {
 			t.Errorf("%s by %g: %+v", name, c.by, best)
 		}
 	}
+	d.Feed.Lead = models.Lead{Turns: 0.5, Spacing: 0.012, Shape: models.Ramp}
+	best := explain(t, d, hz, differing(t, d, hz, func(d *models.Design) { d.Feed.Lead.Spacing += 5e-3 }))[0]
+	if best.Name != "spacing at the start of the lead" || math.Abs(best.By/5e-3-1) > 0.06 || best.Undo != "narrow" {
+		t.Errorf("lead: %+v", best)
+	}
 	if out := explain(t, d, hz, make([]complex128, len(hz))); out != nil {
 		t.Errorf("no difference, but %+v", out)
 	}
