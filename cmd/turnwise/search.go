@@ -73,6 +73,9 @@ func search(c *cobra.Command, s streams, o searchOptions) error {
 		return err
 	}
 	defer far.close()
+	if far != nil && o.timeout > 0 {
+		return wrongf("--timeout counts the wait for a worker too, which --serve and --queue make a long one: leave it away")
+	}
 	if err := ses.reuse(o.reuse); err != nil {
 		return err
 	}

@@ -178,7 +178,7 @@ func writeStanding(w io.Writer, s *remote.Standing) {
 		if !m.Present {
 			state = "silent"
 		}
-		fmt.Fprintf(w, "  worker %s\t%s/s\t%d answered, %d failed\t%s\n", m.Name, significant(m.Rate), m.Answered, m.Failed, state)
+		fmt.Fprintf(w, "  worker %q\t%s/s\t%d answered, %d failed\t%s\n", m.Name, significant(m.Rate), m.Answered, m.Failed, state)
 	}
 	fmt.Fprintf(w, "  queue\t%d waiting\t%d refused, %d late, %d malformed\t\n", s.Waiting, s.Refused, s.Dropped, s.Malformed)
 }

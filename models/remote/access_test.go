@@ -19,6 +19,8 @@ import (
 	"testing"
 	"time"
 
+	"github.com/nats-io/nats-server/v2/server"
+
 	"turnwise/models"
 )
 
@@ -195,6 +197,22 @@ func TestBeyondLoopback(t *testing.T) {
 		case c.refused != "" && (err == nil || !strings.Contains(err.Error(), c.refused) || strings.Contains(err.Error(), secret)):
 			t.Errorf("%s: %v; %q is due", c.url, err, c.refused)
 		}
+	}
+}
+
+// A server that keeps no streams is no queue.
+func TestServerWithoutStreams(t *testing.T) {
+	s, err := server.NewServer(&server.Options{Host: "127.0.0.1", Port: server.RANDOM_PORT, NoLog: true, NoSigs: true})
+	if err != nil {
+		t.Fatal(err)
+	}
+	s.Start()
+	defer s.Shutdown()
+	if !s.ReadyForConnections(10 * time.Second) {
+		t.Fatal("the server does not come up")
+	}
+	if q, err := Open(context.Background(), "nats://"+s.Addr().String(), Access{}, Options{}); err == nil || !strings.Contains(err.Error(), "keeps no streams") {
+		t.Errorf("%v, %v", q, err)
 	}
 }
 

@@ -76,6 +76,9 @@ func open(o Options, connect func(say func(string), more ...nats.Option) (*nats.
 	if q.js, err = jetstream.New(q.nc); err == nil {
 		err = q.listen()
 	}
+	if err == nil {
+		err = q.able()
+	}
 	if err != nil {
 		q.Close()
 		return nil, err
@@ -90,6 +93,16 @@ func (q *Queue) listen() error {
 	}
 	_, err := q.nc.Subscribe(helloSubject, q.greet)
 	return err
+}
+
+// able demands of a server that it keeps streams.
+func (q *Queue) able() error {
+	ctx, cancel := context.WithTimeout(context.Background(), 5*time.Second)
+	defer cancel()
+	if _, err := q.js.AccountInfo(ctx); err != nil {
+		return fmt.Errorf("the server keeps no streams, which a queue needs: %w", err)
+	}
+	return nil
 }
 
 // Close lets go of the queue. Whoever still waits for an answer waits for its

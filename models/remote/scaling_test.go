@@ -117,11 +117,14 @@ func BenchmarkReal(b *testing.B) {
 			for i := range 400 {
 				naps[winding(i).Turns] = time.Duration(0.1 * math.Exp(0.5*times.NormFloat64()) * float64(time.Second))
 			}
+			var leaving sync.WaitGroup
+			defer leaving.Wait()
 			for range workers {
-				bench.hire("w", 1, &fake{name: "made", answer: func(_ context.Context, d models.Design, _ models.Question) error {
+				leave := bench.hire("w", 1, &fake{name: "made", answer: func(_ context.Context, d models.Design, _ models.Question) error {
 					time.Sleep(naps[d.Turns])
 					return nil
 				}})
+				defer leaving.Go(func() { leave() })
 			}
 			s := bench.simulator(&fake{name: "made"})
 			soon(b, "every worker", func() bool { return len(bench.queue.Standing().Workers) == workers })
