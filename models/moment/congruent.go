@@ -16,7 +16,7 @@ type congruence struct {
 // among themselves, the sizes, the grid.
 type shape struct {
 	dist   [11]float64 // squared; the last two along the elements themselves
-	size   [4]float64  // lengths and radii
+	size   [6]float64  // lengths, radii and coats
 	points [2]int
 	even   bool
 }
@@ -32,7 +32,7 @@ func (p *pair) shape() (s shape) {
 	}
 	s.dist[9] = p.apart2(&p.e.tips[0], &p.e.tips[2])
 	s.dist[10] = p.apart2(&p.f.tips[0], &p.f.tips[2])
-	s.size = [4]float64{p.e.length, p.f.length, p.e.radius, p.f.radius}
+	s.size = [6]float64{p.e.length, p.f.length, p.e.radius, p.f.radius, p.e.coat, p.f.coat}
 	s.points = [2]int{p.e.end - p.e.first, p.f.end - p.f.first}
 	s.even = p.e.even && p.f.even
 	return s

@@ -10,6 +10,13 @@ import (
 // take it reduced, R² = |r − r'|² + (a² + a'²)/2; near pairs average it
 // around the conductors, R² = |r − r'|² + (a − a')² + 4aa' sin²(φ/2), and
 // need only its first two static terms so: 1/R and R.
+//
+// A thin coat of thickness t takes (1 − 1/ε_r) of what the charges' 1/R of the
+// conductor's surface has over that of the coat's surface, radius a + t. Along
+// functions that are long against the radius that is the series loading of
+// Richmond and Newman (Radio Science 11, 13, 1976), a potential less by
+// 2(1 − 1/ε_r) ln(1 + t/a) times the charge; on shorter ones it fades as the
+// field does, where the loading by itself would outweigh the kernel.
 
 // expand is the squared distance in units of a·a' beyond which the averages
 // come from their expansion, good to 3e-9 there.

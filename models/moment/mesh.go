@@ -19,7 +19,10 @@ type element struct {
 	// even is set where the radius is the same all along.
 	even   bool
 	radius float64 // in the middle, m
-	tips   [3]vec  // start, middle, finish
+	// coat is the thickness of the wire's coat, m, and bound the part of its
+	// charge that polarises it, 1 − 1/ε_r.
+	coat, bound float64
+	tips        [3]vec // start, middle, finish
 	// value holds the functions that live here, and slope their derivatives
 	// by x; fn their numbers, −1 for one that does not exist (an open end);
 	// functions carry their sign already.
@@ -213,6 +216,9 @@ func (m *mesh) cut(w *Wire, index int, k float64) int {
 	for e := range n {
 		m.elements = append(m.elements, element{wire: index, length: h})
 		el := &m.elements[len(m.elements)-1]
+		if c := w.Coat; c.Thickness > 0 {
+			el.coat, el.bound = c.Thickness, 1-1/c.Permittivity
+		}
 		m.shape(el, w, float64(e)*h, h)
 		if p := m.set.degree; e > p && e < n-p {
 			el.value, el.slope = m.elements[len(m.elements)-2].value, m.elements[len(m.elements)-2].slope

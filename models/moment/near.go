@@ -55,6 +55,7 @@ type pair struct {
 	m     *mesh
 	e, f  *element
 	image bool
+	bare  bool // coats left out, as the grid does
 }
 
 // add accounts for the node (x on e, y on f) with weight w in x and y.
@@ -66,9 +67,9 @@ func (s *static) add(p *pair, x, y, w float64, reduce bool) {
 
 // node is add with both points known.
 func (s *static) node(p *pair, pe, te *vec, ae, x float64, pf, tf *vec, af, y, w float64, reduce bool) {
-	inverse, mean, dot := p.static(pe, te, ae, pf, tf, af, reduce)
+	k := p.static(pe, te, ae, pf, tf, af, reduce)
 	charge := w * p.sign()
-	s.mom.collect(p.m.order, x, y, charge*inverse, charge*mean, w*dot*inverse, w*dot*mean)
+	s.mom.collect(p.m.order, x, y, charge*k.charged, charge*k.mean, w*k.dot*k.inverse, w*k.dot*k.mean)
 }
 
 // sign is that of the second element's charge.
@@ -79,22 +80,33 @@ func (p *pair) sign() float64 {
 	return 1
 }
 
-// static gives the kernel's static terms, 1/R and R, and the product of the
-// tangents between a point of e and one of f.
-func (p *pair) static(pe, te *vec, ae float64, pf, tf *vec, af float64, reduce bool) (inverse, mean, dot float64) {
+// terms are the kernel's static terms between a point of e and one of f: 1/R
+// of the currents and of the charges, R, and the product of the tangents.
+type terms struct{ inverse, charged, mean, dot float64 }
+
+func (p *pair) static(pe, te *vec, ae float64, pf, tf *vec, af float64, reduce bool) (k terms) {
 	dx, dy, dz := pe[0]-pf[0], pe[1]-pf[1], pe[2]-pf[2]
-	dot = te[0]*tf[0] + te[1]*tf[1]
+	k.dot = te[0]*tf[0] + te[1]*tf[1]
 	if p.image {
-		dz, dot = pe[2]+pf[2], -dot
+		dz, k.dot = pe[2]+pf[2], -k.dot
 	}
-	dot += te[2] * tf[2]
+	k.dot += te[2] * tf[2]
 	d2 := dx*dx + dy*dy + dz*dz
-	if reduce {
-		inverse, mean = reduced(d2, (ae*ae+af*af)/2)
-	} else {
-		inverse, mean = averaged(d2+(ae-af)*(ae-af), ae*af)
+	k.inverse, k.mean = between(d2, ae, af, reduce)
+	k.charged = k.inverse
+	if p.e.coat > 0 && p.f.coat > 0 && !p.bare {
+		outside, _ := between(d2, ae+p.e.coat, af+p.f.coat, reduce)
+		k.charged += math.Sqrt(p.e.bound*p.f.bound) * (outside - k.inverse)
 	}
-	return inverse, mean, dot
+	return k
+}
+
+// between gives 1/R and R for the squared distance of two axes.
+func between(d2, a, b float64, reduce bool) (inverse, mean float64) {
+	if reduce {
+		return reduced(d2, (a*a+b*b)/2)
+	}
+	return averaged(d2+(a-b)*(a-b), a*b)
 }
 
 // symmetric adds to the moments those with x and y exchanged.
@@ -197,6 +209,7 @@ func contract(order, n int, mom *[maxOrder][maxOrder]float64, e, f *[maxOrder]po
 // gridless takes off what the grid will add for the pair.
 func (s *static) gridless(p *pair) {
 	m := p.m
+	p.bare = true
 	for i := p.e.first; i < p.e.end; i++ {
 		pe, te := vec{m.x[i], m.y[i], m.z[i]}, vec{m.tx[i], m.ty[i], m.tz[i]}
 		we := m.weight[i] * 2 / p.e.length
@@ -250,7 +263,7 @@ func (s *static) direct(p *pair, i, j int) {
 	case p.e.start.meets(j):
 		s.corner(p, 0, p.e.start.side)
 	default:
-		s.between(p, i, j, gap2, !p.along(i, j))
+		s.separate(p, i, j, gap2, !p.along(i, j))
 	}
 	s.gridless(p)
 	s.keep(p, i-j)
@@ -259,8 +272,8 @@ func (s *static) direct(p *pair, i, j int) {
 
 func (n neighbour) meets(j int) bool { return n.kind == another && n.element == j }
 
-// between integrates a near pair that does not meet, by its least distance.
-func (s *static) between(p *pair, i, j int, gap2 float64, reduce bool) {
+// separate integrates a near pair that does not meet, by its least distance.
+func (s *static) separate(p *pair, i, j int, gap2 float64, reduce bool) {
 	if l := apartFrom * max(p.e.length, p.f.length); gap2 > l*l {
 		s.apart(p, i, j, reduce)
 		return
@@ -300,7 +313,7 @@ func (s *static) mirrored(p *pair, i, j int) {
 	case i == j && p.e.finish.kind == plane:
 		s.corner(p, 1, 1)
 	default:
-		s.between(p, i, j, gap2, !p.through(i, j))
+		s.separate(p, i, j, gap2, !p.through(i, j))
 	}
 	s.gridless(p)
 	s.place(p)

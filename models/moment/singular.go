@@ -60,14 +60,14 @@ func (s *static) corner(p *pair, se, sf int) {
 	short, long := min(he, hf), max(he, hf)
 	graded(short, b, set.graded, at)
 	if long > short {
-		between(short, long, set.graded, at)
+		logarithmic(short, long, set.graded, at)
 	}
-	between(long, short+long, set.smooth, at)
+	logarithmic(long, short+long, set.smooth, at)
 }
 
-// between is the Gauss–Legendre rule from lo to hi by the logarithm of u
+// logarithmic is the Gauss–Legendre rule from lo to hi by the logarithm of u
 // where hi is more than twice lo.
-func between(lo, hi float64, n int, do func(u, w float64)) {
+func logarithmic(lo, hi float64, n int, do func(u, w float64)) {
 	g := &legendre[n]
 	if hi > 2*lo {
 		ratio := math.Log(hi / lo)
@@ -117,9 +117,9 @@ func (s *static) apart(p *pair, i, j int, reduce bool) {
 	for a := range es {
 		var c0, c1, q0, q1 [maxOrder]float64 // by the power of y
 		for b := range fs {
-			inverse, mean, dot := p.static(&es[a].at, &es[a].tangent, es[a].radius, &fs[b].at, &fs[b].tangent, fs[b].radius, reduce)
+			t := p.static(&es[a].at, &es[a].tangent, es[a].radius, &fs[b].at, &fs[b].tangent, fs[b].radius, reduce)
 			w, y := g.w[b], g.x[b]
-			q, r, c, d := w*inverse, w*mean, w*dot*inverse, w*dot*mean
+			q, r, c, d := w*t.charged, w*t.mean, w*t.dot*t.inverse, w*t.dot*t.mean
 			for k := range order {
 				q0[k] += q
 				q1[k] += r

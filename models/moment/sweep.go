@@ -134,8 +134,7 @@ func evenly(k []float64) float64 {
 	return step
 }
 
-// conductors adds the coats to the static part and keeps the products of the
-// functions for the losses.
+// conductors keeps the products of the functions for the losses.
 func (w *work) conductors() {
 	m := &w.mesh
 	if cap(w.gram) < len(m.elements) {
@@ -145,34 +144,23 @@ func (w *work) conductors() {
 	g := &legendre[m.order+1]
 	for i := range m.elements {
 		e := &m.elements[i]
-		wire := &w.antenna.Wires[e.wire]
 		gram := &w.gram[i]
 		*gram = [maxOrder][maxOrder]float64{}
 		for j, x := range g.x {
-			coat := 0.0
-			if wire.Coat.Thickness > 0 {
-				// Richmond and Newman (Radio Science 11, 13, 1976): the
-				// coat's polarisation takes this off the charges' potential.
-				_, _, a := e.at(x)
-				coat = -2 * (1 - 1/wire.Coat.Permittivity) * math.Log1p(wire.Coat.Thickness/a)
-			}
-			w.products(e, gram, x, g.w[j], coat)
+			w.products(e, gram, x, g.w[j])
 		}
 	}
 }
 
-func (w *work) products(e *element, gram *[maxOrder][maxOrder]float64, x, weight, coat float64) {
+func (w *work) products(e *element, gram *[maxOrder][maxOrder]float64, x, weight float64) {
 	m := &w.mesh
-	var f, d [maxOrder]float64
+	var f [maxOrder]float64
 	for l := range m.order {
-		f[l], d[l] = e.value[l].at(x, m.order), e.slope[l].at(x, m.order)
+		f[l] = e.value[l].at(x, m.order)
 	}
 	for l := range m.order {
 		for r := range m.order {
 			gram[l][r] += f[l] * f[r] * weight * e.length / 2
-			if coat != 0 && e.fn[l] >= 0 && e.fn[r] >= 0 && (e.fn[r] <= e.fn[l] || w.static.both) {
-				w.static.zero[e.fn[l]*m.functions+e.fn[r]] += coat * d[l] * d[r] * weight * 2 / e.length
-			}
 		}
 	}
 }
