@@ -33,12 +33,12 @@ func (s *Search) infill(n int) []space.Point {
 		return nil
 	}
 	centres := s.centres()
-	learned, ok := s.learn(centres)
+	surfaces, ok := s.learn(centres)
 	if !ok {
 		return nil
 	}
 	var points []space.Point
-	for _, p := range s.choose(s.foretold(learned, centres), n, learned.typical) {
+	for _, p := range s.choose(s.foretold(surfaces, centres), n, surfaces.typical) {
 		points = append(points, p.point)
 		s.promised = append(s.promised, p.value)
 	}
