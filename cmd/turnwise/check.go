@@ -68,6 +68,9 @@ func check(ctx context.Context, s streams, path, lasting string) error {
 	planned := plannedEvaluations(&b, one, workers)
 	whole := time.Duration(float64(one) * float64(planned) / float64(workers))
 	fmt.Fprintf(w, "time          one evaluation %s here; %d of them on %d workers about %s, and the final front besides\n", brief(one), planned, workers, brief(whole))
+	if one >= dearFrom {
+		fmt.Fprintf(w, "searcher      learned: an evaluation takes so long that surfaces through the answers pay\n")
+	}
 	_, err = fmt.Fprintf(w, "journal       about %s\n", bytesText(journalBytes(&b, planned)))
 	if limit > 0 {
 		n := timedPlan(limit, one, workers)
@@ -179,6 +182,9 @@ func randomPoint(p *objectives.Problem, random func() float64) space.Point {
 	return p.Layout.Space.FromUnit(u)
 }
 
+// enoughTiming is the time after which an estimate is good enough.
+const enoughTiming = 3 * time.Second
+
 // timeEvaluation is how long one evaluation takes here: the mean over some
 // designs of hand rules and some drawn at random, the first of all left out.
 func timeEvaluation(ctx context.Context, p *objectives.Problem) (time.Duration, error) {
@@ -207,6 +213,9 @@ func timeEvaluation(ctx context.Context, p *objectives.Problem) (time.Duration, 
 		if i > 0 {
 			sum += time.Since(began)
 			answered++
+		}
+		if sum > enoughTiming {
+			break
 		}
 	}
 	if answered == 0 {

@@ -345,11 +345,15 @@ func (ses *session) Recall(key string) ([]byte, bool) {
 	return nil, false
 }
 
+// dearFrom is how long an evaluation takes from which on the learned searcher
+// pays: below it, its own time counts.
+const dearFrom = 300 * time.Millisecond
+
 // searcher is the programme of the run.
 func (ses *session) searcher() *programme.Search {
 	c := programme.Config{
 		Plan: ses.planned, Sample: ses.brief.Search.Sample, Genetic: ses.brief.Search.Genetic, Simplex: ses.brief.Search.Simplex,
-		Seed: ses.brief.Seed, Seeds: ses.problem.HandSeeds(20),
+		Seed: ses.brief.Seed, Seeds: ses.problem.HandSeeds(20), DearFrom: dearFrom,
 	}
 	for i, d := range ses.brief.Starts {
 		pt, notes := ses.problem.Layout.Point(d)

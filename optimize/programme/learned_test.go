@@ -4,6 +4,7 @@ import (
 	"context"
 	"slices"
 	"testing"
+	"time"
 
 	"turnwise/optimize"
 	"turnwise/optimize/front"
@@ -101,5 +102,34 @@ func TestDearFindsMore(t *testing.T) {
 	}
 	if d, g := covered(dear(100)), covered(standard(100)); d < 0.8 || g > 0.5*d {
 		t.Errorf("%.3f of the front learned, %.3f bred", d, g)
+	}
+}
+
+// The learned searcher steps in where the first sample took long, and where
+// it did not, never.
+func TestDearByTheClock(t *testing.T) {
+	p := searchtest.ProblemByName("tnk")
+	run := func(took time.Duration) map[string]int {
+		c := standard(200)
+		c.DearFrom = 300 * time.Millisecond
+		s := programme.New(p.Domain, c)
+		defer s.Close()
+		var all []optimize.Evaluation
+		for batch := s.Ask(); len(batch) > 0; batch = s.Ask() {
+			told := make([]optimize.Evaluation, len(batch))
+			for i, c := range batch {
+				score, _ := p.Evaluate(context.Background(), c)
+				told[i] = optimize.Evaluation{Candidate: c, Score: score, Status: optimize.OK, Duration: took}
+			}
+			all = append(all, told...)
+			s.Tell(told)
+		}
+		return stages(all)
+	}
+	if got := run(time.Second); got[programme.Learned] == 0 || got[programme.Genetic] > 0 {
+		t.Errorf("a second each: %v", got)
+	}
+	if got := run(time.Millisecond); got[programme.Learned] > 0 || got[programme.Genetic] == 0 {
+		t.Errorf("a millisecond each: %v", got)
 	}
 }

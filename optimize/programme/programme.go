@@ -11,7 +11,9 @@ package programme
 import (
 	"io"
 	"math"
+	"slices"
 	"strings"
+	"time"
 
 	"turnwise/optimize"
 	"turnwise/optimize/genetic"
@@ -34,15 +36,20 @@ const (
 // Config says how to search.
 type Config struct {
 	// Plan lists the evaluations planned: of the run first, then of each
-	// extension. An extension is a further genetic or learned and simplex stage, so that
-	// a run extended at a count is the same run however often it was stopped.
+	// extension. An extension is a further genetic or learned and a simplex
+	// stage, so that a run extended at a count is the same run however often it
+	// was stopped.
 	Plan []int
 	// Shares of each plan; an extension leaves the sample's to the others.
 	Sample, Genetic, Simplex float64
 	// Dear marks evaluations that take so long that few can be had: the share
 	// of the genetic searcher, and of the simpler views, goes to the learned
-	// one, and each is answered by the finest model.
-	Dear bool
+	// one, and each is answered by the finest model. DearFrom decides so where
+	// the first sample's evaluations took that long, by their median; 0: never.
+	// The times come with what is told, so a run that is repeated from its
+	// record decides alike.
+	Dear     bool
+	DearFrom time.Duration
 	// Population of the genetic searcher; 0: fitted to the plan.
 	Population int
 	Seed       uint64
@@ -79,6 +86,7 @@ type Search struct {
 	asked    int
 	why      []string
 	idle     int // stages in a row that asked nothing
+	decided  bool
 }
 
 var _ optimize.Searcher = (*Search)(nil)
@@ -101,12 +109,48 @@ func New(d optimize.Domain, c Config) *Search {
 			s.segments = append(s.segments, segment{stage: Sample, end: begin + min(sample, n), id: k})
 		}
 		walks := int(math.Round(c.Simplex * float64(n)))
-		if k == 0 && c.Genetic > 0 && !c.Dear {
+		if k == 0 && c.Genetic > 0 {
 			s.simpler(begin+sample, end-walks)
 		}
-		s.segments = append(s.segments, segment{stage: c.main(), end: end - walks, id: k}, segment{stage: Simplex, end: end, id: k})
+		s.segments = append(s.segments, segment{stage: Genetic, end: end - walks, id: k}, segment{stage: Simplex, end: end, id: k})
+	}
+	if c.Dear {
+		s.learn()
 	}
 	return s
+}
+
+// decide looks at how long the first sample took, once it is over.
+func (s *Search) decide() {
+	if s.decided || s.at >= len(s.segments) || s.segments[s.at].stage == Sample {
+		return
+	}
+	s.decided = true
+	if s.c.Dear || s.c.DearFrom <= 0 {
+		return
+	}
+	var took []time.Duration
+	for i := range s.told {
+		if !s.told[i].Reused {
+			took = append(took, s.told[i].Duration)
+		}
+	}
+	slices.Sort(took)
+	if n := len(took); n > 0 && took[n/2] >= s.c.DearFrom {
+		s.c.Dear = true
+		s.learn()
+	}
+}
+
+// learn gives what the views and the genetic searcher would have to the
+// learned one.
+func (s *Search) learn() {
+	s.segments = slices.DeleteFunc(s.segments, func(g segment) bool { return g.stage == Simpler })
+	for i := range s.segments {
+		if s.segments[i].stage == Genetic {
+			s.segments[i].stage = Learned
+		}
+	}
 }
 
 // wholePart is the genetic searcher's part in the whole space, counted in
@@ -153,6 +197,7 @@ func (s *Search) Ask() []optimize.Candidate {
 
 // open makes the searcher of the next stage that has something to do.
 func (s *Search) open() bool {
+	s.decide()
 	for ; s.at < len(s.segments); s.at++ {
 		g := s.segments[s.at]
 		n := g.end - s.asked
