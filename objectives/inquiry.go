@@ -8,6 +8,7 @@ import (
 	"fmt"
 	"strconv"
 	"strings"
+	"time"
 
 	"golang.org/x/sync/singleflight"
 
@@ -22,6 +23,7 @@ type inquiry struct {
 	memory  Memory
 	flights *singleflight.Group // questions that are being asked, by key
 	answers []optimize.Answer
+	took    time.Duration // by their own account
 }
 
 // ask puts a question about a design: to the memory first.
@@ -40,6 +42,7 @@ func (q *inquiry) ask(ctx context.Context, d *models.Design, question models.Que
 		}
 	}
 	r, stored, err := q.put(ctx, d, question, a.Key)
+	q.took += r.Took
 	if err != nil {
 		return r, err
 	}
@@ -58,7 +61,7 @@ func (q *inquiry) put(ctx context.Context, d *models.Design, question models.Que
 	v, err, _ := q.flights.Do(key, func() (any, error) {
 		r, err := q.rung.Simulator.Simulate(ctx, *d, question)
 		if err != nil {
-			return reply{}, err
+			return reply{Response: r}, err
 		}
 		stored, err := json.Marshal(&r)
 		if err != nil {

@@ -109,7 +109,7 @@ func (p *Problem) hides(r Rung) bool { return r.Indicative && !p.TrustIndicative
 
 // Domain is what a searcher may know of the problem.
 func (p *Problem) Domain() optimize.Domain {
-	return optimize.Domain{Space: p.Layout.Space, Aims: len(p.Aims), Limits: len(p.Limits), Finest: len(p.rungs) - 1, Screen: p.Screen, Views: p.Layout.views()}
+	return optimize.Domain{Space: p.Layout.Space, Aims: len(p.Aims), Limits: len(p.Limits), Finest: len(p.rungs) - 1, Screen: p.Screen}
 }
 
 // Evaluate answers a candidate over the band's samples, with the figures
@@ -202,7 +202,7 @@ func (p *Problem) score(ctx context.Context, pt space.Point, r Rung, hz []float6
 	for _, d := range p.spread(p.Layout.Design(pt)) {
 		one, err := p.figures(ctx, &q, d, hz, want)
 		if err != nil {
-			return optimize.Score{Answers: q.answers}, err
+			return optimize.Score{Answers: q.answers, Took: q.took}, err
 		}
 		rows = append(rows, one)
 	}
@@ -214,7 +214,9 @@ func (p *Problem) score(ctx context.Context, pt space.Point, r Rung, hz []float6
 	if p.hides(r) {
 		row.hideMatch()
 	}
-	return p.ScoreOf(row, q.answers), nil
+	s := p.ScoreOf(row, q.answers)
+	s.Took = q.took
+	return s, nil
 }
 
 // ScoreOf holds a row of figures against the aims and limits.

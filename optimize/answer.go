@@ -22,6 +22,9 @@ func answer(ctx context.Context, ev Evaluator, c Candidate, limit time.Duration)
 	}
 	score, err := guarded(mine, ev, c)
 	e := Evaluation{Candidate: c, Score: score, Status: OK, Duration: time.Since(began)}
+	if score.Took > 0 {
+		e.Duration, e.Score.Took = score.Took, 0
+	}
 	if err == nil {
 		err = plain(score)
 	}

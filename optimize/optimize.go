@@ -29,6 +29,9 @@ type Score struct {
 	Limits  []float64
 	// Answers are what simulators said on the way, for the record only.
 	Answers []Answer
+	// Took is how long the evaluation took where its simulators know better
+	// than the clock, since it waited for them; 0: they do not.
+	Took time.Duration
 }
 
 // Answer is what one simulator said to one question, kept so that it need
@@ -101,17 +104,6 @@ type Domain struct {
 	// what does not pass is not worth an evaluation. Pure and safe for
 	// concurrent use; nil: everything passes.
 	Screen func(space.Point) (violation float64, reason string)
-	// Views are coarser pictures of the space, the coarsest first: what is
-	// found in a small space is a good start in the larger one that holds it.
-	Views []View
-}
-
-// View is a small space inside a larger one.
-type View struct {
-	Space space.Space
-	// Lift gives a point as the next view's space has it, or after the last
-	// view the whole space. Pure and safe for concurrent use.
-	Lift func(space.Point) space.Point
 }
 
 // Passes reports whether the point passes the screen.

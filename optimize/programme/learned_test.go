@@ -27,10 +27,9 @@ func TestContractOfTheDear(t *testing.T) {
 	})
 }
 
-// The learned searcher has the genetic searcher's share and that of the
-// views.
+// The learned searcher has the genetic searcher's share.
 func TestLearnedHasTheGeneticShare(t *testing.T) {
-	p := viewed()
+	p := searchtest.ProblemByName("tnk")
 	s := programme.New(p.Domain, dear(100))
 	defer s.Close()
 	got := stages(searchtest.Drive(p, s))

@@ -1,7 +1,5 @@
 // Package programme runs the stages of a search as one searcher: a first
 // sample, the genetic searcher on what it found, then simplexes on the front.
-// Where the problem has views of fewer variables, the genetic searcher is run
-// in each of them first, the coarsest first, and goes on from what it found.
 // Where evaluations are dear the learned searcher takes their place.
 // Shares are of the evaluations planned at the start and never change; what a
 // stage leaves goes to the next, and what the last leaves to another round of
@@ -27,7 +25,6 @@ import (
 const (
 	Start   = "start"
 	Sample  = "sample"
-	Simpler = "simpler"
 	Genetic = "genetic"
 	Learned = "learned"
 	Simplex = "simplex"
@@ -43,8 +40,7 @@ type Config struct {
 	// Shares of each plan; an extension leaves the sample's to the others.
 	Sample, Genetic, Simplex float64
 	// Dear marks evaluations that take so long that few can be had: the share
-	// of the genetic searcher, and of the simpler views, goes to the learned
-	// one, and each is answered by the finest model. DearFrom decides so where
+	// of the genetic searcher goes to the learned one, and each is answered by the finest model. DearFrom decides so where
 	// the first sample's evaluations took that long, by their median; 0: never.
 	// The times come with what is told, so a run that is repeated from its
 	// record decides alike.
@@ -71,7 +67,6 @@ type segment struct {
 	stage string
 	end   int // evaluations of the whole programme at which it ends
 	id    int // distinguishes the random streams of stages of a kind
-	view  int // of a simpler stage
 }
 
 // Search is the programme as a searcher. Close it when it is no longer asked.
@@ -82,7 +77,6 @@ type Search struct {
 	at       int
 	stage    optimize.Searcher
 	told     []optimize.Evaluation
-	viewed   *view // the last simpler stage
 	asked    int
 	why      []string
 	idle     int // stages in a row that asked nothing
@@ -109,9 +103,6 @@ func New(d optimize.Domain, c Config) *Search {
 			s.segments = append(s.segments, segment{stage: Sample, end: begin + min(sample, n), id: k})
 		}
 		walks := int(math.Round(c.Simplex * float64(n)))
-		if k == 0 && c.Genetic > 0 {
-			s.simpler(begin+sample, end-walks)
-		}
 		s.segments = append(s.segments, segment{stage: Genetic, end: end - walks, id: k}, segment{stage: Simplex, end: end, id: k})
 	}
 	if c.Dear {
@@ -142,27 +133,12 @@ func (s *Search) decide() {
 	}
 }
 
-// learn gives what the views and the genetic searcher would have to the
-// learned one.
+// learn gives what the genetic searcher would have to the learned one.
 func (s *Search) learn() {
-	s.segments = slices.DeleteFunc(s.segments, func(g segment) bool { return g.stage == Simpler })
 	for i := range s.segments {
 		if s.segments[i].stage == Genetic {
 			s.segments[i].stage = Learned
 		}
-	}
-}
-
-// wholePart is the genetic searcher's part in the whole space, counted in
-// parts of one view.
-const wholePart = 2
-
-// simpler adds a stage for each view between two counts.
-func (s *Search) simpler(from, to int) {
-	views := len(s.domain.Views)
-	for v := range views {
-		end := from + (to-from)*(v+1)/(views+wholePart)
-		s.segments = append(s.segments, segment{stage: Simpler, end: end, view: v})
 	}
 }
 
@@ -208,9 +184,6 @@ func (s *Search) open() bool {
 		case Sample:
 			seeds := s.c.Seeds[:min(len(s.c.Seeds), (n+1)/2)]
 			s.stage = newSample(s.domain, s.c.Seed, n, s.c.Start, seeds)
-		case Simpler:
-			s.viewed = newView(s.domain, g.view, s.viewed, genetic.Config{Population: s.population(n), Evaluations: n, Seed: s.c.Seed})
-			s.stage = s.viewed
 		case Genetic:
 			if s.c.Genetic > 0 {
 				s.stage = genetic.New(s.domain, genetic.Config{Population: s.population(n), Evaluations: n, Seed: s.c.Seed + uint64(g.id)}, s.told)
@@ -225,7 +198,7 @@ func (s *Search) open() bool {
 			}
 		}
 		if s.stage != nil {
-			if s.domain.Finest > 0 && (g.stage == Simpler || g.stage == Genetic) {
+			if s.domain.Finest > 0 && g.stage == Genetic {
 				s.stage = newLadder(s.stage, s.domain, n, s.c.Seed+uint64(s.at))
 			}
 			return true
