@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"time"
 )
 
 // Outputs says which answers a question asks for, as a set of bits.
@@ -73,6 +74,9 @@ type Response struct {
 	Statement string `json:"-"`
 	// Warnings name every way in which the design leaves the model's range.
 	Warnings []string `json:"warnings,omitempty"`
+	// Took is how long the model took, where the answer was long on its way
+	// for other reasons; 0: as long as the answer. With an error too.
+	Took time.Duration `json:"-"`
 }
 
 // Circular holds one quantity for each sense of circular polarisation.

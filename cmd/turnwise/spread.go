@@ -86,8 +86,23 @@ func (d spread) open(ctx context.Context, s streams) (*outpost, error) {
 		far.close()
 		return nil, failed(err)
 	}
-	fmt.Fprintf(s.err, "workers are waited for: turnwise worker --queue %s\n", far.server.URL())
+	fmt.Fprintf(s.err, "workers are waited for: turnwise worker --queue %s%s\n", far.server.URL(), d.needs())
 	return far, nil
+}
+
+// needs are the options that a worker has to give besides.
+func (d spread) needs() string {
+	text := ""
+	if d.access.TokenFile != "" {
+		text += " --token-file FILE"
+	}
+	if d.access.Cert != "" {
+		text += " --tls-ca FILE"
+	}
+	if d.access.CA != "" {
+		text += " --tls-cert FILE --tls-key FILE"
+	}
+	return text
 }
 
 // refused is a queue that does not serve; one that a signal kept from coming

@@ -11,6 +11,7 @@ import (
 	"io"
 	"math"
 	"slices"
+	"time"
 
 	"turnwise/models"
 )
@@ -87,6 +88,7 @@ type answer struct {
 	Statement string           `json:"statement,omitempty"`
 	Error     string           `json:"error,omitempty"`
 	TimedOut  bool             `json:"timed_out,omitempty"`
+	Took      time.Duration    `json:"took_ns"`
 }
 
 // refusal is an error of the model on the other side, in its own words.
@@ -140,6 +142,8 @@ func readAnswer(text []byte, identity string, q models.Question) (answer, error)
 		return a, fmt.Errorf("comes from the model %q", clip(a.Identity, mostName))
 	case (a.Response == nil) == (a.Error == ""):
 		return a, errors.New("is neither a response nor an error")
+	case a.Took < 0:
+		return a, errors.New("was there before it was asked")
 	case a.Error != "":
 		return a, nil
 	}

@@ -51,8 +51,8 @@ func (s *Simulator) Simulate(ctx context.Context, d models.Design, q models.Ques
 		return models.Response{}, err
 	}
 	if a.Error != "" {
-		return models.Response{}, &refusal{a.Error, a.TimedOut}
+		return models.Response{Took: a.Took}, &refusal{a.Error, a.TimedOut}
 	}
-	a.Response.Statement = a.Statement
+	a.Response.Statement, a.Response.Took = a.Statement, a.Took
 	return *a.Response, nil
 }

@@ -241,12 +241,16 @@ func (s *shift) serve(ctx context.Context, m *nats.Msg, lease time.Duration, mod
 		return m.Term()
 	}
 	renew := hold(m, lease)
+	began := time.Now()
 	r, err := s.simulate(ctx, m, q, model)
+	took := time.Since(began)
 	renew()
 	if ctx.Err() != nil {
 		return m.Nak()
 	}
-	if err := s.nc.Publish(answerPrefix+key, newAnswer(q.Identity, s.id, r, err).bytes()); err != nil {
+	a := newAnswer(q.Identity, s.id, r, err)
+	a.Took = took
+	if err := s.nc.Publish(answerPrefix+key, a.bytes()); err != nil {
 		return m.Nak()
 	}
 	return m.Ack()
