@@ -7,9 +7,9 @@ import (
 )
 
 // Bars compares shares of two wholes, group by group: what was spent and
-// what came of it.
+// what came of it. A whole without a name is left out.
 type Bars struct {
-	Names  [2]string // of the two wholes
+	Names  [2]string
 	Groups []Group
 }
 
@@ -22,12 +22,31 @@ type Group struct {
 
 const (
 	groupHeight = 44.0
+	soleHeight  = 26.0 // of a group where there is one whole
 	barHeight   = 12.0
 )
 
+// sole reports whether there is one whole only.
+func (g *Bars) sole() bool { return g.Names[0] == "" || g.Names[1] == "" }
+
+func (g *Bars) height() float64 {
+	if g.sole() {
+		return soleHeight
+	}
+	return groupHeight
+}
+
+// barAt is the foot of a whole's bar in a group around y.
+func (g *Bars) barAt(k int, y float64) float64 {
+	if g.sole() {
+		return y - barHeight/2
+	}
+	return y + float64(1-k)*(barHeight+2) - barHeight - 1
+}
+
 // Size implements Figure.
 func (g *Bars) Size() (w, h float64) {
-	return Small, 2*edge + rowHeight*2 + 24 + groupHeight*float64(len(g.Groups))
+	return Small, 2*edge + rowHeight*2 + 24 + g.height()*float64(len(g.Groups))
 }
 
 // Draw implements Figure.
@@ -40,7 +59,7 @@ func (g *Bars) Draw(c vg.Canvas) {
 		texts = math.Max(texts, math.Max(textWidth(r.Texts[0], tickSize), textWidth(r.Texts[1], tickSize)))
 	}
 	x0, bottom := edge+names+8, edge+2*rowHeight
-	top := bottom + groupHeight*float64(len(g.Groups))
+	top := bottom + g.height()*float64(len(g.Groups))
 	most := 0.0
 	for _, r := range g.Groups {
 		most = math.Max(most, math.Max(r.Shares[0], r.Shares[1]))
@@ -54,11 +73,15 @@ func (g *Bars) Draw(c vg.Canvas) {
 		b.text(tickText(t, decimals), at{x(t / 100), bottom - tickRoom - tickSize*0.75}, tickSize, centre, quiet)
 	}
 	for i, r := range g.Groups {
-		y := top - groupHeight*(float64(i)+0.5)
+		y := top - g.height()*(float64(i)+0.5)
 		b.text(r.Name, at{edge, y - textSize*0.35}, textSize, left, ink)
 		for k := range r.Shares {
-			g.bar(b, k, x0, x(r.Shares[k]), y+float64(1-k)*(barHeight+2)-barHeight-1)
-			b.text(r.Texts[k], at{x(r.Shares[k]) + 5, y + float64(1-k)*(barHeight+2) - barHeight - 1 + barHeight/2 - tickSize*0.35}, tickSize, left, quiet)
+			if g.Names[k] == "" {
+				continue
+			}
+			foot := g.barAt(k, y)
+			g.bar(b, k, x0, x(r.Shares[k]), foot)
+			b.text(r.Texts[k], at{x(r.Shares[k]) + 5, foot + barHeight/2 - tickSize*0.35}, tickSize, left, quiet)
 		}
 	}
 	b.stroke(hairline, rule, nil)
@@ -83,6 +106,9 @@ func (g *Bars) bar(b brush, k int, from, to, y float64) {
 func (g *Bars) key(b brush, p at) {
 	x := p.x
 	for k, name := range g.Names {
+		if name == "" {
+			continue
+		}
 		g.bar(b, k, x, x+14, p.y-2)
 		b.text(name, at{x + 19, p.y}, tickSize, left, ink)
 		x += 19 + textWidth(name, tickSize) + entryRoom

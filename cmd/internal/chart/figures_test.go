@@ -96,6 +96,8 @@ func figures() map[string]Figure {
 		"polar, whole":         &Polar{Cuts: []Cut{whole}, Floor: -30, Rim: "rim: 13.42 dBic, at 1.68 GHz", Sides: sides},
 		"bars": &Bars{Names: [2]string{"of the evaluations", "of the front"}, Groups: []Group{
 			{"start", [2]float64{0.01, 0}, [2]string{"100", "0"}}, {"genetic", [2]float64{0.7, 1}, [2]string{"7000", "200"}}}},
+		"bars, one whole": &Bars{Names: [2]string{1: "of the variance of axial ratio in the cone"}, Groups: []Group{
+			{"diameter", [2]float64{0, 0.99}, [2]string{"", "99 %"}}, {"lead spacing", [2]float64{0, 0.01}, [2]string{"", "1 %"}}}},
 		"dots": &Dots{Label: "directivity at mid-band, dBi", Mark: 13.4, MarkName: "full-wave: 13.40 dBi", Rows: []Dot{
 			{"Kraus 1949", 14.8, "+1.40 dB"}, {"Kraus later", 13.8, "+0.40 dB"}, {"King & Wong 1980", 13.2, "−0.20 dB"}}},
 		"side": SideView{long, Wide}, "side, small": SideView{long, Small}, "side, short": SideView{short, Wide},
