@@ -42,6 +42,7 @@ const (
 
 func reportCommand(s streams) *cobra.Command {
 	var charts string
+	var copies int
 	c := &cobra.Command{
 		Use:   "report RUN",
 		Short: "Writes a run's report, one self-contained HTML file",
@@ -50,20 +51,28 @@ went, the front as a picture and a table, and for up to twelve designs along it
 a sheet with drawing, charts, hand formulas and warnings. The file needs no
 network and no scripts, and can be printed.
 
+--tolerance N also makes N copies of each chosen design, of the knee where none
+is chosen, as turnwise tolerance does by default, and tells on its sheet what
+workshop errors do.
+
 --charts also writes every chart as PNG and SVG, and each sheet's sweep as CSV,
 into a folder of your own.`,
 		Args: arguments(cobra.ExactArgs(1)),
 		RunE: func(c *cobra.Command, args []string) error {
-			return reportRun(c.Context(), s, args[0], charts)
+			return reportRun(c.Context(), s, args[0], charts, copies)
 		},
 	}
+	c.Flags().IntVar(&copies, "tolerance", 0, "number of copies for a section on workshop errors; 0 for none")
 	c.Flags().StringVar(&charts, "charts", "", "also write the charts and sweeps into this folder")
 	return c
 }
 
-// reportRun writes the report of a run, and its charts where they are asked
-// for.
-func reportRun(ctx context.Context, s streams, run, charts string) error {
+// reportRun writes the report of a run, and its charts and a study of so many
+// copies where they are asked for.
+func reportRun(ctx context.Context, s streams, run, charts string, copies int) error {
+	if copies < 0 || copies > mostCopies {
+		return wrong(fmt.Errorf("--tolerance %d: give 0 to %d", copies, mostCopies))
+	}
 	f, err := folder.Open(run)
 	if err != nil {
 		return wrong(err)
@@ -83,6 +92,11 @@ func reportRun(ctx context.Context, s streams, run, charts string) error {
 	r, err := gather(ctx, s, f, b, p)
 	if err != nil {
 		return err
+	}
+	if copies > 0 {
+		if err := studySheets(ctx, s, r, copies); err != nil {
+			return err
+		}
 	}
 	if err := writeReport(f, r); err != nil {
 		return failed(err)

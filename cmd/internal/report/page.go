@@ -67,6 +67,10 @@ type Sheet struct {
 	Laws [][3]float64
 	// Err says why there is no simulation.
 	Err string
+	// Tolerance is a study of copies, nil where none was asked for or, as
+	// ToleranceErr says, none could be made.
+	Tolerance    *Tolerance
+	ToleranceErr string
 }
 
 var (

@@ -47,7 +47,7 @@ func (r *Run) Charts() []Chart {
 
 // sheetCharts are the figures of one design.
 func (r *Run) sheetCharts(s *Sheet) []Chart {
-	charts := s.drawings()
+	charts := append(s.drawings(), s.toleranceChart()...)
 	if s.Simulation == nil {
 		return charts
 	}

@@ -25,6 +25,7 @@ type sheetView struct {
 	Warnings         []string
 	Statement        string
 	Indicative       bool
+	Tolerance        *toleranceView
 	Err              string
 	File             string // the design file's text
 	Previous, Next   string
@@ -43,7 +44,7 @@ func (r *Run) sheetView(i int) sheetView {
 	d.Title = titleOr(r.Brief.Spec.Title, m.ID)
 	v := sheetView{
 		ID: m.ID, Number: i + 1, Of: len(r.Sheets), Roles: strings.Join(r.roles(m.ID), ", "), Figures: r.figureRows(s), Dimensions: dimensions(s),
-		Err: s.Err, File: string(configs.WriteDesign(d)),
+		Err: s.Err, Tolerance: s.toleranceView(), File: string(configs.WriteDesign(d)),
 	}
 	v.Short = r.short(s)
 	if i > 0 {
@@ -58,6 +59,8 @@ func (r *Run) sheetView(i int) sheetView {
 			v.Side = &figure
 		case feedName:
 			v.Feed = &figure
+		case toleranceName:
+			v.Tolerance.Chart = &figure
 		default:
 			v.Charts = append(v.Charts, figure)
 		}
