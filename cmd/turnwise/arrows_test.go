@@ -42,6 +42,9 @@ var confined = map[string][]string{
 	"modernc.org/sqlite":                {"optimize/journal"},
 	"github.com/schollz/progressbar/v3": {"cmd"},
 	"github.com/nats-io":                {"models/remote"},
+	"gonum.org/v1/plot":                 {"cmd"},
+	"codeberg.org/go-pdf/fpdf":          {"cmd/internal/workshop"},
+	"codeberg.org/go-fonts":             {"cmd/internal"},
 }
 
 type listed struct {
