@@ -1,7 +1,9 @@
 package main
 
 import (
+	"context"
 	"errors"
+	"math"
 	"net"
 	"os"
 	"os/exec"
@@ -11,7 +13,10 @@ import (
 
 	"github.com/rogpeppe/go-internal/testscript"
 
+	"turnwise/configs"
+	"turnwise/models"
 	"turnwise/models/external"
+	"turnwise/models/moment"
 )
 
 func TestMain(m *testing.M) {
@@ -29,6 +34,7 @@ func TestScripts(t *testing.T) {
 			"rows":   rows,
 			"shared": shared,
 			"until":  until,
+			"purely": purely,
 		},
 		Condition: func(cond string) (bool, error) {
 			if cond == "root" {
@@ -116,4 +122,26 @@ func until(ts *testscript.TestScript, neg bool, args []string) {
 		time.Sleep(10 * time.Millisecond)
 	}
 	ts.Fatalf("%s does not come", args[0])
+}
+
+// purely DESIGN SENSE DB simulates a design: on the axis its gain in the sense
+// must exceed that in the other by so many decibels.
+func purely(ts *testscript.TestScript, neg bool, args []string) {
+	d, err := configs.ReadDesign(ts.MkAbs(args[0]))
+	ts.Check(err)
+	least, err := strconv.ParseFloat(args[2], 64)
+	ts.Check(err)
+	solver, err := moment.New(moment.Draft)
+	ts.Check(err)
+	r, err := solver.Simulate(context.Background(), d, models.Question{Hz: d.Band.Hz()})
+	ts.Check(err)
+	for _, s := range r.Samples {
+		ratio := s.Gain.Right / s.Gain.Left
+		if args[1] == "left" {
+			ratio = 1 / ratio
+		}
+		if db := 10 * math.Log10(ratio); db < least {
+			ts.Fatalf("%s exceeds the other sense by %.1f dB at %g Hz, %g dB are due", args[1], db, s.Hz, least)
+		}
+	}
 }
