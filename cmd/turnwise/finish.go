@@ -10,7 +10,7 @@ import (
 	"turnwise/optimize/journal"
 )
 
-// stop records why this session ended.
+// stop records why the search ended.
 func (ses *session) stop(r optimize.Result, took time.Duration, finished bool) error {
 	err := ses.book.Decide(journal.Stop, stopDetail{string(r.Reason), len(r.Evaluations), took.Seconds()})
 	if err == nil && finished {

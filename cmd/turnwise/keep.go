@@ -30,7 +30,7 @@ func (ses *session) reuse(dirs []string) error {
 }
 
 // Recall finds an answer in the journal, or in those of other runs; the
-// problem's memory. A new run's journal holds what this session kept.
+// problem's memory. A new run's journal holds what was kept since it began.
 func (ses *session) Recall(key string) ([]byte, bool) {
 	if _, kept := ses.kept.Load(key); !kept && !ses.asks {
 		return nil, false

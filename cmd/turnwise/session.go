@@ -33,8 +33,8 @@ type session struct {
 	lock    *journal.Held
 	book    *journal.Writer
 	others  []*journal.Reader // runs whose answers may be reused
-	asks    bool              // of the journal, whatever was kept in this session
-	kept    sync.Map          // keys of the questions answered in this session
+	asks    bool              // of the journal, whatever was kept since the start
+	kept    sync.Map          // keys of the questions answered since the start
 	planned []int             // of the run, then of each extension
 	past    []optimize.Evaluation
 	used    time.Duration // by earlier sessions
@@ -59,7 +59,7 @@ type extensionDetail struct {
 type stopDetail struct {
 	Reason      string  `json:"reason"`
 	Evaluations int     `json:"evaluations"`
-	Seconds     float64 `json:"seconds"` // that this session took
+	Seconds     float64 `json:"seconds"` // that it took
 }
 
 func sum(ns []int) int {
