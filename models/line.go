@@ -75,3 +75,27 @@ func WireOverPlane(a, h float64) float64 {
 	}
 	return 60 * math.Acosh(h/a)
 }
+
+// WireRadiusOverPlane is the equivalent radius, m, of a round wire of radius
+// a (m) whose axis runs h (m) above a plane: 2a/(1 + √(1 − a²/h²)), whose line
+// over the plane has by ln(2h/a_eq) what [WireOverPlane] has by acosh(h/a).
+func WireRadiusOverPlane(a, h float64) float64 {
+	return 2 * a / (1 + math.Sqrt(max(0, 1-a*a/(h*h))))
+}
+
+// StripOverPlane is the characteristic impedance, ohms, of a thin strip of a
+// width whose middle runs h (m) above a plane: the air microstrip of
+// Hammerstad, 1975 (memory).
+func StripOverPlane(width, h float64) float64 {
+	if width <= h {
+		return 60 * math.Log(8*h/width+width/(4*h))
+	}
+	u := width / h
+	return 120 * math.Pi / (u + 1.393 + 0.667*math.Log(u+1.444))
+}
+
+// StripRadiusOverPlane is the equivalent radius, m, of that strip,
+// 2h·exp(−Z/60 Ω), which tends to a quarter of the width far from the plane.
+func StripRadiusOverPlane(width, h float64) float64 {
+	return 2 * h * math.Exp(-StripOverPlane(width, h)/60)
+}

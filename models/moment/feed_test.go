@@ -147,15 +147,15 @@ func TestEquivalentRadiusOfAStrip(t *testing.T) {
 		t.Errorf("far from the plane the strip has a radius of %g m; %g is due", a, width/4)
 	}
 	near := feedWorker(t, 1e-3, 2e-3, width).stripRadius(0)
-	if got, want := 60*math.Log(2*2e-3/near), stripOverPlane(width, 2e-3); math.Abs(got/want-1) > 1e-12 {
+	if got, want := 60*math.Log(2*2e-3/near), models.StripOverPlane(width, 2e-3); math.Abs(got/want-1) > 1e-12 {
 		t.Errorf("over the plane the strip's line has %g Ω; %g is due", got, want)
 	}
-	below, above := stripOverPlane(1, 1), stripOverPlane(1+1e-12, 1)
+	below, above := models.StripOverPlane(1, 1), models.StripOverPlane(1+1e-12, 1)
 	if math.Abs(below-60*math.Log(8.25)) > 1e-9 || math.Abs(above/below-1) > 0.005 {
 		t.Errorf("w = h: %g and %g Ω", below, above)
 	}
-	if plates := eta / 1000; math.Abs(stripOverPlane(1000, 1)/plates-1) > 0.01 {
-		t.Errorf("w = 1000 h: %g Ω; about %g is due", stripOverPlane(1000, 1), plates)
+	if plates := eta / 1000; math.Abs(models.StripOverPlane(1000, 1)/plates-1) > 0.01 {
+		t.Errorf("w = 1000 h: %g Ω; about %g is due", models.StripOverPlane(1000, 1), plates)
 	}
 }
 

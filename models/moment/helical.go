@@ -120,31 +120,14 @@ func (w *winding) At(t float64) (at, derivative r3.Vec) {
 	return p.Pos, r3.Scale(p.Speed, p.Tangent)
 }
 
-// roundRadius is the equivalent radius of the round wire over the plane:
-// a_eff = 2a/(1 + √(1 − a²/h²)), whose line over the plane at the same height
-// has by ln(2h/a_eff) what the true one has by acosh(h/a).
+// roundRadius and stripRadius are the conductor's equivalent radii over the
+// plane.
 func (w *worker) roundRadius(t float64) float64 {
-	a, h := w.design.Conductor.Diameter/2, w.curve.Height(t)
-	return 2 * a / (1 + math.Sqrt(max(0, 1-a*a/(h*h))))
+	return models.WireRadiusOverPlane(w.design.Conductor.Diameter/2, w.curve.Height(t))
 }
 
-// stripRadius is the equivalent radius of the strip over the plane:
-// 2h·exp(−Z_s/60 Ω), with the characteristic impedance of an air microstrip
-// (Hammerstad 1975, from memory), which tends to a quarter of the width far
-// from the plane.
 func (w *worker) stripRadius(t float64) float64 {
-	width, h := w.design.Feed.Strip.Width, w.curve.Height(t)
-	return 2 * h * math.Exp(-stripOverPlane(width, h)/60)
-}
-
-// stripOverPlane is the characteristic impedance, Ω, of a thin strip of a
-// width at a height over the plane, m.
-func stripOverPlane(width, height float64) float64 {
-	if width <= height {
-		return 60 * math.Log(8*height/width+width/(4*height))
-	}
-	u := width / height
-	return 120 * math.Pi / (u + 1.393 + 0.667*math.Log(u+1.444))
+	return models.StripRadiusOverPlane(w.design.Feed.Strip.Width, w.curve.Height(t))
 }
 
 func (w *worker) roundLoss(hz float64) complex128 {

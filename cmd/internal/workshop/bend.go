@@ -66,13 +66,13 @@ func (b bend) port(ctx context.Context, f moment.Fidelity, d *models.Design, hz 
 		from = min(s.Turns, d.Turns)
 		antenna.Wires = append(antenna.Wires, moment.Wire{
 			Curve: b, To: from, Loss: loss(s.Width / math.Pi),
-			RadiusAt: func(t float64) float64 { return stripRadius(s.Width, b.height(t)) },
+			RadiusAt: func(t float64) float64 { return models.StripRadiusOverPlane(s.Width, b.height(t)) },
 		})
 	}
 	if from < d.Turns {
 		antenna.Wires = append(antenna.Wires, moment.Wire{
 			Curve: b, From: from, To: d.Turns, Loss: loss(a), Coat: coat,
-			RadiusAt: func(t float64) float64 { return wireRadius(a, b.height(t)) },
+			RadiusAt: func(t float64) float64 { return models.WireRadiusOverPlane(a, b.height(t)) },
 		})
 	}
 	var z complex128
@@ -81,22 +81,4 @@ func (b bend) port(ctx context.Context, f moment.Fidelity, d *models.Design, hz 
 		return nil
 	})
 	return z, err
-}
-
-// wireRadius is the equivalent radius of a round wire of radius a at a height
-// over the plane, m: the radius whose line by ln(2h/a) is the true one's by
-// acosh(h/a).
-func wireRadius(a, height float64) float64 {
-	return 2 * a / (1 + math.Sqrt(max(0, 1-a*a/(height*height))))
-}
-
-// stripRadius is the equivalent radius of a flat strip at a height over the
-// plane, m, from the characteristic impedance of an air microstrip
-// (Hammerstad 1975, from memory).
-func stripRadius(width, height float64) float64 {
-	z := 60 * math.Log(8*height/width+width/(4*height))
-	if u := width / height; u > 1 {
-		z = 120 * math.Pi / (u + 1.393 + 0.667*math.Log(u+1.444))
-	}
-	return 2 * height * math.Exp(-z/60)
 }
