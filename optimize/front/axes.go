@@ -25,20 +25,27 @@ func Span(points [][]float64) Axes {
 // and otherwise as far from it as it is.
 func (a *Axes) Unit(aims []float64) []float64 {
 	u := make([]float64, len(aims))
+	a.scale(u, aims)
+	return u
+}
+
+func (a *Axes) scale(u, aims []float64) {
 	for m, x := range aims {
 		u[m] = x - a.Ideal[m]
 		if w := a.Nadir[m] - a.Ideal[m]; w > 0 {
 			u[m] /= w
 		}
 	}
-	return u
 }
 
 // Units scales many points.
 func (a *Axes) Units(points [][]float64) [][]float64 {
 	out := make([][]float64, len(points))
+	n := len(a.Ideal)
+	all := make([]float64, n*len(points))
 	for i, p := range points {
-		out[i] = a.Unit(p)
+		out[i] = all[i*n : (i+1)*n : (i+1)*n]
+		a.scale(out[i], p)
 	}
 	return out
 }

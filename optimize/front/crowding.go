@@ -1,6 +1,7 @@
 package front
 
 import (
+	"cmp"
 	"math"
 	"slices"
 )
@@ -16,31 +17,35 @@ func Crowding(values []Value, members []int) []float64 {
 	if len(members) == 0 {
 		return room
 	}
-	order := make([]int, len(members))
+	order, aim := make([]int, len(members)), make([]float64, len(members))
+	for k := range order {
+		order[k] = k
+	}
 	flat := true
 	for m := range values[members[0]].Aims {
-		aim := func(k int) float64 { return values[members[k]].Aims[m] }
-		for k := range order {
-			order[k] = k
+		for k, i := range members {
+			aim[k] = values[i].Aims[m]
 		}
-		slices.SortStableFunc(order, func(a, b int) int {
-			switch x, y := aim(a), aim(b); {
+		// From the order of the aim before: in the plane that is the reverse,
+		// which is sorted at once.
+		slices.SortFunc(order, func(a, b int) int {
+			switch x, y := aim[a], aim[b]; {
 			case x < y:
 				return -1
 			case x > y:
 				return 1
 			}
-			return 0
+			return cmp.Compare(a, b)
 		})
 		first, last := order[0], order[len(order)-1]
-		width := aim(last) - aim(first)
+		width := aim[last] - aim[first]
 		if !(width > 0) {
 			continue
 		}
 		flat = false
 		room[first], room[last] = math.Inf(1), math.Inf(1)
 		for k := 1; k < len(order)-1; k++ {
-			room[order[k]] += (aim(order[k+1]) - aim(order[k-1])) / width
+			room[order[k]] += (aim[order[k+1]] - aim[order[k-1]]) / width
 		}
 	}
 	if flat {

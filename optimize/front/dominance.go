@@ -104,10 +104,20 @@ func covered(values []Value, members []int, i int) bool {
 // sortByAims orders indices so that no value comes after one it dominates:
 // by the first aim, then the second and so on, then by index.
 func sortByAims(values []Value, order []int) {
-	slices.SortFunc(order, func(i, j int) int {
-		if c := slices.Compare(values[i].Aims, values[j].Aims); c != 0 {
-			return c
-		}
-		return cmp.Compare(i, j)
-	})
+	slices.SortFunc(order, func(i, j int) int { return compare(values[i].Aims, values[j].Aims, i, j) })
+}
+
+// compare orders two points, and of equals their indices. The first aim
+// nearly always decides.
+func compare(p, q []float64, i, j int) int {
+	switch {
+	case p[0] < q[0]:
+		return -1
+	case p[0] > q[0]:
+		return 1
+	}
+	if c := slices.Compare(p, q); c != 0 {
+		return c
+	}
+	return cmp.Compare(i, j)
 }

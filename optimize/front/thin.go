@@ -1,7 +1,6 @@
 package front
 
 import (
-	"cmp"
 	"container/heap"
 	"slices"
 )
@@ -132,12 +131,7 @@ func (t *thinner) chain() (before, after []int) {
 	for i := range order {
 		order[i], before[i], after[i] = i, alone, alone
 	}
-	slices.SortFunc(order, func(i, j int) int {
-		if c := slices.Compare(t.points[i], t.points[j]); c != 0 {
-			return c
-		}
-		return cmp.Compare(i, j)
-	})
+	slices.SortFunc(order, func(i, j int) int { return compare(t.points[i], t.points[j], i, j) })
 	last := end
 	for _, i := range order {
 		if !below(t.points[i], t.ref) || last != end && t.points[last][1] <= t.points[i][1] {

@@ -25,7 +25,7 @@ func (m survival) Apply(pop *eaopt.Population) error {
 	for i := range pop.Individuals {
 		values[i] = pop.Individuals[i].Genome.(*genome).value
 	}
-	kept := make(eaopt.Individuals, 0, m.size)
+	kept := make(eaopt.Individuals, 0, 2*m.size) // and its offspring
 	for rank, layer := range front.Layers(values) {
 		if len(kept) == m.size {
 			break

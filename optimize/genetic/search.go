@@ -29,6 +29,9 @@ const rivals = 8
 // passes before the search gives up.
 const mostRejections = 1000
 
+// foreseen is the most points that room is made for at the start.
+const foreseen = 1 << 16
+
 // Search is the genetic searcher.
 type Search struct {
 	domain optimize.Domain
@@ -51,7 +54,7 @@ func New(d optimize.Domain, c Config, start []optimize.Evaluation) *Search {
 	if c.Population <= 0 {
 		c.Population = 100
 	}
-	s := &Search{domain: d, c: c, model: survival{size: c.Population}, seen: map[uint64]bool{}}
+	s := &Search{domain: d, c: c, model: survival{size: c.Population}, seen: make(map[uint64]bool, min(max(c.Evaluations, 0), foreseen)+len(start))}
 	for i := range d.Space {
 		if d.Space[i].From < d.Space[i].To {
 			s.free = append(s.free, i)
@@ -141,7 +144,7 @@ func (s *Search) family() [2]eaopt.Individual {
 		g := pair[k].Genome.(*genome)
 		g.how, g.a, g.b = how, s.member().point, s.member().point
 		pair[k].Mutate(rng)
-		g.point = s.domain.Space.Canonical(g.point)
+		s.domain.Space.Snap(g.point)
 	}
 	return pair
 }
@@ -172,7 +175,6 @@ func (s *Search) Tell(batch []optimize.Evaluation) {
 	}
 	s.pop.Individuals = append(s.pop.Individuals, s.asked[:len(batch)]...)
 	s.apply()
-	s.asked = nil
 }
 
 // Explain says why the search is done.

@@ -5,6 +5,7 @@ package space
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strconv"
 	"strings"
 )
@@ -92,6 +93,9 @@ func (v *Variable) Snap(x float64) float64 {
 
 // tidy takes away the last bits that repeated steps leave behind.
 func tidy(x float64) float64 {
+	if x == math.Trunc(x) && math.Abs(x) < 1e12 {
+		return x
+	}
 	t, err := strconv.ParseFloat(strconv.FormatFloat(x, 'g', 12, 64), 64)
 	if err != nil {
 		return x
@@ -105,11 +109,16 @@ func (s Space) Canonical(p Point) Point {
 	if len(p) != len(s) {
 		panic("space: point and space differ in length")
 	}
-	q := make(Point, len(p))
-	for i := range s {
-		q[i] = s[i].Snap(p[i])
-	}
+	q := slices.Clone(p)
+	s.Snap(q)
 	return q
+}
+
+// Snap makes a point canonical in place.
+func (s Space) Snap(p Point) {
+	for i := range s {
+		p[i] = s[i].Snap(p[i])
+	}
 }
 
 // Unit scales a point to the unit cube: 0 at From, 1 at To. An axis of no
@@ -137,7 +146,8 @@ func (s Space) FromUnit(u []float64) Point {
 			p[i] = v.From + u[i]*(v.To-v.From)
 		}
 	}
-	return s.Canonical(p)
+	s.Snap(p)
+	return p
 }
 
 // Key is a text that two canonical points share only if they are the same.
