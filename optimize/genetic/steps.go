@@ -24,7 +24,7 @@ func cross(a, b, low, high float64, rng *rand.Rand) (float64, float64) {
 	return min(max(mid-spread, low), high), min(max(mid+spread, low), high)
 }
 
-// power is math.Pow, bit for bit, for 0 ≤ x ≤ 1 and 0 < y ≤ 1/2 at half the
+// power is math.Pow, bit for bit, for 0 ≤ x ≤ 1 and 0 < y < 1/2 at half the
 // time.
 func power(x, y float64) float64 { return math.Exp(y * math.Log(x)) }
 
