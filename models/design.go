@@ -99,6 +99,10 @@ type Feed struct {
 	Transformer Transformer
 }
 
+// Opening is the outer over the inner diameter of the coaxial opening at the
+// riser's foot: an air line of 50 Ω.
+const Opening = 2.3
+
 // PinDiameter is the riser's diameter, m.
 func (d *Design) PinDiameter() float64 {
 	if d.Feed.Pin > 0 {
@@ -145,23 +149,6 @@ type Transformer struct {
 	Impedance float64 // Ω
 	Length    float64 // m
 	Velocity  float64 // relative to light; 0 is read as 1
-}
-
-// GroundKind is the shape of the ground.
-type GroundKind string
-
-// The grounds a design may stand on.
-const (
-	Infinite GroundKind = "infinite"
-	Disc     GroundKind = "disc"
-	Cup      GroundKind = "cup"
-)
-
-// Ground is the conductor the antenna stands on. The empty kind is Infinite.
-type Ground struct {
-	Kind     GroundKind
-	Diameter float64 // m, disc and cup
-	Rim      float64 // m, cup
 }
 
 // Band is a range of frequencies in equal steps. The zero Band is none.
@@ -232,6 +219,10 @@ func (d *Design) Canonical() string {
 	default:
 		num("infinite")
 	}
+	if g := d.Ground; g.Finite() && !g.ordinary() {
+		m := g.Metal()
+		num("sheet", g.SheetThickness(), m.Conductivity, m.Density, orOne(m.Permeability))
+	}
 	return b.String()
 }
 
@@ -243,6 +234,18 @@ func (d *Design) Hash() string {
 
 // ID is the first ten digits of the hash.
 func (d *Design) ID() string { return d.Hash()[:10] }
+
+// Nameless is the design with what makes its hash and no more, so that equal
+// hashes are equal questions.
+func (d Design) Nameless() Design {
+	d.Title, d.Band, d.Sense, d.FeedsReflector = "", Band{}, 0, false
+	d.Conductor.Stock, d.Conductor.Material.Name = "", ""
+	if d.Ground.Finite() {
+		d.Ground.Thickness, d.Ground.Material = d.Ground.SheetThickness(), d.Ground.Metal()
+		d.Ground.Material.Name = ""
+	}
+	return d
+}
 
 func b2f(b bool) float64 {
 	if b {

@@ -26,9 +26,13 @@ type designText struct {
 }
 
 type conductorText struct {
-	Stock        string  `json:"stock,omitempty"`
-	Diameter     float64 `json:"diameter_m"`
-	Wall         float64 `json:"wall_m,omitempty"`
+	Stock    string  `json:"stock,omitempty"`
+	Diameter float64 `json:"diameter_m"`
+	Wall     float64 `json:"wall_m,omitempty"`
+	materialText
+}
+
+type materialText struct {
 	Material     string  `json:"material,omitempty"`
 	Conductivity float64 `json:"conductivity_s_per_m"`
 	Density      float64 `json:"density_kg_per_m3"`
@@ -67,9 +71,11 @@ type transformerText struct {
 }
 
 type groundText struct {
-	Kind     GroundKind `json:"kind"`
-	Diameter *float64   `json:"diameter_m,omitempty"`
-	Rim      *float64   `json:"rim_m,omitempty"`
+	Kind      GroundKind `json:"kind"`
+	Diameter  *float64   `json:"diameter_m,omitempty"`
+	Rim       *float64   `json:"rim_m,omitempty"`
+	Thickness float64    `json:"thickness_m,omitempty"`
+	*materialText
 }
 
 type bandText struct {
@@ -81,13 +87,12 @@ type bandText struct {
 // MarshalJSON writes the design as one object: a design file's keys with
 // their SI units in the names, laws always lists. What a design leaves to its
 // defaults is written out (the pin's diameter, the permeability, a lead's
-// shape, a line's velocity, the kind of ground), so that a reader needs to
+// shape, a line's velocity, the kind of ground and its sheet), so that a reader needs to
 // know none; the text reads back to a design with the same hash.
 func (d Design) MarshalJSON() ([]byte, error) {
 	if d.Handedness != Right && d.Handedness != Left {
 		return nil, errors.New("a design without handedness cannot be written; it should be right or left")
 	}
-	m := d.Conductor.Material
 	t := designText{
 		Title:      d.Title,
 		Turns:      d.Turns,
@@ -95,11 +100,10 @@ func (d Design) MarshalJSON() ([]byte, error) {
 		Spacing:    d.Spacing,
 		Handedness: d.Handedness.String(),
 		Conductor: conductorText{
-			Stock: d.Conductor.Stock, Diameter: d.Conductor.Diameter, Wall: d.Conductor.Wall, Material: m.Name,
-			Conductivity: m.Conductivity, Density: m.Density, Permeability: orOne(m.Permeability),
+			Stock: d.Conductor.Stock, Diameter: d.Conductor.Diameter, Wall: d.Conductor.Wall, materialText: textOf(d.Conductor.Material),
 		},
 		Feed:           feedText{Height: d.Feed.Height, Pin: d.PinDiameter(), Impedance: d.Feed.Impedance},
-		Ground:         groundText{Kind: Infinite},
+		Ground:         textOfGround(d.Ground),
 		Sense:          d.Sense.String(),
 		FeedsReflector: d.FeedsReflector,
 	}
@@ -118,16 +122,26 @@ func (d Design) MarshalJSON() ([]byte, error) {
 	if s := d.Feed.Transformer; s.Impedance > 0 {
 		t.Feed.Transformer = &transformerText{s.Impedance, s.Length, orOne(s.Velocity)}
 	}
-	switch g := d.Ground; g.Kind {
-	case Disc:
-		t.Ground = groundText{Kind: Disc, Diameter: &g.Diameter}
-	case Cup:
-		t.Ground = groundText{Kind: Cup, Diameter: &g.Diameter, Rim: &g.Rim}
-	}
 	if d.Band != (Band{}) {
 		t.Band = &bandText{d.Band.From, d.Band.To, d.Band.Samples}
 	}
 	return json.Marshal(t)
+}
+
+func textOf(m Material) materialText {
+	return materialText{Material: m.Name, Conductivity: m.Conductivity, Density: m.Density, Permeability: orOne(m.Permeability)}
+}
+
+func textOfGround(g Ground) groundText {
+	if !g.Finite() {
+		return groundText{Kind: Infinite}
+	}
+	metal := textOf(g.Metal())
+	t := groundText{Kind: g.Kind, Diameter: &g.Diameter, Thickness: g.SheetThickness(), materialText: &metal}
+	if g.Kind == Cup {
+		t.Rim = &g.Rim
+	}
+	return t
 }
 
 // UnmarshalJSON reads what MarshalJSON writes. It is strict: a key that is
@@ -181,15 +195,19 @@ func readConductor(f *jsontree.Fields) Conductor {
 		Stock:    f.TextOr("stock", 1000),
 		Diameter: f.Number("diameter_m", finite("m")),
 		Wall:     f.NumberOr("wall_m", finite("m"), 0),
-		Material: Material{
-			Name:         f.TextOr("material", 1000),
-			Conductivity: f.Number("conductivity_s_per_m", finite("S/m")),
-			Density:      f.Number("density_kg_per_m3", finite("kg/m³")),
-			Permeability: f.NumberOr("permeability", finite(""), 1),
-		},
+		Material: readMaterial(f),
 	}
 	f.Done()
 	return c
+}
+
+func readMaterial(f *jsontree.Fields) Material {
+	return Material{
+		Name:         f.TextOr("material", 1000),
+		Conductivity: f.Number("conductivity_s_per_m", finite("S/m")),
+		Density:      f.Number("density_kg_per_m3", finite("kg/m³")),
+		Permeability: f.NumberOr("permeability", finite(""), 1),
+	}
 }
 
 func readFeed(f *jsontree.Fields) Feed {
@@ -222,8 +240,12 @@ func readFeed(f *jsontree.Fields) Feed {
 
 func readGround(f *jsontree.Fields) Ground {
 	g := Ground{Kind: GroundKind(f.Choice("kind", string(Infinite), string(Disc), string(Cup)))}
-	if g.Kind == Disc || g.Kind == Cup {
+	if g.Finite() {
 		g.Diameter = f.Number("diameter_m", finite("m"))
+		g.Thickness = f.NumberOr("thickness_m", finite("m"), 0)
+		if f.Has("conductivity_s_per_m") {
+			g.Material = readMaterial(f)
+		}
 	}
 	if g.Kind == Cup {
 		g.Rim = f.Number("rim_m", finite("m"))

@@ -24,9 +24,10 @@ func fullDesign() models.Design {
 			Lead:        models.Lead{Turns: 0.5, Spacing: 0.008, Shape: models.Flat},
 			Strip:       models.Strip{Turns: 0.25, Width: 0.005},
 			Transformer: models.Transformer{Impedance: 85, Length: 0.044, Velocity: 0.66}},
-		Ground: models.Ground{Kind: models.Cup, Diameter: 0.15, Rim: 0.06},
-		Band:   models.Band{From: 1.66e9, To: 1.70e9, Samples: 5},
-		Sense:  models.Right, FeedsReflector: true,
+		Ground: models.Ground{Kind: models.Cup, Diameter: 0.15, Rim: 0.06, Thickness: 0.0008,
+			Material: models.Material{Name: "brass", Conductivity: 16e6, Density: 8530, Permeability: 1}},
+		Band:  models.Band{From: 1.66e9, To: 1.70e9, Samples: 5},
+		Sense: models.Right, FeedsReflector: true,
 	}
 }
 
@@ -34,7 +35,7 @@ const fullText = `{"title":"every part","turns":8.25,"diameter_m":[0.058,0.058,0
 	`"conductor":{"stock":"2.0 mm copper","diameter_m":0.002,"material":"copper","conductivity_s_per_m":58000000,"density_kg_per_m3":8890,"permeability":1},` +
 	`"insulation":{"thickness_m":0.0003,"permittivity":2.3},` +
 	`"feed":{"height_m":0.005,"pin_m":0.00127,"impedance_ohm":50,"lead":{"turns":0.5,"spacing_m":0.008,"shape":"flat"},"strip":{"turns":0.25,"width_m":0.005},"transformer":{"impedance_ohm":85,"length_m":0.044,"velocity":0.66}},` +
-	`"ground":{"kind":"cup","diameter_m":0.15,"rim_m":0.06},"band":{"from_hz":1660000000,"to_hz":1700000000,"samples":5},"sense":"right","feeds_reflector":true}`
+	`"ground":{"kind":"cup","diameter_m":0.15,"rim_m":0.06,"thickness_m":0.0008,"material":"brass","conductivity_s_per_m":16000000,"density_kg_per_m3":8530,"permeability":1},"band":{"from_hz":1660000000,"to_hz":1700000000,"samples":5},"sense":"right","feeds_reflector":true}`
 
 func TestDesignJSONText(t *testing.T) {
 	text, err := json.Marshal(fullDesign())
@@ -74,6 +75,30 @@ func TestDesignJSONWritesDefaults(t *testing.T) {
 	}
 	if back.Canonical() != d.Canonical() {
 		t.Errorf("read back as\n%s\nwant\n%s", back.Canonical(), d.Canonical())
+	}
+}
+
+// A plate's sheet is spelt out as well, and a text without it, from before
+// plates had one, is read with the sheet that nobody has to name.
+func TestDesignJSONOfAPlainPlate(t *testing.T) {
+	d := fullDesign()
+	d.Ground = models.Ground{Kind: models.Disc, Diameter: 0.2}
+	text, err := json.Marshal(d)
+	if err != nil {
+		t.Fatal(err)
+	}
+	const sheet = `,"thickness_m":0.001,"material":"aluminium","conductivity_s_per_m":35400000,"density_kg_per_m3":2700,"permeability":1`
+	if !strings.Contains(string(text), `"ground":{"kind":"disc","diameter_m":0.2`+sheet+`}`) {
+		t.Errorf("the sheet is not in %s", text)
+	}
+	for name, text := range map[string]string{"spelt out": string(text), "left away": strings.Replace(string(text), sheet, "", 1)} {
+		var back models.Design
+		if err := json.Unmarshal([]byte(text), &back); err != nil {
+			t.Fatal(err)
+		}
+		if back.Hash() != d.Hash() {
+			t.Errorf("%s: read back as\n%s\nwant\n%s", name, back.Canonical(), d.Canonical())
+		}
 	}
 }
 
@@ -118,6 +143,12 @@ func drawDesign(t *rapid.T) models.Design {
 		Sense:          rapid.SampledFrom([]models.Sense{0, models.Right, models.Left}).Draw(t, "sense"),
 		FeedsReflector: some("reflector"),
 	}
+	if some("sheet") {
+		d.Ground.Thickness = length("thickness")
+	}
+	if some("metal") {
+		d.Ground.Material = models.Material{Conductivity: 1e6 * length("plate conductivity"), Density: 1e3 * length("plate density"), Permeability: float64(rapid.IntRange(0, 2).Draw(t, "plate permeability"))}
+	}
 	if some("pin") {
 		d.Feed.Pin = length("pin")
 	}
@@ -161,6 +192,8 @@ func TestDesignJSONFaults(t *testing.T) {
 		{"too large", replace(`"turns":8.25`, `"turns":1e999`), "turns is 1e999; it should be a number that fits 64 bits"},
 		{"fraction of a count", replace(`"samples":5`, `"samples":5.5`), "band.samples is 5.5; it should be a whole number"},
 		{"rim of a disc", replace(`"kind":"cup"`, `"kind":"disc"`), "ground.rim_m is no field of ground"},
+		{"sheet of an infinite plane", replace(`"kind":"cup","diameter_m":0.15,"rim_m":0.06,`, `"kind":"infinite",`), "ground.thickness_m is no field of ground"},
+		{"half a metal", replace(`"density_kg_per_m3":8530`, `"densty_kg_per_m3":8530`), "ground.density_kg_per_m3 is missing"},
 		{"not an object", `[]`, "the value is a list of 0; it should be an object"},
 	} {
 		t.Run(c.name, func(t *testing.T) {

@@ -32,7 +32,8 @@
 //	design    the antenna: the keys of a design file with their units
 //	          (turns, diameter_m, spacing_m, handedness, conductor, feed,
 //	          ground, …), laws as lists, defaults filled in, without title,
-//	          band, names of stock and material
+//	          band, names of stock and material; a ground of kind disc or cup
+//	          with diameter_m, rim_m, thickness_m and its metal
 //	hz        the frequencies, rising
 //	outputs   what is asked: axis always, else what the hello offered
 //	cone_rad  the half-angle of the cone, where that is asked

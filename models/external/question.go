@@ -28,9 +28,7 @@ func newQuestion(d models.Design, q models.Question, can models.Outputs) (questi
 	if err := helix.Check(&d); err != nil {
 		return question{}, err
 	}
-	d.Title, d.Band, d.Sense, d.FeedsReflector = "", models.Band{}, 0, false
-	d.Conductor.Stock, d.Conductor.Material.Name = "", ""
-	out := question{Design: d, Hz: q.Hz, outputs: q.Outputs&can | models.Axis}
+	out := question{Design: d.Nameless(), Hz: q.Hz, outputs: q.Outputs&can | models.Axis}
 	out.Outputs = wordsOf(out.outputs)
 	if out.outputs&models.Cone != 0 {
 		out.Cone = q.Cone

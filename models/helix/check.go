@@ -117,19 +117,23 @@ func (f *faults) conductor(d *models.Design) {
 	if w := c.Wall; bad(w) || w < 0 || w > 0 && 2*w > c.Diameter {
 		f.add("conductor.wall", "%s m cannot be; at most half the diameter is due, or 0 for a solid wire", text(w))
 	}
-	m := &c.Material
-	if bad(m.Conductivity) || m.Conductivity <= 0 {
-		f.add("conductor.conductivity", "%s S/m cannot be; a value above zero is due, such as 58 MS/m (copper)", text(m.Conductivity))
-	}
-	if bad(m.Density) || m.Density <= 0 {
-		f.add("conductor.density", "%s kg/m³ cannot be; a value above zero is due, such as 8.9 g/cm3 (copper)", text(m.Density))
-	}
-	if m.Permeability != 0 {
-		f.span("conductor.permeability", m.Permeability, 1e-3, 1e6, "", "1")
-	}
+	f.material("conductor", &c.Material, "58 MS/m (copper)", "8.9 g/cm3 (copper)")
 	if t := d.Insulation.Thickness; t != 0 {
 		f.span("insulation.thickness", t, 0, mostLength, " m", "0.3 mm")
 		f.span("insulation.permittivity", d.Insulation.Permittivity, 1, 1000, "", "2.3")
+	}
+}
+
+// material demands a metal that conducts and weighs something.
+func (f *faults) material(key string, m *models.Material, conducts, weighs string) {
+	if bad(m.Conductivity) || m.Conductivity <= 0 {
+		f.add(key+".conductivity", "%s S/m cannot be; a value above zero is due, such as %s", text(m.Conductivity), conducts)
+	}
+	if bad(m.Density) || m.Density <= 0 {
+		f.add(key+".density", "%s kg/m³ cannot be; a value above zero is due, such as %s", text(m.Density), weighs)
+	}
+	if m.Permeability != 0 {
+		f.span(key+".permeability", m.Permeability, 1e-3, 1e6, "", "1")
 	}
 }
 
@@ -204,8 +208,24 @@ func (f *faults) ground(d *models.Design) {
 		f.add("ground.kind", "%q is unknown; infinite, disc or cup is due", string(g.Kind))
 		return
 	}
-	if f.size("ground.diameter", g.Diameter, "200 mm") && len(d.Diameter) > 0 && g.Diameter <= d.Diameter[0]+d.PinDiameter() {
-		f.add("ground.diameter", "%s m does not reach under the riser, which stands at a diameter of %s m; a larger one is due",
-			text(g.Diameter), text(d.Diameter[0]))
+	f.sheet(g)
+	if !f.size("ground.diameter", g.Diameter, "200 mm") || len(d.Diameter) == 0 {
+		return
 	}
+	if need := LeastGround(d); g.Diameter <= need {
+		f.add("ground.diameter", "%s m does not reach round the feed's opening, at the foot of the riser; more than %s m is due", text(g.Diameter), text(need))
+	}
+}
+
+// LeastGround is the diameter, m, that a disc or cup has to exceed to hold
+// the feed's opening. The design needs to have a diameter.
+func LeastGround(d *models.Design) float64 { return d.Diameter[0] + models.Opening*d.PinDiameter() }
+
+// sheet looks at what a disc or cup is made of, where it is said.
+func (f *faults) sheet(g *models.Ground) {
+	if g.Thickness != 0 {
+		f.size("ground.thickness", g.Thickness, "1 mm")
+	}
+	m := g.Metal()
+	f.material("ground", &m, "35.4 MS/m (aluminium)", "2.7 g/cm3 (aluminium)")
 }

@@ -32,8 +32,11 @@ func TestSoundDesigns(t *testing.T) {
 		"transformer":              func(d *models.Design) { d.Feed.Transformer = models.Transformer{Impedance: 85, Length: 0.044} },
 		"transformer of a cable":   func(d *models.Design) { d.Feed.Transformer = models.Transformer{Impedance: 85, Velocity: 0.66} },
 		"length without an impedance is no transformer": func(d *models.Design) { d.Feed.Transformer.Length = math.NaN() },
-		"disc": func(d *models.Design) { d.Ground = models.Ground{Kind: models.Disc, Diameter: 0.061} },
-		"cup":  func(d *models.Design) { d.Ground = models.Ground{Kind: models.Cup, Diameter: 0.15, Rim: 0.06} },
+		"disc": func(d *models.Design) { d.Ground = models.Ground{Kind: models.Disc, Diameter: 0.0627} },
+		"thick brass disc": func(d *models.Design) {
+			d.Ground = models.Ground{Kind: models.Disc, Diameter: 0.2, Thickness: 0.003, Material: models.Material{Conductivity: 16e6, Density: 8530}}
+		},
+		"cup": func(d *models.Design) { d.Ground = models.Ground{Kind: models.Cup, Diameter: 0.15, Rim: 0.06} },
 	} {
 		d := plain()
 		change(&d)
@@ -116,8 +119,16 @@ func TestFaults(t *testing.T) {
 		{"unknown ground", func(d *models.Design) { d.Ground.Kind = "moon" }, "ground.kind", []string{`"moon" is unknown`, "infinite, disc or cup"}},
 		{"disc of no size", func(d *models.Design) { d.Ground.Kind = models.Disc }, "ground.diameter", []string{"0 m cannot be", "200 mm"}},
 		{"cup of no rim", func(d *models.Design) { d.Ground = models.Ground{Kind: models.Cup, Diameter: 0.15} }, "ground.rim", []string{"0 m cannot be", "60 mm"}},
-		{"disc under no riser", func(d *models.Design) { d.Ground = models.Ground{Kind: models.Disc, Diameter: 0.06} }, "ground.diameter",
-			[]string{"does not reach under the riser", "0.058 m", "a larger one"}},
+		{"disc smaller than the opening", func(d *models.Design) { d.Ground = models.Ground{Kind: models.Disc, Diameter: 0.0626} }, "ground.diameter",
+			[]string{"0.0626 m does not reach round the feed's opening", "more than 0.0626 m is due"}},
+		{"sheet of less than nothing", func(d *models.Design) { d.Ground = models.Ground{Kind: models.Disc, Diameter: 0.2, Thickness: -1e-3} }, "ground.thickness",
+			[]string{"-0.001 m cannot be", "1 mm"}},
+		{"plate that weighs nothing", func(d *models.Design) {
+			d.Ground = models.Ground{Kind: models.Disc, Diameter: 0.2, Material: models.Material{Conductivity: 16e6}}
+		}, "ground.density", []string{"0 kg/m³ cannot be", "2.7 g/cm3"}},
+		{"plate that does not conduct", func(d *models.Design) {
+			d.Ground = models.Ground{Kind: models.Disc, Diameter: 0.2, Material: models.Material{Density: 2700}}
+		}, "ground.conductivity", []string{"0 S/m cannot be", "35.4 MS/m"}},
 	} {
 		d := plain()
 		x.change(&d)
@@ -188,6 +199,10 @@ func dimensions() []struct {
 		{"feed.transformer.velocity", func(d *d) *float64 { return &d.Feed.Transformer.Velocity }},
 		{"ground.diameter", func(d *d) *float64 { return &d.Ground.Diameter }},
 		{"ground.rim", func(d *d) *float64 { return &d.Ground.Rim }},
+		{"ground.thickness", func(d *d) *float64 { return &d.Ground.Thickness }},
+		{"ground.conductivity", func(d *d) *float64 { return &d.Ground.Material.Conductivity }},
+		{"ground.permeability", func(d *d) *float64 { return &d.Ground.Material.Permeability }},
+		{"ground.density", func(d *d) *float64 { return &d.Ground.Material.Density }},
 	}
 }
 
@@ -199,7 +214,7 @@ func whole() models.Design {
 	d.Conductor.Material.Permeability = 1
 	d.Insulation = models.Insulation{Thickness: 0.0003, Permittivity: 2.3}
 	d.Feed.Transformer = models.Transformer{Impedance: 85, Length: 0.044, Velocity: 0.9}
-	d.Ground = models.Ground{Kind: models.Cup, Diameter: 0.15, Rim: 0.06}
+	d.Ground = models.Ground{Kind: models.Cup, Diameter: 0.15, Rim: 0.06, Thickness: 0.001, Material: models.Material{Conductivity: 35.4e6, Density: 2700}}
 	return d
 }
 
@@ -222,7 +237,8 @@ func TestNoDimensionTakesWhatIsNoNumber(t *testing.T) {
 // Zero means absent for some keys and is a fault of the others.
 func TestZero(t *testing.T) {
 	absent := []string{"conductor.wall", "conductor.permeability", "insulation.thickness", "feed.pin", "feed.lead.turns",
-		"feed.lead.spacing", "feed.strip.turns", "feed.transformer.impedance", "feed.transformer.length", "feed.transformer.velocity"}
+		"feed.lead.spacing", "feed.strip.turns", "feed.transformer.impedance", "feed.transformer.length", "feed.transformer.velocity",
+		"ground.thickness", "ground.permeability"}
 	for _, x := range dimensions() {
 		d := whole()
 		*x.place(&d) = 0
@@ -235,7 +251,8 @@ func TestZero(t *testing.T) {
 
 // Material's numbers and an impedance have no upper end; all else has.
 func TestAbsurdSizes(t *testing.T) {
-	endless := []string{"conductor.conductivity", "conductor.density", "feed.impedance", "feed.transformer.impedance"}
+	endless := []string{"conductor.conductivity", "conductor.density", "feed.impedance", "feed.transformer.impedance",
+		"ground.conductivity", "ground.density"}
 	for _, x := range dimensions() {
 		d := whole()
 		*x.place(&d) = 1e9

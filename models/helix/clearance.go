@@ -3,9 +3,11 @@ package helix
 import (
 	"math"
 	"slices"
+
+	"turnwise/models"
 )
 
-// Clearance is how close the centre line comes to itself and to the plane, m.
+// Clearance is how close the centre line comes to itself and to the ground, m.
 type Clearance struct {
 	// Turns is the least distance, centre to centre, between points of the
 	// winding half a turn to one and a half turns apart. It is +Inf for a
@@ -14,6 +16,9 @@ type Clearance struct {
 	// Plane is the least height of the winding above the plane. Spacing is
 	// never negative, so that is where the winding starts.
 	Plane float64
+	// Rim is the least distance to a cup's wall, taken for a sheet of no
+	// thickness; +Inf without a cup.
+	Rim float64
 }
 
 // The neighbourhood of a point, in turns further on.
@@ -28,7 +33,7 @@ const (
 // the winding climbs. Laws that wave more than once a turn may hide an
 // approach closer by up to a few parts in a thousand.
 func (c *Curve) Clearances() Clearance {
-	out := Clearance{Turns: math.Inf(1), Plane: c.height}
+	out := Clearance{Turns: math.Inf(1), Plane: c.height, Rim: c.rim()}
 	if c.turns < nearest {
 		return out
 	}
@@ -55,6 +60,22 @@ func (c *Curve) Clearances() Clearance {
 		out.Turns = c.gap(0)
 	}
 	return out
+}
+
+// rim is the least distance between the winding and the wall of a cup.
+func (c *Curve) rim() float64 {
+	least := math.Inf(1)
+	if c.ground.Kind != models.Cup {
+		return least
+	}
+	for i := range c.pieces {
+		p := &c.pieces[i]
+		least = min(least, golden(0, p.to-p.from, func(x float64) float64 {
+			r, _, _ := p.radius(x)
+			return math.Hypot(r-c.ground.Diameter/2, max(p.height(x)-c.ground.Rim, 0))
+		}))
+	}
+	return least
 }
 
 // gap is the distance from t to the nearest point half a turn to one and a

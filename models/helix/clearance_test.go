@@ -2,6 +2,7 @@ package helix
 
 import (
 	"math"
+	"strings"
 	"testing"
 
 	"gonum.org/v1/gonum/spatial/r3"
@@ -116,5 +117,51 @@ func TestClearanceOfShortWindings(t *testing.T) {
 		c := wind(t, d)
 		ends := r3.Norm(r3.Sub(c.At(0.5).Pos, c.At(0).Pos))
 		near(t, "half a turn", c.Clearances().Turns, ends, 1e-15)
+	}
+}
+
+// The distance to a cup's wall, by hand: straight across below the rim, to
+// its edge above it.
+func TestRimClearance(t *testing.T) {
+	for _, x := range []struct {
+		name          string
+		diameter      models.Law
+		spacing       float64
+		cup, rim, gap float64 // m
+	}{
+		{"no cup", models.Law{0.058}, 0.034, 0, 0, math.Inf(1)},
+		{"straight", models.Law{0.058}, 0.034, 0.15, 0.06, 0.046},
+		{"lower than the riser", models.Law{0.058}, 0.034, 0.15, 0.003, math.Hypot(0.046, 0.002)},
+		{"growing, at the open end", models.Law{0.058, 0.098}, 0.034, 0.15, 0.5, 0.026},
+		{"shrinking, at the start", models.Law{0.098, 0.058}, 0.034, 0.15, 0.06, 0.026},
+		// r = 29 mm + t·20 mm/8.25, z = 5 mm + t·34 mm: a straight line past the edge at (45, 60) mm.
+		{"growing past the rim", models.Law{0.058, 0.098}, 0.034, 0.09, 0.06,
+			((45-29)*34 - (60-5)*20/8.25) / math.Hypot(34, 20/8.25) * 1e-3},
+	} {
+		d := plain()
+		d.Diameter, d.Spacing = x.diameter, models.Law{x.spacing}
+		if x.cup > 0 {
+			d.Ground = models.Ground{Kind: models.Cup, Diameter: x.cup, Rim: x.rim}
+		}
+		if got := wind(t, d).Clearances().Rim; got != x.gap && math.Abs(got-x.gap) > 1e-7 {
+			t.Errorf("%s: %g m from the rim, want %g", x.name, got, x.gap)
+		}
+	}
+}
+
+func TestWindingThroughItsCup(t *testing.T) {
+	through := plain()
+	through.Diameter, through.Ground = models.Law{0.058, 0.098}, models.Ground{Kind: models.Cup, Diameter: 0.09, Rim: 0.25}
+	touching := plain()
+	touching.Ground = models.Ground{Kind: models.Cup, Diameter: 0.0599, Rim: 0.06}
+	touching.Feed.Pin = 0.0005 // so that the opening fits
+	for name, d := range map[string]models.Design{"through": through, "touching": touching} {
+		if _, err := Wind(&d); err == nil || !strings.Contains(err.Error(), "ground.diameter: the winding comes to") || !strings.Contains(err.Error(), "a lower rim is due") {
+			t.Errorf("%s: error %v", name, err)
+		}
+	}
+	through.Ground.Rim = 0.15
+	if _, err := Wind(&through); err != nil {
+		t.Errorf("a winding that grows wider than its cup above the rim: %v", err)
 	}
 }

@@ -1,6 +1,7 @@
 package helix
 
 import (
+	"fmt"
 	"math"
 	"slices"
 
@@ -78,6 +79,14 @@ func (c *Curve) Wind(d *models.Design) error {
 	c.cut(&d.Feed)
 	c.join(d.Feed.Lead)
 	c.measure()
+	return c.cupped()
+}
+
+// cupped refuses a winding that touches or passes through the wall of its cup.
+func (c *Curve) cupped() error {
+	if gap := c.rim(); gap <= c.conductor/2+c.coat {
+		return fmt.Errorf("ground.diameter: the winding comes to %.3g m of the cup's wall, centre line; a wider cup or a lower rim is due", gap)
+	}
 	return nil
 }
 

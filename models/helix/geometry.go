@@ -1,10 +1,6 @@
 package helix
 
-import (
-	"math"
-
-	"turnwise/models"
-)
+import "math"
 
 // Geometry is what the winding alone decides, SI.
 type Geometry struct {
@@ -14,10 +10,12 @@ type Geometry struct {
 	// conductor (a coat and a strip counted), or the plate or cup if that is
 	// wider.
 	Widest float64
-	// Mass is the conductor's, kg: the winding as round wire or tube, a riser
-	// of another diameter as solid wire. Coat, plate, former and
-	// what a strip differs from wire are not in it.
+	// Mass is the conductor's and the plate's or cup's, kg. Coat, former and
+	// what a strip differs from wire are not in it, nor is an infinite plane.
 	Mass float64
+	// ConductorMass is the conductor's part, kg: the winding as round wire or
+	// tube, a riser of another diameter as solid wire.
+	ConductorMass float64
 	// BendRadius is the least along the winding, m; the corner on the riser
 	// is a joint and does not count.
 	BendRadius float64
@@ -29,12 +27,14 @@ func (c *Curve) Geometry() Geometry {
 	if c.pin != c.conductor {
 		foot = math.Pi / 4 * c.pin * c.pin
 	}
+	conductor := c.density * (c.section*(c.wire-c.height) + foot*c.height)
 	return Geometry{
-		Length:     c.Top(),
-		WireLength: c.wire,
-		Widest:     c.widest(),
-		Mass:       c.density * (c.section*(c.wire-c.height) + foot*c.height),
-		BendRadius: 1 / c.sharpest(),
+		Length:        c.Top(),
+		WireLength:    c.wire,
+		Widest:        c.widest(),
+		Mass:          conductor + c.ground.Mass(),
+		ConductorMass: conductor,
+		BendRadius:    1 / c.sharpest(),
 	}
 }
 
@@ -52,7 +52,7 @@ func (c *Curve) widest() float64 {
 		b, _, _ := p.radius(p.to - p.from)
 		w = max(w, 2*a+thick, 2*b+thick)
 	}
-	if c.ground.Kind == models.Disc || c.ground.Kind == models.Cup {
+	if c.ground.Finite() {
 		w = max(w, c.ground.Diameter)
 	}
 	return w

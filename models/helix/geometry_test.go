@@ -78,8 +78,21 @@ func TestMass(t *testing.T) {
 	} {
 		d := plain()
 		x.change(&d)
-		near(t, x.name+": mass", wind(t, d).Geometry().Mass, 8890*x.want, 1e-13)
+		g := wind(t, d).Geometry()
+		near(t, x.name+": mass", g.Mass, 8890*x.want, 1e-13)
+		near(t, x.name+": the conductor's", g.ConductorMass, 8890*x.want, 1e-13)
 	}
+}
+
+// A cup weighs with its winding: 1 mm of aluminium, a plate 150 mm across and
+// a rim 60 mm high.
+func TestMassWithTheGround(t *testing.T) {
+	d := plain()
+	alone := wind(t, d).Geometry().Mass
+	d.Ground = models.Ground{Kind: models.Cup, Diameter: 0.15, Rim: 0.06}
+	g := wind(t, d).Geometry()
+	near(t, "mass", g.Mass, alone+2.7*math.Pi*(0.15*0.15/4+0.15*0.06), 1e-13)
+	near(t, "the conductor's", g.ConductorMass, alone, 1e-13)
 }
 
 func TestWallThatCannotBe(t *testing.T) {

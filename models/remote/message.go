@@ -56,9 +56,7 @@ type question struct {
 
 // pack writes a question.
 func pack(identity string, d models.Design, q models.Question) ([]byte, error) {
-	d.Title, d.Band, d.Sense, d.FeedsReflector = "", models.Band{}, 0, false
-	d.Conductor.Stock, d.Conductor.Material.Name = "", ""
-	text, err := json.Marshal(question{identity, d, q.Hz, q.Outputs, q.Cone})
+	text, err := json.Marshal(question{identity, d.Nameless(), q.Hz, q.Outputs, q.Cone})
 	if err != nil {
 		return nil, fmt.Errorf("the question cannot be asked: %w", err)
 	}

@@ -15,10 +15,6 @@ type hole struct {
 	For      string
 }
 
-// opening is the coaxial opening's outer over its inner diameter, as the
-// full-wave model has it: an air line of 50 Ω.
-const opening = 2.3
-
 // Fixing holes of a former: suggested, on a circle of this share of its
 // radius, for screws of 3 mm; none where the former is too small for them.
 const (
@@ -31,7 +27,7 @@ const (
 // former's fixing.
 func (s *sheet) holes() []hole {
 	out := []hole{{
-		At: drawing.Point{X: 500 * s.Curve.Diameter(0)}, Diameter: opening * 1e3 * s.Design.PinDiameter(),
+		At: drawing.Point{X: 500 * s.Curve.Diameter(0)}, Diameter: models.Opening * 1e3 * s.Design.PinDiameter(),
 		For: "coaxial opening, the riser in its middle",
 	}}
 	if s.former.combs {
@@ -79,7 +75,7 @@ func (s *sheet) plateWords() []string {
 		out = append(out, fmt.Sprintf("The design assumes an infinite plane. Make the plate at least %.0f across, 0.75 wavelengths at mid-band (practice); a smaller one costs gain, and any real one moves it by a decibel or two.", math.Ceil(750*s.wavelength())))
 	}
 	return append(out,
-		fmt.Sprintf("The opening is %s times the riser's diameter, an air line of 50 Ω, as the calculation has it. A connector with another dielectric keeps its own diameters. Take its fixing holes from the connector itself.", shortest(opening)),
+		fmt.Sprintf("The opening is %s times the riser's diameter, an air line of 50 Ω, as the calculation has it. A connector with another dielectric keeps its own diameters. Take its fixing holes from the connector itself.", shortest(models.Opening)),
 		"The plate conducts over its whole upper face: bare metal under the connector's flange, no paint.")
 }
 
