@@ -6,6 +6,7 @@ import (
 	"strconv"
 
 	"turnwise/models"
+	"turnwise/models/helix"
 	"turnwise/optimize/space"
 )
 
@@ -175,9 +176,9 @@ func (l *Layout) Point(d models.Design) (space.Point, []string) {
 	for _, v := range s.Vary {
 		switch v.Quantity {
 		case Diameter:
-			law[Diameter] = resample(d.Diameter, v.Knots)
+			law[Diameter] = helix.Resample(d.Diameter, v.Knots)
 		case Spacing:
-			law[Spacing] = resample(d.Spacing, v.Knots)
+			law[Spacing] = helix.Resample(d.Spacing, v.Knots)
 		}
 	}
 	asked := d
@@ -212,27 +213,4 @@ func (s *Spec) nearestStock(c models.Conductor) int {
 		}
 	}
 	return best
-}
-
-// resample reads a law at n knots along straight lines between its own.
-func resample(l models.Law, n int) models.Law {
-	out := make(models.Law, n)
-	for k := range out {
-		if len(l) == 1 || n == 1 {
-			out[k] = mean(l)
-			continue
-		}
-		x := float64(k) / float64(n-1) * float64(len(l)-1)
-		i := min(int(x), len(l)-2)
-		out[k] = l[i] + (x-float64(i))*(l[i+1]-l[i])
-	}
-	return out
-}
-
-func mean(l models.Law) float64 {
-	sum := 0.0
-	for _, x := range l {
-		sum += x
-	}
-	return sum / float64(max(len(l), 1))
 }
