@@ -4,6 +4,7 @@ import (
 	"math"
 
 	"turnwise/models"
+	"turnwise/models/helix"
 	"turnwise/objectives"
 )
 
@@ -18,7 +19,8 @@ func (r *reader) checkBrief(b *block, br *Brief) {
 	c.halves()
 	c.feedHeight()
 	c.ground()
-	c.answerable()
+	c.foot()
+	c.answerable(br.Ladder)
 	c.room()
 }
 
@@ -153,11 +155,7 @@ func (c *briefCheck) feedHeight() {
 	if len(c.s.Stock) == 0 {
 		return
 	}
-	thinnest := math.Inf(1)
-	for i := range c.s.Stock {
-		thinnest = math.Min(thinnest, c.s.Stock[i].Diameter)
-	}
-	need := objectives.LeastFeedHeight(thinnest)
+	need := objectives.LeastFeedHeight(c.thinnest())
 	remedy := "make it at least " + show(math.Ceil(need*1e6)/1e6, Length) + ": 2.5 radii of the thinnest conductor, and 1 mm of air under it"
 	if v, ok := c.varies[objectives.FeedHeight]; ok && v.To < need {
 		c.r.add(c.at("vary", "feed_height", "to"), "vary.feed_height.to", "leaves no riser that any conductor can have", remedy)
@@ -169,7 +167,7 @@ func (c *briefCheck) feedHeight() {
 
 func (c *briefCheck) ground() {
 	kind := c.s.Base.Ground.Kind
-	c.r.wholeGround(*c.b, "ground", c.s.Base.Ground, c.has(objectives.GroundDiameter), c.has(objectives.GroundRim))
+	c.r.wholeGround(*c.b, "ground", c.s.Base.Ground, c.written("vary", string(objectives.GroundDiameter)), c.written("vary", string(objectives.GroundRim)))
 	for _, q := range []objectives.Quantity{objectives.GroundDiameter, objectives.GroundRim} {
 		v, ok := c.varies[q]
 		if !ok || kind == "" {
@@ -184,12 +182,53 @@ func (c *briefCheck) ground() {
 	}
 }
 
-// answerable notes aims and limits that no model can answer.
-func (c *briefCheck) answerable() {
-	if c.s.Base.Ground.Kind != models.Infinite {
+// foot notes a disc or cup that is too small for every winding that may vary.
+func (c *briefCheck) foot() {
+	g, d := c.s.Base.Ground, c.s.Base
+	if !g.Finite() || len(c.s.Stock) == 0 {
 		return
 	}
-	const what, remedy = "can be answered by no model: an infinite ground has no rear", "leave it away, or choose a ground of kind disc or cup"
+	if v, ok := c.varies[objectives.Diameter]; ok {
+		d.Diameter = models.Law{v.From}
+	}
+	if len(d.Diameter) == 0 {
+		return
+	}
+	d.Conductor.Diameter = c.thinnest()
+	if v, ok := c.varies[objectives.Pin]; ok {
+		d.Feed.Pin = v.From
+	}
+	need := helix.LeastGround(&d)
+	remedy := "make it more than " + show(math.Ceil(need*1e6-1e-6)/1e6, Length) + ", which the narrowest winding that may vary needs"
+	const what = "does not reach round the feed's opening, at the foot of the riser"
+	if v, ok := c.varies[objectives.GroundDiameter]; ok && v.To <= need {
+		c.r.add(c.at("vary", "ground_diameter", "to"), "vary.ground_diameter.to", what, remedy)
+	}
+	if g.Diameter > 0 && g.Diameter <= need {
+		c.r.add(c.at("ground", "diameter"), "ground.diameter", what, remedy)
+	}
+}
+
+// thinnest is the diameter of the thinnest conductor in stock, m.
+func (c *briefCheck) thinnest() float64 {
+	least := math.Inf(1)
+	for i := range c.s.Stock {
+		least = math.Min(least, c.s.Stock[i].Diameter)
+	}
+	return least
+}
+
+// answerable notes aims and limits that no model can answer.
+func (c *briefCheck) answerable(ladder []Rung) {
+	what, remedy := "can be answered by no model: an infinite ground has no rear", "leave it away, or choose a ground of kind disc or cup"
+	if c.s.Base.Ground.Finite() {
+		if n := len(ladder); n == 0 || ladder[n-1].Model != ClosedForm {
+			return
+		}
+		what, remedy = "cannot be answered by the closed-form model: its formulas have no rear", "leave it away, or choose model: full-wave"
+	} else if c.s.Base.Ground.Kind == "" {
+		return
+	}
 	for _, a := range c.s.Aims {
 		if a.Figure == objectives.FrontToBack {
 			c.r.add(c.at("aims"), "aims", "front_to_back "+what, remedy)
@@ -218,15 +257,22 @@ func (c *briefCheck) room() {
 	spacing := low(objectives.Spacing, c.s.Base.Spacing)
 	diameter := low(objectives.Diameter, c.s.Base.Diameter)
 	height := low(objectives.FeedHeight, models.Law{c.s.Base.Feed.Height})
+	ground := c.s.Base.Ground
+	ground.Diameter = low(objectives.GroundDiameter, models.Law{ground.Diameter})
+	ground.Rim = low(objectives.GroundRim, models.Law{ground.Rim})
+	widest := diameter
+	if ground.Finite() {
+		widest = math.Max(widest, ground.Diameter)
+	}
 	lead := c.written("vary", "lead_turns") || c.written("design", "feed", "lead")
 	for _, l := range c.s.Limits {
 		if l.AtLeast {
 			continue
 		}
-		name := l.Figure.String()
+		name, d := l.Figure.String(), dimensionOf(l.Figure)
 		full := func(need float64) {
 			if l.Value < need && !math.IsInf(need, 0) {
-				c.r.add(c.at("limits", name), "limits."+name+".at_most", "leaves no room: the smallest winding that may vary needs "+show(onGrid(need, Length), Length),
+				c.r.add(c.at("limits", name), "limits."+name+".at_most", "leaves no room: the smallest antenna that may vary needs "+show(onGrid(need, d), d),
 					"raise the limit, or lower what may vary")
 			}
 		}
@@ -236,9 +282,11 @@ func (c *briefCheck) room() {
 		case l.Figure == objectives.Length:
 			full(height)
 		case l.Figure == objectives.Widest:
-			full(diameter)
+			full(widest)
 		case l.Figure == objectives.WireLength:
 			full(turns * math.Pi * diameter)
+		case l.Figure == objectives.Mass:
+			full(ground.Mass())
 		}
 	}
 }

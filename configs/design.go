@@ -1,6 +1,8 @@
 package configs
 
 import (
+	"slices"
+
 	"turnwise/models"
 )
 
@@ -159,7 +161,7 @@ func (b *block) sense(key string) models.Sense {
 // conductor reads a conductor by its numbers, or by the name of a row of a
 // catalogue.
 func (r *reader) conductor(n *node, path string) models.Conductor {
-	b := r.block(n, path, "stock", "diameter", "wall", "material", "conductivity", "density", "permeability")
+	b := r.block(n, path, append([]string{"stock", "diameter", "wall"}, metalKeys...)...)
 	var c models.Conductor
 	c.Stock, _ = b.name("stock")
 	if c.Stock != "" && !b.has("diameter") {
@@ -189,6 +191,9 @@ func (b *block) wall(diameter float64, known bool) float64 {
 	return w
 }
 
+// metalKeys name a material, or give its numbers.
+var metalKeys = []string{"material", "conductivity", "density", "permeability"}
+
 // material reads a material by name, or by its numbers.
 func (r *reader) material(b block) models.Material {
 	var m models.Material
@@ -197,7 +202,7 @@ func (r *reader) material(b block) models.Material {
 		if ok {
 			m, _ = material(name)
 		}
-		for _, key := range []string{"conductivity", "density", "permeability"} {
+		for _, key := range metalKeys[1:] {
 			if b.has(key) {
 				b.fault(key, "stands beside a material that has its own", "keep either the material or the numbers")
 			}
@@ -273,34 +278,45 @@ func (r *reader) ground(n *node, path string) models.Ground {
 	if n == nil {
 		return g
 	}
-	b := r.block(n, path, "kind", "diameter", "rim")
+	b := r.block(n, path, append([]string{"kind", "diameter", "rim", "thickness"}, metalKeys...)...)
 	kind, ok := b.choice("kind", string(models.Infinite), string(models.Disc), string(models.Cup))
 	if g.Kind = models.GroundKind(kind); !ok && !b.has("kind") {
 		b.missing("kind", "write infinite, disc or cup")
 	}
 	g.Diameter, _ = b.quantity("diameter", Length, lengths)
 	g.Rim, _ = b.quantity("rim", Length, lengths)
-	unfit := func(key string, allowed bool) {
-		if ok && b.has(key) && !allowed {
-			b.fault(key, "does not go with a ground of kind "+string(g.Kind), "leave it away, or name the kind that has it")
+	g.Thickness, _ = b.quantity("thickness", Length, span{1e-5, 0.1})
+	if slices.ContainsFunc(metalKeys, b.has) {
+		g.Material = r.material(b)
+	}
+	unfit := func(allowed bool, keys ...string) {
+		for _, key := range keys {
+			if ok && b.has(key) && !allowed {
+				b.fault(key, "does not go with a ground of kind "+string(g.Kind), "leave it away, or name the kind that has it")
+			}
 		}
 	}
-	unfit("diameter", g.Kind != models.Infinite)
-	unfit("rim", g.Kind == models.Cup)
+	unfit(g.Finite(), append([]string{"diameter", "thickness"}, metalKeys...)...)
+	unfit(g.Kind == models.Cup, "rim")
 	return g
 }
 
 // wholeGround notes a plate or cup without its sizes, unless they vary.
-func (r *reader) wholeGround(b block, key string, g models.Ground, variesDiameter, variesRim bool) {
-	n := b.get(key)
+func (r *reader) wholeGround(b block, where string, g models.Ground, variesDiameter, variesRim bool) {
+	n := b.get(where)
 	if n == nil || g.Kind == "" {
 		return
 	}
-	if g.Kind != models.Infinite && g.Diameter == 0 && !variesDiameter {
-		r.add(n.line, join(b.path, key)+".diameter", "is missing", "write for example diameter: 200 mm")
+	lacks := func(key, example string) {
+		if own := n.find(key); own == nil || own.kind == null {
+			r.add(n.line, join(b.path, where)+"."+key, "is missing", "write for example "+key+": "+example)
+		}
 	}
-	if g.Kind == models.Cup && g.Rim == 0 && !variesRim {
-		r.add(n.line, join(b.path, key)+".rim", "is missing", "write for example rim: 60 mm")
+	if g.Finite() && !variesDiameter {
+		lacks("diameter", "200 mm")
+	}
+	if g.Kind == models.Cup && !variesRim {
+		lacks("rim", "60 mm")
 	}
 }
 

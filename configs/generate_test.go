@@ -87,6 +87,19 @@ func drawShape(t *rapid.T) models.LeadShape {
 	return rapid.SampledFrom([]models.LeadShape{models.Ramp, models.Flat}).Draw(t, "shape")
 }
 
+// drawSheet draws what a plate or cup is made of, or leaves it unsaid.
+func drawSheet(t *rapid.T, g *models.Ground) {
+	if !g.Finite() {
+		return
+	}
+	if flip(t, "sheet") {
+		g.Thickness = grid(t, "sheet", Length, 1e-5, 2e-3)
+	}
+	if flip(t, "metal") {
+		g.Material = drawMaterial(t)
+	}
+}
+
 func drawDesign(t *rapid.T) models.Design {
 	d := models.Design{
 		Title:          words(t, "title"),
@@ -122,6 +135,7 @@ func drawDesign(t *rapid.T) models.Design {
 	if d.Ground.Kind == models.Cup {
 		d.Ground.Rim = grid(t, "rim", Length, lengths.low, lengths.high)
 	}
+	drawSheet(t, &d.Ground)
 	if flip(t, "band") {
 		d.Band = drawBand(t)
 	}
@@ -148,6 +162,7 @@ func drawBrief(t *rapid.T) Brief {
 	s.Base.FeedsReflector = flip(t, "reflector")
 	s.Base.Feed.Impedance = grid(t, "impedance", Impedance, impedances.low, impedances.high)
 	s.Base.Ground.Kind = rapid.SampledFrom([]models.GroundKind{models.Infinite, models.Disc, models.Cup}).Draw(t, "ground")
+	drawSheet(t, &s.Base.Ground)
 	s.Base.Insulation = drawInsulation(t)
 	d.stock()
 	for _, q := range objectives.Quantities {
@@ -233,7 +248,11 @@ func (d *briefDraw) quantity(q objectives.Quantity) {
 		}
 	case objectives.GroundDiameter:
 		if s.Base.Ground.Kind != models.Infinite {
-			d.either(q, 1e-5, 10, &s.Base.Ground.Diameter)
+			// It has to reach round the feed's opening.
+			if len(s.Base.Diameter) > 0 {
+				s.Base.Diameter[0] = min(s.Base.Diameter[0], 1)
+			}
+			d.either(q, 2, 10, &s.Base.Ground.Diameter)
 		}
 	case objectives.GroundRim:
 		if s.Base.Ground.Kind == models.Cup {
@@ -325,6 +344,8 @@ func (d *briefDraw) limits(f objectives.Figure) {
 	switch {
 	case f == objectives.Length || f == objectives.Widest || f == objectives.WireLength:
 		low = 5e5 // beyond every winding drawn, so that there is room
+	case f == objectives.Mass:
+		low = 5e4 // beyond every ground drawn
 	case leastPossible(f) || f == objectives.VSWR:
 		low = 1
 	}
@@ -355,7 +376,11 @@ func (d *briefDraw) limits(f objectives.Figure) {
 func (d *briefDraw) model() {
 	t, br := d.t, &d.br
 	fidelity := func() string { return rapid.SampledFrom(Fidelities).Draw(t, "fidelity") }
-	switch rapid.IntRange(0, 3).Draw(t, "model") {
+	least := 0
+	if br.Spec.Asks(objectives.FrontToBack) {
+		least = 1 // the formulas have no rear
+	}
+	switch rapid.IntRange(least, 3).Draw(t, "model") {
 	case 0:
 		br.Ladder = []Rung{{Model: ClosedForm}}
 	case 1:

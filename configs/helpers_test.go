@@ -53,7 +53,7 @@ aims:
 limits:
   gain: {at_least: 8 dBic}
   vswr: {at_most: 2}
-  widest: {at_most: 120 mm}
+  widest: {at_most: 160 mm}
 cone: 15 deg
 trust_indicative: false
 margins: {diameter: 0.5 mm, spacing: 0.3 mm, feed_height: 0.2 mm, at: 95 %}

@@ -44,11 +44,7 @@ func WriteDesign(d models.Design) []byte {
 		p.line("title: %s", quote(d.Title))
 	}
 	p.winding(&d, true)
-	if g := d.Ground; g.Kind == models.Disc || g.Kind == models.Cup {
-		p.line("ground: %s", groundText(g))
-	} else {
-		p.line("ground: {kind: infinite}")
-	}
+	p.line("ground: %s", groundText(d.Ground))
 	if d.Band != (models.Band{}) {
 		p.line("band: %s", bandText(d.Band))
 	}
@@ -75,13 +71,23 @@ func bandText(b models.Band) string {
 	return fmt.Sprintf("{from: %s, to: %s, samples: %d}", show(b.From, Frequency), show(b.To, Frequency), b.Samples)
 }
 
+// groundText leaves the sheet that nobody has to name unnamed.
 func groundText(g models.Ground) string {
+	if !g.Finite() {
+		return "{kind: infinite}"
+	}
 	text := "{kind: " + string(g.Kind)
 	if g.Diameter > 0 {
 		text += ", diameter: " + rounded(g.Diameter, Length)
 	}
-	if g.Rim > 0 {
+	if g.Rim > 0 && g.Kind == models.Cup {
 		text += ", rim: " + rounded(g.Rim, Length)
+	}
+	if g.Thickness > 0 {
+		text += ", thickness: " + rounded(g.Thickness, Length)
+	}
+	if g.Material != (models.Material{}) {
+		text += ", " + materialText(g.Material)
 	}
 	return text + "}"
 }

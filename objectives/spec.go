@@ -3,7 +3,11 @@
 // decides, and the [Problem] that turns a point into a score.
 package objectives
 
-import "turnwise/models"
+import (
+	"slices"
+
+	"turnwise/models"
+)
 
 // Spec is what is asked for, resolved and in SI: which dimensions vary, what
 // stays, and what is wanted of the figures.
@@ -21,6 +25,11 @@ type Spec struct {
 	Cone            float64 // rad
 	TrustIndicative bool
 	Margins         Margins
+}
+
+// Asks reports whether an aim or a limit is about the figure.
+func (s *Spec) Asks(f Figure) bool {
+	return slices.ContainsFunc(s.Aims, func(a Aim) bool { return a.Figure == f }) || slices.ContainsFunc(s.Limits, func(l Limit) bool { return l.Figure == f })
 }
 
 // Quantity names a dimension that may vary, as a brief does.
