@@ -32,7 +32,7 @@ func (s *sheet) feedPage() leaf {
 // seen from outside, below a place.
 func (s *sheet) riserSection(l leaf, at drawing.Point) {
 	r, c := s.Resolution, s.Curve
-	pin, wide, height := 1e3*s.Design.PinDiameter(), opening*1e3*s.Design.PinDiameter(), 1e3*c.Riser()
+	pin, wide, height := 1e3*s.Design.PinDiameter(), models.Opening*1e3*s.Design.PinDiameter(), 1e3*c.Riser()
 	reach := math.Max(2*wide, 1.5*height)
 	name, k := fitScale(2*reach, 1.7*height, 110, 40)
 	h := l.Heading(at, across, heading, "Section through the riser, seen from outside, scale "+name)
