@@ -71,9 +71,9 @@ var Figures = [FigureCount]FigureInfo{
 	Efficiency:     {Name: "efficiency", Column: "efficiency", More: true, Scale: 0.1, Words: "lowest efficiency over the band"},
 	FrontToBack:    {Name: "front_to_back", Column: "front_to_back_db", Unit: Decibel, More: true, Scale: 1, Words: "lowest front to back ratio over the band"},
 	Length:         {Name: "length", Column: "length_m", Unit: Metre, Scale: 0.1, Geometry: true, Words: "height of the highest point of the winding"},
-	Widest:         {Name: "widest", Column: "widest_m", Unit: Metre, Scale: 0.02, Geometry: true, Words: "overall diameter"},
+	Widest:         {Name: "widest", Column: "widest_m", Unit: Metre, Scale: 0.02, Geometry: true, Words: "overall diameter, a plate or cup counted"},
 	WireLength:     {Name: "wire_length", Column: "wire_length_m", Unit: Metre, Scale: 0.5, Geometry: true, Words: "wire from the plane to the open end"},
-	Mass:           {Name: "mass", Column: "mass_kg", Unit: Kilogram, Scale: 0.1, Geometry: true, Words: "mass of the conductor"},
+	Mass:           {Name: "mass", Column: "mass_kg", Unit: Kilogram, Scale: 0.1, Geometry: true, Words: "mass of the conductor, and of a plate or cup"},
 	BendRadius:     {Name: "bend_radius", Column: "bend_radius_m", Unit: Metre, More: true, Scale: 0.01, Geometry: true, Words: "least bend radius along the winding"},
 }
 

@@ -194,8 +194,12 @@ func (l *Layout) Point(d models.Design) (space.Point, []string) {
 			notes = append(notes, fmt.Sprintf("%s: %g taken as %g, the nearest that may vary", c.Name, want, p[i]))
 		}
 	}
-	if got := l.Design(p); got.Handedness != d.Handedness {
+	got := l.Design(p)
+	if got.Handedness != d.Handedness {
 		notes = append(notes, fmt.Sprintf("handedness: %s taken as %s, which the brief asks for", d.Handedness, got.Handedness))
+	}
+	if got.Ground.Kind != d.Ground.Kind && (got.Ground.Finite() || d.Ground.Finite()) {
+		notes = append(notes, fmt.Sprintf("ground: %s taken as %s, which the brief asks for", d.Ground.Kind, got.Ground.Kind))
 	}
 	return p, notes
 }

@@ -117,11 +117,26 @@ func (p *Problem) Domain() optimize.Domain {
 func (p *Problem) Evaluate(ctx context.Context, c optimize.Candidate) (optimize.Score, error) {
 	rung := min(c.Rung, len(p.rungs)-1)
 	s, err := p.score(ctx, c.Point, p.rungs[rung], p.Band.Hz(), p.needed())
-	if rung < len(p.rungs)-1 {
-		neutral(s.Aims)
-		neutral(s.Limits)
+	if rung == len(p.rungs)-1 {
+		return s, errors.Join(err, p.unanswered(&s))
 	}
+	neutral(s.Aims)
+	neutral(s.Limits)
 	return s, err
+}
+
+// unanswered names a figure under an aim or a limit that the model gave no
+// answer to. A score without figures has failed already.
+func (p *Problem) unanswered(s *optimize.Score) error {
+	if s.Figures == nil {
+		return nil
+	}
+	for _, f := range p.Judged() {
+		if math.IsNaN(s.Figures[f]) {
+			return fmt.Errorf("%s does not apply to this design as the model answers it, so its aim or limit cannot be judged", f)
+		}
+	}
+	return nil
 }
 
 // neutral puts 0 where a model below the finest has no answer.
@@ -141,7 +156,8 @@ func (p *Problem) Confirm(ctx context.Context, pt space.Point, whole bool) (opti
 	if whole {
 		want = everyFigure
 	}
-	return p.score(ctx, pt, p.finest(), FineSweep(p.Band), want)
+	s, err := p.score(ctx, pt, p.finest(), FineSweep(p.Band), want)
+	return s, errors.Join(err, p.unanswered(&s))
 }
 
 // fineStep is the widest step of a confirming sweep, as a share of mid-band.

@@ -11,6 +11,7 @@ import (
 	"pgregory.net/rapid"
 
 	"turnwise/models"
+	"turnwise/models/helix"
 	"turnwise/objectives"
 	"turnwise/optimize"
 	"turnwise/optimize/space"
@@ -25,6 +26,7 @@ type tones struct {
 	port       complex128
 	fail       error
 	asked      *[]models.Question
+	rearless   bool // as formulas are
 }
 
 func (s tones) Identity() string { return "tones 1" }
@@ -43,7 +45,10 @@ func (s tones) Simulate(_ context.Context, d models.Design, q models.Question) (
 		a.Gain = models.Circular{Right: g, Left: g / 100}
 		a.ConeAxialRatio = models.Circular{Right: s.axialRatio + 1, Left: 60}
 		a.EdgeGain = models.Circular{Right: g / 2, Left: g / 200}
-		a.Beamwidth, a.Sidelobe, a.PeakDirectivity, a.RearGain = 0.5, -12, g/0.9, g/100
+		a.Beamwidth, a.Sidelobe, a.PeakDirectivity = 0.5, -12, g/0.9
+		if d.Ground.Finite() && !s.rearless {
+			a.RearGain = g / 100
+		}
 		r.Samples = append(r.Samples, a)
 	}
 	return r, nil
@@ -91,8 +96,8 @@ func problem(t *testing.T, s objectives.Spec, sim models.Simulator) *objectives.
 
 // uniform is a canonical point that passes the screens of spec: 6 turns of
 // 95 mm and 68 mm a turn.
-func uniform(p *objectives.Problem) space.Point {
-	return p.Layout.Space.Canonical(space.Point{6, 0.095, 0.095, 0.095, 0.068, 0.068, 1, 6e-3})
+func uniform(p *objectives.Problem, more ...float64) space.Point {
+	return p.Layout.Space.Canonical(append(space.Point{6, 0.095, 0.095, 0.095, 0.068, 0.068, 1, 6e-3}, more...))
 }
 
 func TestLayoutNamesColumns(t *testing.T) {
@@ -475,14 +480,140 @@ func TestFiguresAreFoundByNameAndColumn(t *testing.T) {
 	}
 }
 
-func TestFrontToBackOfAPlate(t *testing.T) {
+// plated is a brief whose antennas stand on a plate, with front to back as an
+// aim.
+func plated() objectives.Spec {
 	s := spec()
 	s.Base.Ground = models.Ground{Kind: models.Disc, Diameter: 0.3}
 	s.Aims = []objectives.Aim{{Figure: objectives.FrontToBack, Most: true}}
-	p := problem(t, s, tones{gain: flat(10), sense: models.Right, port: 50})
+	return s
+}
+
+func TestFrontToBackOfAPlate(t *testing.T) {
+	falling := func(hz float64) float64 { return 10 - hz/1e9 }
+	var asked []models.Question
+	p := problem(t, plated(), tones{gain: falling, sense: models.Right, port: 50, asked: &asked})
 	got, err := p.Evaluate(context.Background(), optimize.Candidate{Point: uniform(p)})
-	if err != nil || math.Abs(got.Figures[objectives.FrontToBack]-20) > 1e-9 {
-		t.Errorf("front to back %v (%v), want 20 dB", got.Figures[objectives.FrontToBack], err)
+	if err != nil || math.Abs(got.Figures[objectives.FrontToBack]-20) > 1e-9 || math.Abs(got.Aims[0]+20) > 1e-9 {
+		t.Errorf("front to back %v, aim %v (%v), want 20 dB", got.Figures[objectives.FrontToBack], got.Aims, err)
+	}
+	if len(asked) != 1 || asked[0].Outputs&models.Cuts == 0 {
+		t.Errorf("asked %+v, cuts are not among it", asked)
+	}
+}
+
+// What has no rear has no front to back: the figure stays empty, an aim at it
+// has no answer, and on a rung below the finest it says nothing.
+func TestNoFrontToBackWithoutARear(t *testing.T) {
+	ctx := context.Background()
+	infinite := problem(t, spec(), tones{gain: flat(10), axialRatio: 1, sense: models.Right, port: 50})
+	if got, err := infinite.Confirm(ctx, uniform(infinite), true); err != nil || !math.IsNaN(got.Figures[objectives.FrontToBack]) {
+		t.Errorf("over an infinite plane: %v (%v)", got.Figures[objectives.FrontToBack], err)
+	}
+	formulas := tones{gain: flat(10), axialRatio: 1, sense: models.Right, port: 50, rearless: true}
+	s := plated()
+	aimed := problem(t, s, formulas)
+	for name, ask := range map[string]func() (optimize.Score, error){
+		"a candidate": func() (optimize.Score, error) { return aimed.Evaluate(ctx, optimize.Candidate{Point: uniform(aimed)}) },
+		"a member":    func() (optimize.Score, error) { return aimed.Confirm(ctx, uniform(aimed), true) },
+	} {
+		if _, err := ask(); err == nil || !strings.Contains(err.Error(), "front_to_back does not apply") {
+			t.Errorf("%s of a model without a rear: error %v", name, err)
+		}
+	}
+	full := formulas
+	full.rearless = false
+	ladder, err := objectives.NewProblem(s, objectives.Rung{Simulator: formulas, Model: "toy"}, objectives.Rung{Simulator: full, Model: "toy"})
+	if err != nil {
+		t.Fatal(err)
+	}
+	for rung, want := range []float64{0, -20} {
+		got, err := ladder.Evaluate(ctx, optimize.Candidate{Point: uniform(ladder), Rung: rung})
+		if err != nil || math.Abs(got.Aims[0]-want) > 1e-9 {
+			t.Errorf("rung %d of a ladder: aim %v (%v), want %g", rung, got.Aims, err, want)
+		}
+	}
+}
+
+// A plate counts in width and mass, and its dimensions vary in steps.
+func TestGroundThatVaries(t *testing.T) {
+	s := plated()
+	s.Base.Ground = models.Ground{Kind: models.Cup}
+	s.Vary = append(s.Vary,
+		objectives.Vary{Quantity: objectives.GroundDiameter, From: 0.2, To: 0.4, Step: 0.05, Knots: 1},
+		objectives.Vary{Quantity: objectives.GroundRim, From: 0.02, To: 0.08, Step: 0.02, Knots: 1})
+	p := problem(t, s, tones{gain: flat(10), sense: models.Right, port: 50})
+	n := len(p.Layout.Columns)
+	if a, b := p.Layout.Columns[n-2].Name, p.Layout.Columns[n-1].Name; a != "ground_diameter_m" || b != "ground_rim_m" {
+		t.Errorf("the last columns are %s and %s", a, b)
+	}
+	pt := uniform(p, 0.262, 0.0301)
+	d := p.Layout.Design(pt)
+	if math.Abs(d.Ground.Diameter-0.25) > 1e-12 || math.Abs(d.Ground.Rim-0.04) > 1e-12 {
+		t.Errorf("on the steps: %+v", d.Ground)
+	}
+	got, err := p.Evaluate(context.Background(), optimize.Candidate{Point: pt})
+	if err != nil {
+		t.Fatal(err)
+	}
+	bare := d
+	bare.Ground = models.Ground{}
+	wire, err := helix.Wind(&bare)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if w := got.Figures[objectives.Widest]; math.Abs(w-0.25) > 1e-12 {
+		t.Errorf("widest %g", w)
+	}
+	if m, want := got.Figures[objectives.Mass], wire.Geometry().Mass+d.Ground.Mass(); math.Abs(m-want) > 1e-12 || d.Ground.Mass() < 0.1 {
+		t.Errorf("mass %g, want %g", m, want)
+	}
+	back, notes := p.Layout.Point(d)
+	if back.Key() != pt.Key() || len(notes) != 0 {
+		t.Errorf("%v came back as %v: %q", pt, back, notes)
+	}
+	if _, notes = p.Layout.Point(bare); !strings.Contains(strings.Join(notes, "\n"), "taken as cup") {
+		t.Errorf("an infinite ground among cups: %q", notes)
+	}
+}
+
+// A winding needs air beside its cup's wall.
+func TestScreenOfACup(t *testing.T) {
+	s := plated()
+	s.Vary[1].To = 0.2
+	s.Base.Ground = models.Ground{Kind: models.Cup, Diameter: 0.196, Rim: 0.6}
+	p := problem(t, s, tones{gain: flat(10)})
+	for _, c := range []struct {
+		diameter float64
+		want     string
+	}{
+		{0.095, ""},
+		{0.1899, ""}, // 3.05 mm from the wall: 2 of radius and 1 of air
+		{0.191, "2.5 mm from the cup's wall, centre line; 3 mm is the least"},
+		{0.1935, "wider cup or a lower rim"},
+	} {
+		v, reason := p.Screen(p.Layout.Space.Canonical(space.Point{6, 0.095, 0.095, c.diameter, 0.068, 0.068, 1, 6e-3}))
+		if (v > 0) != (c.want != "") || !strings.Contains(reason, c.want) {
+			t.Errorf("a winding %g m wide at its end: violation %g, reason %q", c.diameter, v, reason)
+		}
+	}
+}
+
+// Hand seeds stand on the least plate of the hand rules, so that they have
+// room to stand.
+func TestHandSeedsOnAPlate(t *testing.T) {
+	s := plated()
+	s.Base.Ground.Diameter = 0
+	s.Vary = append(s.Vary, objectives.Vary{Quantity: objectives.GroundDiameter, From: 0.05, To: 0.6, Step: 0.05, Knots: 1})
+	p := problem(t, s, tones{gain: flat(10)})
+	seeds := p.HandSeeds(3)
+	if len(seeds) != 3 {
+		t.Fatalf("%d seeds", len(seeds))
+	}
+	for _, pt := range seeds { // 0.75 wavelengths at 1 GHz are 225 mm
+		if g := pt[len(pt)-1]; math.Abs(g-0.2) > 1e-12 && math.Abs(g-0.25) > 1e-12 {
+			t.Errorf("a seed stands on %g m", g)
+		}
 	}
 }
 

@@ -60,7 +60,7 @@ func readBand(row *Row, d *models.Design, r *models.Response) {
 		if r.Answered&models.Cuts != 0 {
 			worst(Beamwidth, s.Beamwidth*180/math.Pi)
 			worst(Sidelobe, math.Max(s.Sidelobe, -60))
-			if d.Ground.Kind == models.Disc || d.Ground.Kind == models.Cup {
+			if s.RearGain > 0 { // an infinite plane and the hand formulas have no rear
 				worst(FrontToBack, Decibels(gain)-Decibels(s.RearGain))
 			}
 		}

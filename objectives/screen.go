@@ -14,7 +14,7 @@ import (
 const (
 	leastTurnGap   = 3.0  // radii between the centre lines of neighbouring turns
 	leastRiser     = 2.5  // pin radii of riser
-	leastAirBelow  = 1e-3 // m of air between plane and conductor
+	leastAirBelow  = 1e-3 // m of air between plane or cup and conductor
 	lengthOfMatter = 0.01 // m: scales the screens that no figure scales
 )
 
@@ -50,6 +50,7 @@ func (p *Problem) screen(d *models.Design, stock *Stock, curve *helix.Curve) (vi
 	radius := d.Conductor.Diameter/2 + d.Insulation.Thickness
 	fail(leastTurnGap*radius-c.Turns, lengthOfMatter, "neighbouring turns are %.4g mm apart, centre to centre; %.4g mm is the least", c.Turns*1e3, leastTurnGap*radius*1e3)
 	fail(radius+leastAirBelow-c.Plane, lengthOfMatter, "the winding passes %.4g mm above the plane, centre line; %.4g mm is the least", c.Plane*1e3, (radius+leastAirBelow)*1e3)
+	fail(radius+leastAirBelow-c.Rim, lengthOfMatter, "the winding passes %.4g mm from the cup's wall, centre line; %.4g mm is the least", c.Rim*1e3, (radius+leastAirBelow)*1e3)
 	riser := leastRiser * d.PinDiameter() / 2
 	fail(riser-d.Feed.Height, lengthOfMatter, "the feed height is %.4g mm; %.4g mm is the least for this conductor", d.Feed.Height*1e3, riser*1e3)
 	if stock.Coil > 0 {

@@ -15,6 +15,10 @@ var (
 	handPitches        = []float64{13, 12, 14}
 )
 
+// handGround is the plate, in wavelengths across, that the hand rules want at
+// the least (Kraus, Antennas, 2nd ed. 1988, ch. 7; memory).
+const handGround = 0.75
+
 // HandSeeds are uniform windings as the hand rules would have them, at the
 // nearest canonical points, the middling one first; only those that pass the
 // screens. At most most of them.
@@ -25,7 +29,7 @@ func (p *Problem) HandSeeds(most int) []space.Point {
 	for _, share := range []float64{0.5, 0.25, 0.75, 0, 1} {
 		for i := range handCircumferences {
 			for j := range handPitches {
-				pt := p.handSeed(share, handCircumferences[i]*wavelength, handPitches[j]*math.Pi/180, len(seeds))
+				pt := p.handSeed(share, wavelength, handCircumferences[i], handPitches[j]*math.Pi/180, len(seeds))
 				if v, _ := p.Screen(pt); v > 0 || seen[pt.Key()] {
 					continue
 				}
@@ -39,10 +43,12 @@ func (p *Problem) HandSeeds(most int) []space.Point {
 	return seeds
 }
 
-// handSeed is the winding of one circumference (m) and pitch (rad), share of
-// the way from fewest to most turns, from the turn-th row of the stock; what
-// the hand rules do not speak of stays at the low end, where it does least.
-func (p *Problem) handSeed(share, circumference, pitch float64, turn int) space.Point {
+// handSeed is the winding of one circumference (wavelengths) and pitch (rad),
+// share of the way from fewest to most turns, from the turn-th row of the
+// stock; what the hand rules do not speak of stays at the low end, where it
+// does least.
+func (p *Problem) handSeed(share, wavelength, circle, pitch float64, turn int) space.Point {
+	circumference := circle * wavelength
 	pt := make(space.Point, len(p.Layout.Space))
 	for i, c := range p.Layout.Columns {
 		v := &p.Layout.Space[i]
@@ -55,6 +61,8 @@ func (p *Problem) handSeed(share, circumference, pitch float64, turn int) space.
 			pt[i] = circumference * math.Tan(pitch)
 		case Conductor:
 			pt[i] = float64(turn % len(p.Stock))
+		case GroundDiameter:
+			pt[i] = handGround * wavelength
 		case TransformerImpedance:
 			pt[i] = (v.From + v.To) / 2
 		default:

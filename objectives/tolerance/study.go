@@ -3,7 +3,6 @@ package tolerance
 import (
 	"context"
 	"fmt"
-	"math"
 	"slices"
 	"sync"
 
@@ -179,11 +178,6 @@ func (s *Study) answer(ctx context.Context, d models.Design, ear *listener) Copy
 	}
 	copy(c.Figures[:], score.Figures)
 	c.Limits = score.Limits
-	for i, x := range c.Limits {
-		if math.IsNaN(x) {
-			return Copy{Err: fmt.Sprintf("%s does not apply to this design, so its limit cannot be judged", p.Limits[i].Figure)}
-		}
-	}
 	c.Reflection = reflections(ear.band, d.Feed.Impedance)
 	return c
 }
