@@ -57,7 +57,8 @@ const (
 	coneAzimuths = 12
 	coneStep     = 3 * math.Pi / 180 // widest step from the axis to the cone's edge
 	planes       = 12
-	rays         = 90 // of half a plane, the axis apart
+	rays         = 90 // from the axis to the plane's horizon
+	rear         = 30 // steps about the rear axis that count as the rear
 )
 
 // cone answers axial ratio and gain from the axis to the cone's edge.
@@ -90,12 +91,18 @@ func sensed(u models.Circular) models.Circular {
 	return models.Circular{Right: db, Left: db}
 }
 
-// cuts answers beamwidth, sidelobe and peak from planes through the axis,
-// and keeps the rays where they were asked for.
+// cuts answers beamwidth, sidelobe, peak and rear gain from planes through the
+// axis, down to the infinite plane or around a plate, and keeps the rays where
+// they were asked for.
 func (w *worker) cuts(s *models.Sample, per float64, keep bool) {
 	const step = math.Pi / 2 / rays
+	rays := rays
+	if w.wound.Plate.Finite() {
+		rays *= 2
+	}
 	axis := s.Directivity * s.Efficiency
 	peak, lobe, width := axis, 0.0, 0.0
+	s.RearGain = 0
 	if keep {
 		s.Pattern = make([]models.Cut, planes)
 	}
@@ -110,15 +117,18 @@ func (w *worker) cuts(s *models.Sample, per float64, keep bool) {
 			sign := float64(1 - 2*side)
 			for i := 1; i <= rays; i++ {
 				theta := step * float64(i)
-				u := scaled(w.intensity(toward(sign*theta, azimuth)), per)
+				u := scaled(w.around(toward(sign*theta, azimuth)), per)
 				reading.see(theta, total(u))
+				if i >= 180-rear {
+					s.RearGain = max(s.RearGain, total(u))
+				}
 				if keep {
 					s.Pattern[p].Rays[rays+i*int(sign)] = ray(sign*theta, u)
 				}
 			}
 			peak = max(peak, reading.peak)
 			lobe = max(lobe, reading.lobe)
-			width += reading.half(math.Pi / 2)
+			width += reading.half(step * float64(rays))
 		}
 	}
 	s.PeakDirectivity = peak / s.Efficiency

@@ -9,10 +9,10 @@ import (
 // The far field in direction r̂ is E = −jkη e^{−jkr}/(4πr)·N⊥ with the
 // radiation vector N = ∫ I t e^{jk r·r̂} ds, images included.
 
-// radiation is N in the direction of the unit vector (x, y, z).
-func (w *work) radiation(x, y, z float64) (n [3]complex128) {
+// radiation is N of the wires in the direction of the unit vector (x, y, z),
+// with their images or without.
+func (w *work) radiation(x, y, z float64, over bool) (n [3]complex128) {
 	m, k := &w.mesh, w.wave
-	over := w.antenna.Plane
 	var sum [6]float64
 	for q, i := range w.field {
 		flat := k * (m.x[q]*x + m.y[q]*y)
@@ -47,9 +47,40 @@ func toward(theta, phi float64) (d direction) {
 // intensity is the radiation intensity in both senses, W per steradian:
 // with E_R = (E_θ + jE_φ)/√2, U = k²η/(32π²)·|N|².
 func (w *work) intensity(d direction) models.Circular {
-	n := w.radiation(d.st*d.cp, d.st*d.sp, d.ct)
-	theta := complex(d.ct*d.cp, 0)*n[0] + complex(d.ct*d.sp, 0)*n[1] - complex(d.st, 0)*n[2]
-	phi := complex(-d.sp, 0)*n[0] + complex(d.cp, 0)*n[1]
+	if w.antenna.Plate.Finite() {
+		return w.overPlate(d, math.Abs(d.ct) < openCos)
+	}
+	theta, phi := w.across(d, w.antenna.Plane)
+	return w.senses(theta, phi)
+}
+
+// around is intensity where all directions must be seen alike.
+func (w *work) around(d direction) models.Circular {
+	if w.antenna.Plate.Finite() {
+		return w.overPlate(d, true)
+	}
+	return w.intensity(d)
+}
+
+// overPlate is the intensity over a plate, by the closed view or the open one.
+func (w *work) overPlate(d direction, closed bool) models.Circular {
+	theta, phi := w.shore.view(w, closed).field(w.wave, d)
+	if closed || d.ct > 0 {
+		t, p := w.across(d, !closed)
+		theta, phi = theta+t, phi+p
+	}
+	return w.senses(theta, phi)
+}
+
+// across is the wires' N across a direction.
+func (w *work) across(d direction, over bool) (theta, phi complex128) {
+	n := w.radiation(d.st*d.cp, d.st*d.sp, d.ct, over)
+	theta = complex(d.ct*d.cp, 0)*n[0] + complex(d.ct*d.sp, 0)*n[1] - complex(d.st, 0)*n[2]
+	return theta, complex(-d.sp, 0)*n[0] + complex(d.cp, 0)*n[1]
+}
+
+// senses makes intensities of a radiation vector.
+func (w *work) senses(theta, phi complex128) models.Circular {
 	scale := w.wave * w.wave * eta / (32 * math.Pi * math.Pi) / 2
 	return models.Circular{
 		Right: scale * square(theta+complex(-imag(phi), real(phi))),
@@ -76,11 +107,12 @@ func (w *work) radiated() float64 {
 		flat = max(flat, math.Hypot(m.x[q]-cx, m.y[q]-cy))
 		tall = max(tall, math.Abs(m.z[q]))
 	}
-	reach := w.wave * math.Hypot(flat, tall)
+	flat = max(flat, w.antenna.Plate.Radius)
+	reach := w.wave * math.Hypot(flat, max(tall, w.antenna.Plate.Rim))
 	around := harmonics(w.wave * flat)
 	steps := harmonics(reach)/2 + 1
 	lo := -1.0
-	if w.antenna.Plane {
+	if w.antenna.Plane && !w.antenna.Plate.Finite() {
 		lo = 0
 	}
 	return w.sphere(steps, around, lo)
@@ -105,7 +137,7 @@ func (w *work) sphere(steps, around int, lo float64) float64 {
 			ring := 0.0
 			for i := range around {
 				sp, cp := math.Sincos(2 * math.Pi * (float64(i) + 0.5) / float64(around))
-				ring += total(w.intensity(direction{st, ct, sp, cp}))
+				ring += total(w.around(direction{st, ct, sp, cp}))
 			}
 			sum += ring * g.w[j]
 		}

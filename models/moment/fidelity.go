@@ -26,16 +26,17 @@ type settings struct {
 	graded     int     // nodes of graded rules through a logarithm
 	smooth     int     // nodes a side where nothing is singular
 	apart      int     // nodes a side for near pairs that stand apart
+	beyond     int     // elements of a plate's meridian beyond its edge
 }
 
 func (f Fidelity) settings() (settings, bool) {
 	switch f {
 	case Draft:
-		return settings{degree: 4, turn: 4.2, wave: 3.8, least: 1, points: 3, edge: 4, near: 1.2, graded: 8, smooth: 4, apart: 4}, true
+		return settings{degree: 4, turn: 4.2, wave: 3.8, least: 1, points: 3, edge: 4, near: 1.2, graded: 8, smooth: 4, apart: 4, beyond: 7}, true
 	case Standard, "":
-		return settings{degree: 4, turn: 5.4, wave: 4.4, least: 1, points: 3, edge: 4, near: 1.2, graded: 10, smooth: 5, apart: 5}, true
+		return settings{degree: 4, turn: 5.4, wave: 4.4, least: 1, points: 3, edge: 4, near: 1.2, graded: 10, smooth: 5, apart: 5, beyond: 9}, true
 	case Fine:
-		return settings{degree: 4, turn: 9, wave: 8, least: 2, points: 4, edge: 5, near: 1.6, graded: 16, smooth: 8, apart: 8}, true
+		return settings{degree: 4, turn: 9, wave: 8, least: 2, points: 4, edge: 5, near: 1.6, graded: 16, smooth: 8, apart: 8, beyond: 14}, true
 	}
 	return settings{}, false
 }

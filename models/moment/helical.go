@@ -2,6 +2,7 @@ package moment
 
 import (
 	"context"
+	"errors"
 	"fmt"
 	"math"
 
@@ -46,7 +47,7 @@ func (w *worker) answer(ctx context.Context, set settings, d *models.Design, q m
 		return err
 	}
 	w.design, w.question, w.samples = d, q, samples
-	if err := w.touching(); err != nil {
+	if err := errors.Join(w.touching(), w.sheltered()); err != nil {
 		return err
 	}
 	if err := w.wires(set, q.Hz[len(q.Hz)-1]); err != nil {
@@ -66,6 +67,48 @@ func (w *worker) touching() error {
 	return nil
 }
 
+// plateOf is a design's ground.
+func plateOf(g models.Ground) Plate {
+	switch g.Kind {
+	case models.Disc:
+		return Plate{Radius: g.Diameter / 2}
+	case models.Cup:
+		return Plate{Radius: g.Diameter / 2, Rim: g.Rim}
+	}
+	return Plate{}
+}
+
+// sheltered refuses a plate that ends before the riser's opening does, that
+// the winding overhangs, or whose rim it touches.
+func (w *worker) sheltered() error {
+	p := plateOf(w.design.Ground)
+	if !p.Finite() {
+		return nil
+	}
+	d := w.design
+	thick := d.Conductor.Diameter/2 + max(d.Insulation.Thickness, 0)
+	if foot := d.Diameter[0]/2 + frillRatio*d.PinDiameter()/2; foot >= p.Radius {
+		return fmt.Errorf("ground.diameter: a plate %.4g mm across ends inside the riser's opening; more than %.4g mm are due", 2e3*p.Radius, 2e3*foot)
+	}
+	steps := int(math.Ceil(32 * d.Turns))
+	for i := range steps + 1 {
+		t := d.Turns * float64(i) / float64(steps)
+		over, z := w.curve.Diameter(t)/2-p.Radius, w.curve.Height(t)
+		if p.Rim > 0 && z <= p.Rim+thick && over > -thick {
+			return fmt.Errorf("ground.diameter: the winding, %.4g mm across, touches the rim of a cup of %.4g mm", 2e3*(over+p.Radius+thick), 2e3*p.Radius)
+		}
+		if over > 0 && z < overhang*over {
+			return fmt.Errorf("ground.diameter: the winding, %.4g mm across, overhangs a plate of %.4g mm at a height of only %.4g mm; a plate as wide as the winding is due", 2e3*(over+p.Radius), 2e3*p.Radius, 1e3*z)
+		}
+	}
+	return nil
+}
+
+// overhang is how many times as high over a plate as beyond its edge a wire
+// must be for the plane's current there to be an outgoing wave on the slanting
+// meridian too.
+var overhang = 1.5 * math.Tan(slantTurn)
+
 // wires makes riser and winding wires. The winding is cut where a strip
 // ends, since the charge may jump there.
 func (w *worker) wires(set settings, highest float64) error {
@@ -79,7 +122,7 @@ func (w *worker) wires(set settings, highest float64) error {
 	}
 	riser.Elements = set.elements(0, w.curve.Riser()*highest/models.LightSpeed)
 	a := &w.wound
-	a.Plane = true
+	a.Plane, a.Plate = true, plateOf(d.Ground)
 	a.Wires = append(a.Wires[:0], riser)
 	from := 0.0
 	if s := d.Feed.Strip; s.Turns > 0 {

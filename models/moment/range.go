@@ -60,8 +60,8 @@ func (w *worker) warnings(hz []float64) []string {
 	if e := w.curve.ExcessPhase(high); e > mostExcess {
 		warn("the excess phase is %.3g at %.5g GHz: past %.3g the gain falls off a cliff, so look at it over the whole band", e, high/1e9, mostExcess)
 	}
-	if k := d.Ground.Kind; k == models.Disc || k == models.Cup {
-		warn("the %s is taken for an infinite plane", k)
+	if p := plateOf(d.Ground); p.Finite() && w.shore.short {
+		warn("the winding comes so close to the edge of the %s that more than %d azimuthal modes pass between them", d.Ground.Kind, w.shore.modes)
 	}
 	return out
 }

@@ -9,11 +9,19 @@ import (
 	"turnwise/models"
 )
 
-// Statement is what the model says of itself with every answer.
-const Statement = "full wave, thin-wire method of moments on an infinite perfectly conducting plane: two such solutions agree to 0.03 dB, " +
-	"and inside its range the thin wire is worth about 0.05 dB and 10 % in impedance. The plane is assumed infinite: " +
-	"on a real plate the gain on the axis changes by −1.4 to −3.6 dB at 0.5 wavelengths across, −1.4 at 0.75, −0.7 to +0.2 at 1, " +
-	"+0.9 to +1.7 at 1.5, and still by 0.55 dB either way at 16"
+// What the model says of itself with every answer, by the ground.
+const (
+	worth = "two such solutions agree to 0.03 dB, and inside its range the thin wire is worth about 0.05 dB and 10 % in impedance"
+
+	// Statement is that of the infinite plane.
+	Statement = "full wave, thin-wire method of moments on an infinite perfectly conducting plane: " + worth + ". The plane is assumed infinite: " +
+		"on a real plate the gain on the axis changes by −1.4 to −3.6 dB at 0.5 wavelengths across, −1.4 at 0.75, −0.7 to +0.2 at 1, " +
+		"+0.9 to +1.7 at 1.5, and still by 0.55 dB either way at 16"
+
+	// PlateStatement is that of a disc or a cup.
+	PlateStatement = "full wave, thin-wire method of moments over a finite perfectly conducting plate, a surface of revolution: " + worth +
+		". The plate is taken for thin and alone: no mast, boom or dish behind it"
+)
 
 // Solver is the full-wave simulator of helical antennas. It is safe for
 // concurrent use: every question takes a worker of its own, with all the room
@@ -21,6 +29,7 @@ const Statement = "full wave, thin-wire method of moments on an infinite perfect
 type Solver struct {
 	fidelity Fidelity
 	set      settings
+	plates   plates
 	workers  sync.Pool
 }
 
@@ -35,7 +44,13 @@ func New(f Fidelity) (*Solver, error) {
 	if !ok {
 		return nil, fmt.Errorf("fidelity %q: there is none such; write draft, standard or fine", string(f))
 	}
-	return &Solver{fidelity: f, set: set, workers: sync.Pool{New: func() any { return newWorker() }}}, nil
+	s := &Solver{fidelity: f, set: set}
+	s.workers.New = func() any {
+		w := newWorker()
+		w.shore.store = &s.plates
+		return w
+	}
+	return s, nil
 }
 
 // Identity names the version, the fidelity and the instructions, whose
@@ -60,6 +75,9 @@ func (s *Solver) Simulate(ctx context.Context, d models.Design, q models.Questio
 	w := s.workers.Get().(*worker)
 	defer s.workers.Put(w)
 	r := models.Response{Samples: make([]models.Sample, len(q.Hz)), Answered: q.Outputs | models.Axis, Statement: Statement}
+	if plateOf(d.Ground).Finite() {
+		r.Statement = PlateStatement
+	}
 	if err := w.answer(ctx, s.set, &d, q, r.Samples); err != nil {
 		return models.Response{}, err
 	}

@@ -25,6 +25,7 @@ type work struct {
 	volts   []complex128   // of the ports, what the current is the answer to
 	field   []complex128   // ∫-weighted current on the grid points
 	gram    [][maxOrder][maxOrder]float64
+	shore   shore
 
 	antenna *Antenna
 	hz      float64
@@ -74,7 +75,7 @@ func (w *work) prepare(a *Antenna, set settings, hz []float64) error {
 	w.current = cleared(w.current, n)
 	w.loss = cleared(w.loss, len(a.Wires))
 	w.field = cleared(w.field, len(m.x))
-	return nil
+	return w.shore.prepare(m, a.Plate, set, hz)
 }
 
 // wave is the wave number, rad/m.
@@ -101,6 +102,9 @@ func (w *work) block(ctx context.Context, hz []float64, at, count int, v visitor
 		}
 		w.hz, w.wave = hz[at+f], w.k[f]
 		w.complete(w.z[f])
+		if err := w.shore.complete(m, at+f, w.wave, w.z[f], w.static.both); err != nil {
+			return err
+		}
 		if err := w.factors.factor(w.z[f], n); err != nil {
 			return err
 		}
@@ -214,6 +218,7 @@ func (w *work) excite(port int) {
 
 // spreadOut takes the current to the grid points.
 func (w *work) spreadOut() {
+	w.shore.seen = [2]bool{}
 	m := &w.mesh
 	for q := range w.field {
 		e := &m.elements[m.owner[q]]

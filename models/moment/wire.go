@@ -46,11 +46,12 @@ type Coat struct {
 	Permittivity float64 // relative
 }
 
-// Antenna is a set of wires with its ports, in free space or over an
-// infinite perfectly conducting plane at z = 0.
+// Antenna is a set of wires with its ports, in free space, over an infinite
+// perfectly conducting plane at z = 0 or over a finite plate there.
 type Antenna struct {
 	Wires []Wire
 	Plane bool
+	Plate Plate // in the plane's place; zero: the infinite plane
 	Ports []Port
 }
 
@@ -114,7 +115,7 @@ func (a *Antenna) check() error {
 			fault("port %d: gap of %g m; above zero is due", i, p.Gap)
 		}
 	}
-	return errors.Join(errs...)
+	return errors.Join(append(errs, a.Plate.check(a.Plane))...)
 }
 
 // Straight is the straight line from A (t = 0) to B (t = 1).

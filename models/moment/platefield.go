@@ -1,0 +1,297 @@
+package moment
+
+import "math"
+
+// The plate's far field. Of the modes on a ring, e^{jk r·r̂} makes the Bessel
+// functions B_m = jᵐJ_m(kρ sin θ):
+//
+//	N_θ = 2π Σ_m e^{jmφ} Σ e^{jkz cos θ} [T (cos θ sin B⁺ − sin θ cos B_m) − jF cos θ B⁻]
+//	N_φ = 2π Σ_m e^{jmφ} Σ e^{jkz cos θ} [T sin B⁻ + jF B⁺]
+//
+// with B⁺ = (B_{m+1} + B_{m−1})/2 and B⁻ = (B_{m+1} − B_{m−1})/2j.
+//
+// There are two ways to see it. The open view is the infinite plane's field,
+// which is none below, and what the plate's currents and those taken off
+// beyond the edge add; it costs next to nothing but fails towards the horizon,
+// where the latter die away too slowly. The closed view has the wires without
+// images and all the current of the plate itself, for which the plane's
+// current must be found all over the plate.
+
+// openTo is how far from the axis, above or below, the open view serves.
+const openTo = 35 * math.Pi / 180
+
+var openCos = math.Cos(openTo)
+
+// vista is a view's currents and what directions have seen of them.
+type vista struct {
+	nodes  []fieldNode
+	at     []complex128 // T and F of the nodes: [node][signed mode][2], weights included
+	modes  int
+	seen   map[float64]int
+	toward []complex128 // [look][signed mode][2]: N_θ, N_φ
+	bessel []complex128
+}
+
+// fieldNode is a ring of current.
+type fieldNode struct {
+	rho      complex128
+	z        float64
+	sin, cos float64
+}
+
+func (v *vista) reset(modes int) {
+	v.modes = modes
+	v.nodes, v.at, v.toward = v.nodes[:0], v.at[:0], v.toward[:0]
+	if v.seen == nil {
+		v.seen = map[float64]int{}
+	}
+	clear(v.seen)
+	v.bessel = cleared(v.bessel, modes+2)
+}
+
+// add makes room for one more ring and returns its currents.
+func (v *vista) add(n fieldNode) []complex128 {
+	v.nodes = append(v.nodes, n)
+	from := len(v.at)
+	for range 2 * (2*v.modes + 1) {
+		v.at = append(v.at, 0)
+	}
+	return v.at[from:]
+}
+
+// field is N_θ and N_φ in a direction.
+func (v *vista) field(k float64, d direction) (theta, phi complex128) {
+	sign := 1.0
+	if d.st < 0 {
+		d = direction{-d.st, d.ct, -d.sp, -d.cp}
+		sign = -1
+	}
+	look := v.look(k, d.st, d.ct)
+	turn, step := complex(1, 0), complex(d.cp, d.sp)
+	m := v.modes
+	theta, phi = look[2*m], look[2*m+1]
+	for i := 1; i <= m; i++ {
+		turn *= step
+		back := complex(real(turn), -imag(turn))
+		theta += turn*look[2*(m+i)] + back*look[2*(m-i)]
+		phi += turn*look[2*(m+i)+1] + back*look[2*(m-i)+1]
+	}
+	return theta * complex(sign, 0), phi * complex(sign, 0)
+}
+
+// look is the modes towards an angle from the axis.
+func (v *vista) look(k, st, ct float64) []complex128 {
+	size := 2 * (2*v.modes + 1)
+	if i, ok := v.seen[ct]; ok {
+		return v.toward[i*size : (i+1)*size]
+	}
+	i := len(v.toward) / size
+	v.seen[ct] = i
+	for range size {
+		v.toward = append(v.toward, 0)
+	}
+	out := v.toward[i*size:]
+	for j := range v.nodes {
+		v.radiate(k, st, ct, &v.nodes[j], v.at[j*size:(j+1)*size], out)
+	}
+	return out
+}
+
+// radiate adds a ring to the modes towards an angle.
+func (v *vista) radiate(k, st, ct float64, n *fieldNode, at, out []complex128) {
+	besselModes(complex(k*st, 0)*n.rho, v.bessel)
+	c, s := unit(k * n.z * ct)
+	phase := complex(2*math.Pi*c, 2*math.Pi*s)
+	for m := -v.modes; m <= v.modes; m++ {
+		b := v.bessel
+		above, below := b[abs(m+1)], b[abs(m-1)]
+		plus, minus := (above+below)/2, (above-below)*complex(0, -0.5)
+		i := 2 * (v.modes + m)
+		t, f := at[i]*phase, at[i+1]*phase
+		out[i] += t*(complex(ct*n.sin, 0)*plus-complex(st*n.cos, 0)*b[abs(m)]) - complex(0, ct)*f*minus
+		out[i+1] += t*complex(n.sin, 0)*minus + complex(0, 1)*f*plus
+	}
+}
+
+func abs(m int) int {
+	if m < 0 {
+		return -m
+	}
+	return m
+}
+
+// amplitudes finds those of all functions under the wires' current, mode by
+// mode.
+func (s *shore) amplitudes(current []complex128) {
+	q, signed, n := s.entries(), 2*s.modes+1, s.count
+	s.sum = cleared(s.sum, q)
+	s.amplitude = cleared(s.amplitude, signed*n)
+	for m := -s.modes; m <= s.modes; m++ {
+		clear(s.sum)
+		for fn, i := range current {
+			y := s.sent(fn, m)
+			for j := range y {
+				s.sum[j] += i * y[j]
+			}
+		}
+		s.turned(m, s.sum)
+		mode := &s.echo.modes[abs(m)]
+		out := s.amplitude[(s.modes+m)*n:][:n]
+		for i := range out {
+			out[i] = dot(mode.current[i*q:(i+1)*q], s.sum)
+		}
+		if m < 0 {
+			for i, around := range s.around {
+				if around {
+					out[i] = -out[i]
+				}
+			}
+		}
+	}
+}
+
+// turned turns the azimuthal entries of a mode below zero: the plate answers
+// it as its like above.
+func (s *shore) turned(m int, y []complex128) {
+	if m >= 0 {
+		return
+	}
+	for j := range y {
+		if s.azimuthal(j) {
+			y[j] = -y[j]
+		}
+	}
+}
+
+// onNodes is the rule on each patch that a view takes its currents from.
+const onNodes = 8
+
+// openView lays the open view's currents.
+func (s *shore) openView() *vista {
+	v := &s.open
+	v.reset(s.modes)
+	for i := range s.patches {
+		s.currents(v, &s.patches[i])
+	}
+	return v
+}
+
+// currents adds a patch's rings to a view.
+func (s *shore) currents(v *vista, p *patch) {
+	g := &legendre[onNodes]
+	order := s.degree + 1
+	for j, x := range g.x {
+		at := s.place(p.part, float64(p.at)+(x+1)/2)
+		out := v.add(fieldNode{at.rho, at.z, at.sin, at.cos})
+		wt, wf := at.sigma*complex(g.w[j]/2, 0), at.rho*complex(g.w[j]/2, 0)
+		for m := -s.modes; m <= s.modes; m++ {
+			a := s.amplitude[(s.modes+m)*s.count:][:s.count]
+			var t, f complex128
+			for _, e := range p.t {
+				t += a[e.fn] * complex(p.value[e.local].at(x, order), 0)
+			}
+			for _, e := range p.f {
+				f += a[e.fn] * complex(p.value[e.local].at(x, order), 0)
+			}
+			out[2*(v.modes+m)], out[2*(v.modes+m)+1] = t*wt, f*wf
+		}
+	}
+}
+
+// closedView lays the closed view's currents: the plate's own, and the
+// plane's within its edge.
+func (s *shore) closedView(m *mesh, current []complex128, k float64) *vista {
+	v := &s.closed
+	widest, tallest := 0.0, 0.0
+	for i := range s.spots {
+		widest, tallest = max(widest, s.spots[i].rho), max(tallest, s.spots[i].z)
+	}
+	v.reset(min(max(s.modes, int(math.Ceil(k*min(widest, s.plate.Radius)))+farModes), azimuthModes-2))
+	for i := range s.patches {
+		if s.patches[i].part != beyond {
+			s.currents(v, &s.patches[i])
+		}
+	}
+	s.carried = cleared(s.carried, len(s.spots))
+	for i := range s.spots {
+		e := &m.elements[s.spots[i].element]
+		for l, fn := range e.fn[:m.order] {
+			if fn >= 0 {
+				s.carried[i] += current[fn] * complex(s.value[i*m.order+l], 0)
+			}
+		}
+	}
+	s.within(v, k, 0, s.plate.Radius)
+	return v
+}
+
+const (
+	farModes   = 7     // beyond ka, of what a ring radiates
+	widestRing = 0.8   // k times the widest panel of rings
+	leastRing  = 0.015 // k times the narrowest
+	panelNodes = 5
+)
+
+// within adds the plane's current between two radii, in panels as narrow as
+// what runs over them is low.
+func (s *shore) within(v *vista, k, from, to float64) {
+	width := to - from
+	if k*width > widestRing || k*width > leastRing && s.low(from, to) {
+		s.within(v, k, from, from+width/2)
+		s.within(v, k, from+width/2, to)
+		return
+	}
+	g := &legendre[panelNodes]
+	for i, x := range g.x {
+		rho := from + width*(x+1)/2
+		s.covered(v, k, rho, g.w[i]*width/2)
+	}
+}
+
+// low tells whether any spot is closer to a panel than the panel is wide.
+func (s *shore) low(from, to float64) bool {
+	for i := range s.spots {
+		p := &s.spots[i]
+		if math.Hypot(max(0, from-p.rho, p.rho-to), p.z) < to-from {
+			return true
+		}
+	}
+	return false
+}
+
+// covered adds the plane's current on one ring of a weight.
+func (s *shore) covered(v *vista, k, rho, weight float64) {
+	out := v.add(fieldNode{rho: complex(rho, 0), sin: 1})
+	s.wide = cleared(s.wide, v.modes+2)
+	r := ringRule{place: place{rho: complex(rho, 0)}}
+	for i := range s.spots {
+		p := &s.spots[i]
+		around := max(float64(v.modes)+coverLoss/p.decay(&r.place), float64(v.modes)+6+2*k*min(p.rho, rho))
+		r.azimuths = midpoints[min(max(4, int(math.Ceil(around/2))), mostHalf)]()
+		s.circle = s.circle[:0]
+		d, rr := rho-p.rho, 4*rho*p.rho
+		for _, sin2 := range r.sin2 {
+			x := math.Sqrt(d*d + rr*sin2 + p.z*p.z)
+			s.circle = append(s.circle, sample{r: complex(x, 0), phasor: phasor(k, complex(x, 0))})
+		}
+		s.wide.plane(s.circle, &r, k)
+		turn, step := s.carried[i]*complex(rho*weight, 0), complex(p.cos, -p.sin)
+		back := turn
+		for m := range v.modes + 1 {
+			c := p.plane(r.rho, s.wide, m)
+			up, down := out[2*(v.modes+m):], out[2*(v.modes-m):]
+			up[0] += turn * c.up[0]
+			up[1] += turn * c.up[1]
+			if m > 0 {
+				down[0] += back * c.down[0]
+				down[1] += back * c.down[1]
+			}
+			turn *= step
+			back *= complex(real(step), -imag(step))
+		}
+	}
+}
+
+// coverLoss is azimuthLoss for the plane's current within the edge, which is
+// only radiated.
+const coverLoss = 7.0
