@@ -5,9 +5,12 @@ import (
 	"errors"
 	"fmt"
 	"os"
+	"path/filepath"
+	"strings"
 
 	"github.com/spf13/cobra"
 
+	"turnwise/cmd/internal/chart"
 	"turnwise/cmd/internal/folder"
 	"turnwise/cmd/internal/report"
 	"turnwise/cmd/internal/workshop"
@@ -38,7 +41,9 @@ one-port file, on what the full-wave model predicts, with the band that copies
 within the workshop's tolerances fill. It passes when the measured reflection
 lies, at every measured frequency of the band, no farther from the prediction
 than the copies reach and the allowance for the measurement. Says which
-change of a dimension best explains the difference. Exit code 4: outside.`,
+change of a dimension best explains the difference, or of two where one
+leaves more than a third of it, and draws it on the trim chart (--chart).
+Exit code 4: outside.`,
 		Args: arguments(cobra.ExactArgs(1)),
 		RunE: func(c *cobra.Command, args []string) error {
 			o.design = args[0]
@@ -52,7 +57,7 @@ change of a dimension best explains the difference. Exit code 4: outside.`,
 	f.StringVar(&o.fidelity, "fidelity", "", "draft, standard or fine (default standard)")
 	f.Float64Var(&o.allowance, "allowance", 0.02, "how far off the measured reflection itself may be, 0 to 1")
 	f.BoolVar(&o.json, "json", false, "print one JSON object")
-	f.StringVar(&o.chart, "chart", "", "write the overlay, VSWR and Smith chart, to this SVG file")
+	f.StringVar(&o.chart, "chart", "", "draw VSWR, Smith chart and trim chart into this file: SVG, or PNG where its name ends in .png")
 	return c
 }
 
@@ -76,7 +81,7 @@ func compare(ctx context.Context, s streams, o comparing) error {
 	}
 	out.Outside = outside
 	if o.chart != "" {
-		if err := folder.WriteFile(o.chart, out.SVG()); err != nil {
+		if err := o.draw(out); err != nil {
 			return failed(err)
 		}
 	}
@@ -165,11 +170,26 @@ func (o *comparing) predict(ctx context.Context, s streams, st *tolerance.Study,
 	}
 	out := &report.Comparison{Study: st, Copies: len(r.Copies), Failures: r.Failures, Statement: r.Statement, Warnings: r.Warnings, Hz: hz, Measured: measured, Allowance: o.allowance}
 	out.Predicted, out.Reach = r.At(hz)
-	difference := make([]complex128, len(hz))
 	for i := range hz {
-		difference[i] = measured[i] - out.Predicted[i]
 		out.Reach[i] += o.allowance
 	}
-	out.Explanations, err = workshop.Explain(ctx, st.Rung, st.Design, st.Spreads, hz, difference)
+	difference := make([]complex128, len(at))
+	for i, k := range at {
+		difference[i] = measured[k] - out.Predicted[k]
+	}
+	out.At = at
+	out.Explanations, err = workshop.Explain(ctx, st.Rung, st.Design, st.Spreads, some, difference)
 	return out, err
+}
+
+// draw writes the picture in the format of its file's name.
+func (o *comparing) draw(out *report.Comparison) error {
+	if !strings.EqualFold(filepath.Ext(o.chart), ".png") {
+		return folder.WriteFile(o.chart, out.SVG())
+	}
+	data, err := chart.PNG(out.Picture())
+	if err != nil {
+		return err
+	}
+	return folder.WriteFile(o.chart, data)
 }

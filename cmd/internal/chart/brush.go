@@ -3,6 +3,7 @@ package chart
 import (
 	"image/color"
 	"math"
+	"strings"
 	"sync"
 	"unicode/utf8"
 
@@ -91,6 +92,24 @@ func fitted(text string, size, room float64) string {
 		}
 	}
 	return text + "…"
+}
+
+// wrapped breaks a text into lines at its plain spaces, each as long as room
+// allows.
+func wrapped(text string, size, room float64) []string {
+	var lines []string
+	line := ""
+	for word := range strings.SplitSeq(text, " ") {
+		switch longer := line + " " + word; {
+		case line == "":
+			line = word
+		case textWidth(longer, size) <= room:
+			line = longer
+		default:
+			lines, line = append(lines, line), word
+		}
+	}
+	return append(lines, line)
 }
 
 // text writes a line with its baseline at p.

@@ -107,17 +107,31 @@ func (f frame) clipped(p, q at) (at, at, bool) {
 // curve strokes values against x, only what lies inside the frame; a value
 // that is none breaks it.
 func (f frame) curve(b brush, xs, ys []float64) {
+	points := make([]at, len(xs))
+	for i := range xs {
+		points[i] = f.place(xs[i], ys[i])
+	}
+	for _, run := range f.runs(points) {
+		b.line(run...)
+	}
+}
+
+// runs are the parts of a polyline inside the frame; a place that is none
+// breaks it.
+func (f frame) runs(points []at) (runs [][]at) {
 	var run []at
 	flush := func() {
-		b.line(run...)
+		if len(run) > 0 {
+			runs = append(runs, run)
+		}
 		run = nil
 	}
-	for i := 1; i < len(xs); i++ {
-		if math.IsNaN(ys[i-1]) || math.IsNaN(ys[i]) {
+	for i := 1; i < len(points); i++ {
+		if math.IsNaN(points[i-1].y) || math.IsNaN(points[i].y) {
 			flush()
 			continue
 		}
-		p, q, inside := f.clipped(f.place(xs[i-1], ys[i-1]), f.place(xs[i], ys[i]))
+		p, q, inside := f.clipped(points[i-1], points[i])
 		if !inside {
 			flush()
 			continue
@@ -129,4 +143,10 @@ func (f frame) curve(b brush, xs, ys []float64) {
 		run = append(run, q)
 	}
 	flush()
+	return runs
+}
+
+// holds reports whether a place lies inside the frame or on its edge.
+func (f frame) holds(p at) bool {
+	return p.x >= f.left && p.x <= f.right && p.y >= f.bottom && p.y <= f.top
 }

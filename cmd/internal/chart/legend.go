@@ -69,7 +69,7 @@ func (g *legend) draw(b brush, p at) {
 			b.stroke(strong, e.pen.tone, e.pen.dash)
 			b.line(at{x, y + tickSize*0.33}, at{x + sampleWidth, y + tickSize*0.33})
 			if e.marked {
-				b.mark(e.pen.marker, at{x + sampleWidth/2, y + tickSize*0.33}, 2.6, e.pen.tone, false)
+				b.mark(e.pen.marker, at{x + sampleWidth/2, y + tickSize*0.33}, 2.6, e.pen.tone, e.open)
 			}
 		}
 		b.text(e.name, at{x + e.sample() + sampleRoom, y}, tickSize, left, ink)

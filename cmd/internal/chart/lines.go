@@ -94,7 +94,7 @@ func (s *Series) mark(b brush, f frame, p pen, of, several int) {
 	every := max(1, len(s.X)/marksOfLine)
 	for k := every * (2*of + 1) / (2 * several); k < len(s.X); k += every {
 		at := f.place(s.X[k], s.Y[k])
-		if at.x >= f.left && at.x <= f.right && at.y >= f.bottom && at.y <= f.top {
+		if f.holds(at) {
 			b.mark(p.marker, at, 2.6, p.tone, false)
 		}
 	}

@@ -53,3 +53,18 @@ func (b brush) mark(m Marker, p at, radius float64, tone color.Color, hollow boo
 		b.line(append(outline, outline[0], outline[1])...)
 	}
 }
+
+// ringed draws the outline of a marker alone, so that one sees what lies in
+// it.
+func (b brush) ringed(m Marker, p at, radius float64, tone color.Color) {
+	b.stroke(1.6, tone, nil)
+	if m == Disc {
+		b.arc(p, radius, 0, 2*math.Pi)
+		return
+	}
+	var outline []at
+	for _, q := range corners[m] {
+		outline = append(outline, at{p.x + radius*q.x, p.y + radius*q.y})
+	}
+	b.line(append(outline, outline[0], outline[1])...)
+}

@@ -6,6 +6,7 @@ import (
 	"io"
 	"math"
 	"math/cmplx"
+	"slices"
 	"strings"
 	"text/tabwriter"
 
@@ -30,7 +31,8 @@ type Comparison struct {
 	Reach        []float64
 	Allowance    float64
 	Outside      int // measured frequencies that the file has beyond the band
-	Explanations []workshop.Explanation
+	Explanations workshop.Explanations
+	At           []int // of Hz, the frequencies that explanations were simulated at
 }
 
 // away is how far the measured reflection lies from the predicted one.
@@ -105,23 +107,46 @@ func (c *Comparison) WriteText(w io.Writer) error {
 
 // explanations lists what would explain the difference.
 func (c *Comparison) explanations(w io.Writer) {
-	if len(c.Explanations) == 0 {
+	if c.Explanations.Best() == nil {
 		fmt.Fprintf(w, "\nno difference to explain\n")
 		return
 	}
-	best := &c.Explanations[0]
-	if best.Left > 0.5 {
+	if c.Explanations.Single[0].Left > 0.5 {
 		fmt.Fprintf(w, "\nno single dimension explains half of the difference; the nearest, each alone, by least squares over the band:\n")
 	} else {
 		fmt.Fprintf(w, "\nwhat best explains the difference, each alone, by least squares over the band:\n")
 	}
+	listExplanations(w, c.Explanations.Single)
+	if len(c.Explanations.Pairs) > 0 {
+		fmt.Fprintf(w, "\none alone leaves %.0f %% of it; two at once, of which a rule should confirm one before anything is moved:\n", 100*c.Explanations.Single[0].Left)
+		listExplanations(w, c.Explanations.Pairs)
+	}
+}
+
+func listExplanations(w io.Writer, list []workshop.Explanation) {
 	t := tabwriter.NewWriter(w, 0, 0, 2, ' ', 0)
-	fmt.Fprintf(t, "the antenna is as if\texplains\tto take it back\twhat was moved\n")
-	for i := range c.Explanations {
-		e := &c.Explanations[i]
-		fmt.Fprintf(t, "%s\t%.0f %%\t%s\t%s\n", e.Words(), 100*(1-e.Left), e.UndoWords(), e.Stands)
+	fmt.Fprintf(t, "the antenna is as if\texplains\tto take it back")
+	if len(list[0].Shifts) == 1 {
+		fmt.Fprint(t, "\twhat was moved")
+	}
+	fmt.Fprintln(t)
+	for i := range list {
+		e := &list[i]
+		fmt.Fprintf(t, "%s\t%s\t%s", e.Words(), worth(e), e.UndoWords())
+		if len(e.Shifts) == 1 {
+			fmt.Fprint(t, "\t", e.Shifts[0].Stands)
+		}
+		fmt.Fprintln(t)
 	}
 	t.Flush()
+}
+
+// worth is the part of the difference that an explanation explains.
+func worth(e *workshop.Explanation) string {
+	if e.Left >= 1 {
+		return "nothing"
+	}
+	return fmt.Sprintf("%.0f %%", 100*(1-e.Left))
 }
 
 // WriteJSON writes the comparison as one object.
@@ -146,28 +171,41 @@ func (c *Comparison) WriteJSON(w io.Writer) error {
 		p, m := c.Predicted[i], c.Measured[i]
 		rows[i] = row{hz, number(tolerance.VSWR(p)), number(low), number(high), number(tolerance.VSWR(m)), number(real(p)), number(imag(p)), number(real(m)), number(imag(m)), number(c.away(i)), number(c.Reach[i]), c.away(i) <= c.Reach[i]}
 	}
-	type cause struct {
-		Name     string  `json:"dimension"`
-		By       *number `json:"by_m"`
-		Plain    *number `json:"by"`
-		Explains number  `json:"explains_pct"`
-		Undo     *string `json:"undo"`
-		Stands   string  `json:"moved"`
-	}
-	causes := make([]cause, len(c.Explanations))
-	for i, e := range c.Explanations {
-		by := number(e.By)
-		causes[i] = cause{Name: e.Name, By: &by, Explains: number(100 * (1 - e.Left)), Undo: orNull(e.Undo), Stands: e.Stands}
-		if e.Plain {
-			causes[i].By, causes[i].Plain = nil, &by
-		}
-	}
 	e := json.NewEncoder(w)
 	e.SetIndent("", "  ")
 	return e.Encode(map[string]any{
 		"design_id": c.Study.Design.ID(), "model": c.Study.Rung.Model, "fidelity": orNull(c.Study.Rung.Fidelity),
 		"reference_ohm": c.Study.Design.Feed.Impedance, "copies": c.Copies, "distribution": c.Study.Distribution, "seed": c.Study.Seed,
 		"failures": failureObjects(c.Failures), "allowance": c.Allowance, "left_aside": c.Outside,
-		"warnings": stated(c.Warnings, c.Statement), "passes": c.Left() == 0, "outside": c.Left(), "sweep": rows, "explanations": causes,
+		"warnings": stated(c.Warnings, c.Statement), "passes": c.Left() == 0, "outside": c.Left(), "sweep": rows, "explanations": shiftObjects(c.Explanations.Single), "pairs": shiftObjects(c.Explanations.Pairs),
 	})
+}
+
+// shiftObject is a change of one dimension as JSON; the second of a pair hangs
+// on the first, which carries what both explain.
+type shiftObject struct {
+	Name     string       `json:"dimension"`
+	By       *number      `json:"by_m"`
+	Plain    *number      `json:"by"`
+	Explains *number      `json:"explains_pct,omitempty"`
+	Undo     *string      `json:"undo"`
+	Stands   string       `json:"moved"`
+	Second   *shiftObject `json:"second,omitempty"`
+}
+
+func shiftObjects(list []workshop.Explanation) []*shiftObject {
+	out := make([]*shiftObject, len(list))
+	for i := range list {
+		explains := number(100 * (1 - list[i].Left))
+		var o *shiftObject
+		for _, s := range slices.Backward(list[i].Shifts) {
+			by := number(s.By)
+			o = &shiftObject{Name: s.Name, By: &by, Undo: orNull(s.Undo), Stands: s.Stands, Second: o}
+			if s.Plain {
+				o.By, o.Plain = nil, &by
+			}
+		}
+		o.Explains, out[i] = &explains, o
+	}
+	return out
 }

@@ -81,12 +81,19 @@ func TestSmallChange(t *testing.T) {
 func comparison(n int) *Comparison {
 	d := models.Design{Feed: models.Feed{Impedance: 50}}
 	c := &Comparison{Study: &tolerance.Study{Design: d, Samples: 40}, Copies: 39, Outside: 2, Allowance: 0.02, Failures: []tolerance.Failure{{Reason: "too thin", Count: 1}},
-		Explanations: []workshop.Explanation{{Name: "riser height", By: 1e-3, Undo: "lower", Left: 0.7}, {Name: "permittivity of the insulation", By: -0.2, Plain: true, Left: 0.9}}}
+		Explanations: workshop.Explanations{Single: []workshop.Explanation{
+			{Shifts: []workshop.Shift{{Name: "riser height", By: 1e-3, Undo: "lower"}}, Left: 0.7},
+			{Shifts: []workshop.Shift{{Name: "permittivity of the insulation", By: -0.2, Plain: true}}, Left: 0.9}}}}
 	for i := range n {
 		c.Hz = append(c.Hz, 1e9+1e7*float64(i))
 		c.Predicted = append(c.Predicted, complex(0.1, 0))
 		c.Measured = append(c.Measured, complex(0.1, 0.01*float64(i+1)))
 		c.Reach = append(c.Reach, 0.025)
+		c.At = append(c.At, i)
+		for k := range c.Explanations.Single {
+			e := &c.Explanations.Single[k]
+			e.Added = append(e.Added, complex(0.002*float64(k+1), 0.01*float64(i+1)))
+		}
 	}
 	return c
 }
@@ -153,7 +160,7 @@ func TestOverlay(t *testing.T) {
 				t.Errorf("%d: %s in the picture", n, bad)
 			}
 		}
-		for _, due := range []string{"predicted", "measured", "band, lowest", "band, highest", "VSWR", "Ω"} {
+		for _, due := range []string{"predicted", "measured", "tolerance band", "explained", "VSWR", "Ω"} {
 			if !strings.Contains(string(svg), due) {
 				t.Errorf("%d: no %q in the picture", n, due)
 			}

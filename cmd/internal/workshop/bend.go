@@ -18,16 +18,21 @@ type bend struct {
 	curve     *helix.Curve
 	at, reach float64 // turns
 	by        float64 // m, away from the plate
+	// also is another bend of the same winding; nil where there is none.
+	also *bend
 }
 
 // lift is the height the bend adds at t, and its derivative by t.
 func (b bend) lift(t float64) (z, dz float64) {
+	if b.also != nil {
+		z, dz = b.also.lift(t)
+	}
 	u := (t - b.at) / b.reach
 	if math.Abs(u) >= 1 {
-		return 0, 0
+		return z, dz
 	}
 	sin, cos := math.Sincos(math.Pi * u)
-	return b.by / 2 * (1 + cos), -b.by / 2 * math.Pi / b.reach * sin
+	return z + b.by/2*(1+cos), dz - b.by/2*math.Pi/b.reach*sin
 }
 
 // At implements [moment.Curve].
@@ -46,9 +51,9 @@ func (b bend) height(t float64) float64 {
 	return b.curve.Height(t) + z
 }
 
-// port is the impedance at the foot of the riser with the winding bent so.
+// ports are the impedances at the foot of the riser with the winding bent so.
 // The equivalent radii over the plane are the full-wave model's.
-func (b bend) port(ctx context.Context, f moment.Fidelity, d *models.Design, hz float64) (complex128, error) {
+func (b bend) ports(ctx context.Context, f moment.Fidelity, d *models.Design, hz []float64) ([]complex128, error) {
 	foot := b.curve.At(0).Pos
 	pin, a := d.PinDiameter()/2, d.Conductor.Diameter/2
 	material := d.Conductor.Material
@@ -75,9 +80,9 @@ func (b bend) port(ctx context.Context, f moment.Fidelity, d *models.Design, hz 
 			RadiusAt: func(t float64) float64 { return models.WireRadiusOverPlane(a, b.height(t)) },
 		})
 	}
-	var z complex128
-	err := moment.Analyse(ctx, &antenna, f, []float64{hz}, func(s *moment.Solution) error {
-		z = 1 / s.Admittance(0, 0)
+	var z []complex128
+	err := moment.Analyse(ctx, &antenna, f, hz, func(s *moment.Solution) error {
+		z = append(z, 1/s.Admittance(0, 0))
 		return nil
 	})
 	return z, err

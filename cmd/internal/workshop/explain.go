@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strings"
 
 	"turnwise/models"
 	"turnwise/models/helix"
@@ -13,9 +14,8 @@ import (
 	"turnwise/objectives/tolerance"
 )
 
-// Explanation is one change of a dimension that would take the prediction
-// towards a measurement.
-type Explanation struct {
+// Shift is a change of one dimension.
+type Shift struct {
 	Name   string
 	Stands string // what exactly is changed
 	By     float64
@@ -23,51 +23,82 @@ type Explanation struct {
 	// Undo is what a fitter does on the finished antenna to take it back;
 	// empty where it takes winding anew.
 	Undo string
-	// Left is the part of the squared difference that it leaves, 0 to 1.
-	Left float64
 }
 
-// explained is the number of frequencies an explanation is sought at.
+// Explanation is a change of one dimension, or of two at once, that would take
+// the prediction towards a measurement.
+type Explanation struct {
+	Shifts []Shift
+	// Left is the part of the squared difference that it leaves; more than 1
+	// where it makes it worse.
+	Left float64
+	// Added is what the antenna changed so reflects more than the drawn one,
+	// as simulated at each frequency.
+	Added []complex128
+}
+
+// Explanations are those of one difference, each list with the best first.
+type Explanations struct {
+	Single []Explanation
+	// Pairs are sought only where no single dimension explains most.
+	Pairs []Explanation
+}
+
+// Best is the explanation to believe first: a pair only where pairs were
+// sought; nil where there was nothing to explain.
+func (e *Explanations) Best() *Explanation {
+	switch {
+	case len(e.Pairs) > 0 && e.Pairs[0].Left < e.Single[0].Left:
+		return &e.Pairs[0]
+	case len(e.Single) > 0:
+		return &e.Single[0]
+	}
+	return nil
+}
+
+// explained is the number of frequencies that amounts are sought at.
 const explained = 5
 
-// cause is a change of one dimension: what it adds to the reflection at each
-// frequency.
+// unexplained is the part of a difference that one dimension may leave before
+// pairs are sought.
+const unexplained = 1.0 / 3
+
+// cause is a change of one dimension and what it adds to the reflection at
+// each frequency.
 type cause struct {
-	at            []move // one a frequency
-	plain, fitter bool   // By has no unit; a fitter can undo it
+	movable
+	at []path
 }
 
 // Explain finds, for everything a fitter can move and every dimension that a
 // workshop may miss, the amount whose reflection comes nearest to the measured
-// one, by least squares over frequency; the best explanation first. Without a
-// difference there is none.
-func Explain(ctx context.Context, rung objectives.Rung, d models.Design, spreads tolerance.Spreads, hz []float64, difference []complex128) ([]Explanation, error) {
+// one, by least squares over frequency; where one dimension leaves much of the
+// difference, also pairs. Each is simulated as found, and judged by that.
+func Explain(ctx context.Context, rung objectives.Rung, d models.Design, spreads tolerance.Spreads, hz []float64, difference []complex128) (Explanations, error) {
+	var out Explanations
 	at := Thinned(len(hz), explained)
 	few, due := make([]float64, len(at)), make([]complex128, len(at))
-	whole := 0.0
 	for i, k := range at {
 		few[i], due[i] = hz[k], difference[k]
-		whole += square(due[i])
 	}
-	if whole < 1e-18 {
-		return nil, nil
+	if energy(due) < 1e-18 {
+		return out, nil
 	}
-	causes, err := fitterCauses(ctx, rung, d, few)
+	causes, err := possibleCauses(ctx, rung, d, spreads, few)
 	if err != nil {
-		return nil, err
+		return out, err
 	}
-	more, err := windingCauses(ctx, rung, d, spreads, few)
+	band, err := newBench(ctx, rung, d, hz)
 	if err != nil {
-		return nil, err
+		return out, err
 	}
-	var out []Explanation
-	for _, c := range append(causes, more...) {
-		if e := c.explain(due, whole); e.By != 0 {
-			out = append(out, e)
-		}
+	if out.Single, err = judged(ctx, band, singles(causes, due), difference); err != nil {
+		return out, err
 	}
-	slices.SortStableFunc(out, func(a, b Explanation) int { return cmp.Compare(a.Left, b.Left) })
-	return out, nil
+	if len(out.Single) > 0 && out.Single[0].Left > unexplained {
+		out.Pairs, err = judged(ctx, band, pairs(causes, due), difference)
+	}
+	return out, err
 }
 
 // Thinned picks at most so many of n places, evenly, both ends among them.
@@ -83,62 +114,36 @@ func Thinned(n, most int) []int {
 	return out
 }
 
+// energy is the sum of squared magnitudes.
+func energy(gs []complex128) (sum float64) {
+	for _, g := range gs {
+		sum += square(g)
+	}
+	return sum
+}
+
 func square(g complex128) float64 { return real(g)*real(g) + imag(g)*imag(g) }
 
-// fitterCauses are the moves of the trim chart, drawn at every frequency.
-func fitterCauses(ctx context.Context, rung objectives.Rung, d models.Design, hz []float64) ([]cause, error) {
+// possibleCauses moves every dimension as far as it goes.
+func possibleCauses(ctx context.Context, rung objectives.Rung, d models.Design, spreads tolerance.Spreads, hz []float64) ([]cause, error) {
 	c, err := helix.Wind(&d)
 	if err != nil {
 		return nil, err
 	}
-	var out []cause
-	for _, f := range hz {
-		d.Band = models.Band{From: f, To: f, Samples: 1}
-		t, err := newTrimChart(ctx, rung, &d, c)
-		if err != nil {
-			return nil, err
-		}
-		if out == nil {
-			out = make([]cause, len(t.Moves))
-		}
-		for i, m := range t.Moves {
-			out[i].fitter = true
-			out[i].at = append(out[i].at, m)
-		}
-	}
-	return out, nil
-}
-
-// windingCauses are the dimensions that only winding anew would mend, each
-// moved up to four half-widths; and the lead's spacing, which a fitter bends as
-// far as the rest. The riser is among the fitter's moves already.
-func windingCauses(ctx context.Context, rung objectives.Rung, d models.Design, spreads tolerance.Spreads, hz []float64) ([]cause, error) {
-	from, err := sweptReflection(ctx, rung, d, hz)
+	b, err := newBench(ctx, rung, d, hz)
 	if err != nil {
 		return nil, err
 	}
+	far := reach(hz[len(hz)/2])
 	var out []cause
-	for i := range tolerance.Dimensions {
-		dim := tolerance.Dimension(i)
-		if dim == tolerance.FeedHeight || !dim.In(&d) {
-			continue
-		}
-		info := &tolerance.Dimensions[dim]
-		half := spreads[dim]
-		if half == 0 {
-			half = info.Default
-		}
-		m := move{Name: info.Words, Stands: "made so from the start"}
-		c := cause{plain: dim == tolerance.Permittivity, at: make([]move, len(hz))}
-		if dim == tolerance.LeadSpacing {
-			c.fitter, half = true, (&trimChart{Hz: hz[0]}).reach()/4
-			m = move{Name: info.Words, Stands: "whole lead, the winding after it moves with it", More: "widen", Less: "narrow"}
-		}
-		for k := range hz {
-			c.at[k] = m
-		}
-		for _, times := range []float64{-4, -2, -1, 0, 1, 2, 4} {
-			g, err := sweptReflection(ctx, rung, dim.Shift(d, times*half), hz)
+	for _, m := range append(fittersMovables(&d, c, far), windingMovables(&d, spreads, far)...) {
+		one := cause{m, make([]path, len(hz))}
+		for _, by := range m.amounts() {
+			p := b.piece()
+			if by != 0 {
+				m.move(p, by)
+			}
+			g, err := b.added(ctx, p)
 			if ctx.Err() != nil {
 				return nil, ctx.Err()
 			}
@@ -146,76 +151,139 @@ func windingCauses(ctx context.Context, rung objectives.Rung, d models.Design, s
 				continue // it cannot be so far off
 			}
 			for k := range hz {
-				c.at[k].Path = append(c.at[k].Path, waypoint{By: times * half, Added: g[k] - from[k]})
+				one.at[k] = append(one.at[k], waypoint{by, g[k]})
 			}
 		}
-		out = append(out, c)
+		out = append(out, one)
 	}
 	return out, nil
 }
 
-// sweptReflection is a design's reflection at the connector.
-func sweptReflection(ctx context.Context, rung objectives.Rung, d models.Design, hz []float64) ([]complex128, error) {
-	r, err := rung.Simulator.Simulate(ctx, d, models.Question{Hz: hz, Outputs: models.Axis})
-	if err != nil {
-		return nil, err
+// windingMovables are the dimensions that only winding anew would mend, each
+// as far as four half-widths; and the lead's spacing, which a fitter bends as
+// far as the rest. The riser is among the fitter's own.
+func windingMovables(d *models.Design, spreads tolerance.Spreads, reach float64) []movable {
+	var out []movable
+	for i := range tolerance.Dimensions {
+		dim := tolerance.Dimension(i)
+		if dim == tolerance.FeedHeight || !dim.In(d) {
+			continue
+		}
+		info := &tolerance.Dimensions[dim]
+		far := 4 * spreads[dim]
+		if far == 0 {
+			far = 4 * info.Default
+		}
+		m := movable{Name: info.Words, Stands: "made so from the start", Plain: dim == tolerance.Permittivity}
+		if dim == tolerance.LeadSpacing {
+			far = reach
+			m = movable{Name: info.Words, Stands: "whole lead, the winding after it moves with it", More: "widen", Less: "narrow"}
+		}
+		m.Lowest, m.Highest = -far, far
+		m.move = altering(func(d *models.Design, by float64) { *d = dim.Shift(*d, by) })
+		out = append(out, m)
 	}
-	out := make([]complex128, len(hz))
-	for i := range out {
-		out[i] = models.Reflection(r.Samples[i].Input, d.Feed.Impedance)
+	return out
+}
+
+// candidate is causes and how much of each.
+type candidate struct {
+	causes []*cause
+	by     []float64
+}
+
+// singles are the amounts of each cause alone that leave least of a
+// difference.
+func singles(causes []cause, due []complex128) []candidate {
+	var out []candidate
+	for i := range causes {
+		c := candidate{causes: []*cause{&causes[i]}}
+		if c.fit(due, 0); c.by[0] != 0 {
+			out = append(out, c)
+		}
 	}
+	return out
+}
+
+// judged simulates candidates and says what each leaves of a difference.
+func judged(ctx context.Context, b *bench, candidates []candidate, difference []complex128) ([]Explanation, error) {
+	whole := energy(difference)
+	var out []Explanation
+	for i := range candidates {
+		c := &candidates[i]
+		added, err := b.added(ctx, c.piece(b))
+		if ctx.Err() != nil {
+			return nil, ctx.Err()
+		}
+		if err != nil {
+			continue // two that can be so far off need not both be
+		}
+		e := Explanation{Added: added, Shifts: c.shifts()}
+		for k := range added {
+			e.Left += square(difference[k]-added[k]) / whole
+		}
+		out = append(out, e)
+	}
+	slices.SortStableFunc(out, func(a, b Explanation) int { return cmp.Compare(a.Left, b.Left) })
 	return out, nil
 }
 
-// explain finds the amount that leaves least of a difference.
-func (c *cause) explain(due []complex128, whole float64) Explanation {
-	left := func(x float64) float64 {
-		sum := 0.0
-		for i := range due {
-			sum += square(due[i] - c.at[i].by(x))
-		}
-		return sum / whole
+func (c *candidate) piece(b *bench) *piece {
+	p := b.piece()
+	for i, one := range c.causes {
+		one.move(p, c.by[i])
 	}
-	low, high := math.Inf(-1), math.Inf(1)
-	for i := range c.at {
-		path := c.at[i].Path
-		low, high = math.Max(low, path[0].By), math.Min(high, path[len(path)-1].By)
-	}
-	m := &c.at[0]
-	e := Explanation{Name: m.Name, Stands: m.Stands, Plain: c.plain, Left: 1}
-	const parts = 2000
-	for k := range parts + 1 {
-		x := low + (high-low)*float64(k)/parts
-		if l := left(x); l < e.Left {
-			e.By, e.Left = x, l
+	return p
+}
+
+func (c *candidate) shifts() []Shift {
+	out := make([]Shift, len(c.causes))
+	for i, one := range c.causes {
+		out[i] = Shift{Name: one.Name, Stands: one.Stands, By: c.by[i], Plain: one.Plain, Undo: one.Less}
+		if c.by[i] < 0 {
+			out[i].Undo = one.More
 		}
 	}
-	switch {
-	case !c.fitter || e.By == 0:
-	case e.By > 0:
-		e.Undo = m.Less
-	default:
-		e.Undo = m.More
-	}
-	return e
+	return out
 }
 
 // Words say the change with its sign: "riser height +0.80 mm".
-func (e *Explanation) Words() string {
+func (s *Shift) Words() string {
 	sign := "+"
-	if e.By < 0 {
+	if s.By < 0 {
 		sign = "−"
 	}
-	if e.Plain {
-		return fmt.Sprintf("%s %s%.3g", e.Name, sign, math.Abs(e.By))
+	if s.Plain {
+		return fmt.Sprintf("%s %s%.3g", s.Name, sign, math.Abs(s.By))
 	}
-	return fmt.Sprintf("%s %s%.2f mm", e.Name, sign, math.Abs(e.By)*1e3)
+	return fmt.Sprintf("%s %s%.2f mm", s.Name, sign, math.Abs(s.By)*1e3)
+}
+
+// Words say all its changes.
+func (e *Explanation) Words() string {
+	return e.each(" and ", (*Shift).Words)
+}
+
+// Mendable reports whether a fitter can take all of it back.
+func (e *Explanation) Mendable() bool {
+	return !slices.ContainsFunc(e.Shifts, func(s Shift) bool { return s.Undo == "" })
 }
 
 // UndoWords say how a fitter takes it back.
 func (e *Explanation) UndoWords() string {
-	if e.Undo == "" {
+	if !e.Mendable() {
 		return "wind anew"
 	}
-	return fmt.Sprintf("%s by %.2f mm", e.Undo, math.Abs(e.By)*1e3)
+	return e.each(", ", (*Shift).UndoWords)
+}
+
+// UndoWords say how a fitter takes it back: "lower by 0.80 mm".
+func (s *Shift) UndoWords() string { return fmt.Sprintf("%s by %.2f mm", s.Undo, math.Abs(s.By)*1e3) }
+
+func (e *Explanation) each(between string, say func(s *Shift) string) string {
+	words := make([]string, len(e.Shifts))
+	for i := range e.Shifts {
+		words[i] = say(&e.Shifts[i])
+	}
+	return strings.Join(words, between)
 }

@@ -28,7 +28,7 @@ func TestStraightBend(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		got, err := bend{curve: c, at: 0.25, reach: 0.25}.port(context.Background(), moment.Standard, &d, hz)
+		got, err := portOf(bend{curve: c, at: 0.25, reach: 0.25}, &d, hz)
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -59,8 +59,8 @@ func TestBendAnotherWay(t *testing.T) {
 		bentDesign.Spacing = law
 		straight, err1 := portAt(ctx, rung, d, hz)
 		want, err2 := portAt(ctx, rung, bentDesign, hz)
-		from, err3 := bend{curve: c, at: at, reach: 0.5}.port(ctx, moment.Standard, &d, hz)
-		got, err4 := b.port(ctx, moment.Standard, &d, hz)
+		from, err3 := portOf(bend{curve: c, at: at, reach: 0.5}, &d, hz)
+		got, err4 := portOf(b, &d, hz)
 		for _, err := range []error{err1, err2, err3, err4} {
 			if err != nil {
 				t.Fatal(err)
@@ -108,7 +108,7 @@ func TestTrimChart(t *testing.T) {
 			t.Errorf("%s: a path from %g to %g m, allowed are %g to %g", m.Name, low, high, m.Lowest, m.Highest)
 		}
 		for _, w := range m.Path {
-			if got := m.by(w.By); cmplx.Abs(got-w.Added) > 1e-12 {
+			if got := m.Path.by(w.By); cmplx.Abs(got-w.Added) > 1e-12 {
 				t.Errorf("%s: moved by %g it adds %g, want %g", m.Name, w.By, got, w.Added)
 			}
 		}
@@ -162,13 +162,13 @@ func TestAdjust(t *testing.T) {
 		a := chart.adjust(marker)
 		after := marker
 		if a.First >= 0 {
-			after += chart.Moves[a.First].by(a.FirstBy)
+			after += chart.Moves[a.First].Path.by(a.FirstBy)
 			if !chart.Moves[a.First].reaches(a.FirstBy) {
 				t.Fatalf("%+v is too far", a)
 			}
 		}
 		if a.Second >= 0 {
-			after += chart.Moves[a.Second].by(a.SecondBy)
+			after += chart.Moves[a.Second].Path.by(a.SecondBy)
 			if a.Second == a.First || !chart.Moves[a.Second].reaches(a.SecondBy) {
 				t.Fatalf("%+v is too far", a)
 			}
@@ -178,8 +178,8 @@ func TestAdjust(t *testing.T) {
 		}
 		for i := range chart.Moves {
 			for k := -nudges; k <= nudges; k++ {
-				x := float64(k) * chart.nudge()
-				if v := vswrOf(marker + chart.Moves[i].by(x)); chart.Moves[i].reaches(x) && v < a.VSWR-1e-9 {
+				x := float64(k) * nudge(chart.Hz)
+				if v := vswrOf(marker + chart.Moves[i].Path.by(x)); chart.Moves[i].reaches(x) && v < a.VSWR-1e-9 {
 					t.Fatalf("%+v, but moving %d by %g m leads to %g", a, i, x, v)
 				}
 			}
@@ -236,4 +236,20 @@ func TestExposurePage(t *testing.T) {
 			}
 		}
 	}
+}
+
+func portAt(ctx context.Context, rung objectives.Rung, d models.Design, hz float64) (complex128, error) {
+	r, err := rung.Simulator.Simulate(ctx, d, models.Question{Hz: []float64{hz}, Outputs: models.Axis})
+	if err != nil {
+		return 0, err
+	}
+	return r.Samples[0].Port, nil
+}
+
+func portOf(b bend, d *models.Design, hz float64) (complex128, error) {
+	z, err := b.ports(context.Background(), moment.Standard, d, []float64{hz})
+	if err != nil {
+		return 0, err
+	}
+	return z[0], nil
 }
