@@ -11,6 +11,7 @@ import (
 	"turnwise/models"
 	"turnwise/models/helix"
 	"turnwise/models/moment"
+	"turnwise/objectives"
 	"turnwise/objectives/tolerance"
 )
 
@@ -28,6 +29,19 @@ func differing(t *testing.T, d models.Design, hz []float64, change func(d *model
 		is[i] -= was[i]
 	}
 	return is
+}
+
+// sweptReflection is a design's reflection at the connector.
+func sweptReflection(ctx context.Context, rung objectives.Rung, d models.Design, hz []float64) ([]complex128, error) {
+	r, err := rung.Simulator.Simulate(ctx, d, models.Question{Hz: hz, Outputs: models.Axis})
+	if err != nil {
+		return nil, err
+	}
+	out := make([]complex128, len(hz))
+	for i := range out {
+		out[i] = models.Reflection(r.Samples[i].Input, d.Feed.Impedance)
+	}
+	return out, nil
 }
 
 func explain(t *testing.T, d models.Design, hz []float64, difference []complex128) Explanations {

@@ -42,7 +42,7 @@ func fittersMovables(d *models.Design, c *helix.Curve, reach float64) []movable 
 	return out
 }
 
-// altering is a movement that makes another design.
+// altering is a movement that makes another winding.
 func altering(change func(d *models.Design, by float64)) func(*piece, float64) {
 	return func(p *piece, by float64) {
 		change(&p.Design, by)
@@ -96,6 +96,6 @@ func line(d *models.Design, reach float64) movable {
 		Name: "line section", More: "lengthen", Less: "shorten",
 		Stands: "length of the section between connector and plate",
 		Lowest: math.Max(-d.Feed.Transformer.Length, -reach), Highest: reach,
-		move: altering(func(d *models.Design, by float64) { d.Feed.Transformer.Length += by }),
+		move: func(p *piece, by float64) { p.Feed.Transformer.Length += by },
 	}
 }
