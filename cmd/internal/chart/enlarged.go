@@ -3,6 +3,7 @@ package chart
 import (
 	"math"
 	"math/cmplx"
+	"slices"
 )
 
 // enlarged is the grid of a part of a Smith chart.
@@ -22,15 +23,25 @@ func (e enlarged) draw(b brush, taken *labels) {
 	rs, xs, digits := e.values(low, high)
 	for _, r := range rs {
 		points := sampled(imag(low), imag(high), func(x float64) at { return e.at(complex(r, x)) })
-		e.rule(b, taken, points, tickText(r*e.reference, digits[0]), e.at(complex(r, 0)), false)
+		ends := e.rule(b, points)
+		if own := e.at(complex(r, 0)); e.nearOpen() {
+			ends = append([]at{own}, ends...)
+		} else {
+			ends = append(ends, own)
+		}
+		e.name(b, taken, tickText(r*e.reference, digits[0]), ends)
 	}
 	for _, x := range xs {
 		sign := "+j"
-		if x < 0 {
+		switch {
+		case x < 0:
 			sign = "−j"
+		case x == 0:
+			sign = "j"
 		}
-		points := sampled(real(low), real(high), func(r float64) at { return e.at(complex(r, x)) })
-		e.rule(b, taken, points, sign+tickText(math.Abs(x)*e.reference, digits[1]), points[0], true)
+		ends := e.rule(b, sampled(real(low), real(high), func(r float64) at { return e.at(complex(r, x)) }))
+		slices.Reverse(ends)
+		e.name(b, taken, sign+tickText(math.Abs(x)*e.reference, digits[1]), ends)
 	}
 	b.stroke(thin, rule, nil)
 	rim := make([]at, 721)
@@ -71,11 +82,14 @@ func (e enlarged) extent() (low, high complex128) {
 	return complex(math.Max(0, r[0]-dr), x[0]-dx), complex(r[1]+dr, x[1]+dx)
 }
 
+// nearOpen says whether the open circuit is near enough to crowd the lines.
+func (e enlarged) nearOpen() bool { return cmplx.Abs(1-e.middle) < 2*e.half }
+
 // values are what is ruled, relative to the reference, and the decimals of
 // their ohms: evenly spaced where the part is far from the open circuit, else
 // the usual ones of a whole chart.
 func (e enlarged) values(low, high complex128) (rs, xs []float64, decimals [2]int) {
-	if cmplx.Abs(1-e.middle) < 2*e.half {
+	if e.nearOpen() {
 		for _, p := range smithParts {
 			xs = append(xs, p, -p)
 		}
@@ -104,23 +118,19 @@ func sampled(from, to float64, curve func(float64) at) []at {
 	return points
 }
 
-// rule strokes what is seen of a curve and writes its ohms where it leaves the
-// frame, else at a place of its own.
-func (e enlarged) rule(b brush, taken *labels, points []at, text string, own at, last bool) {
+// rule strokes what is seen of a curve and returns the ends of that.
+func (e enlarged) rule(b brush, points []at) (ends []at) {
 	b.stroke(hairline, grid, nil)
-	runs := e.runs(points)
-	for _, run := range runs {
+	for _, run := range e.runs(points) {
 		b.line(run...)
+		ends = append(ends, run[0], run[len(run)-1])
 	}
-	var ends []at
-	for _, run := range runs {
-		first, final := run[0], run[len(run)-1]
-		if last {
-			first, final = final, first
-		}
-		ends = append(ends, first, final)
-	}
-	for _, p := range append(ends, own) {
+	return ends
+}
+
+// name writes a curve's ohms at the first place that is free.
+func (e enlarged) name(b brush, taken *labels, text string, places []at) {
+	for _, p := range places {
 		at, a, ok := e.beyond(p)
 		if ok && taken.free(written(text, at, 9, a)) {
 			b.haloed(text, at, 9, a, quiet)

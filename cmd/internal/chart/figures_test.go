@@ -8,6 +8,7 @@ import (
 	"image/png"
 	"io"
 	"math"
+	"math/cmplx"
 	"strings"
 	"testing"
 
@@ -32,6 +33,30 @@ func winding(turns, length, from, to float64, right bool) *Winding {
 		w.Wire = append(w.Wire, [3]float64{r * math.Cos(a), r * math.Sin(a), 5 + u*(length-5)})
 	}
 	return w
+}
+
+// trimmed is a trim chart of reflections near a place, so far apart.
+func trimmed(about complex128, apart float64) *Trim {
+	trace := func(by complex128) (g []complex128) {
+		for k := range 5 {
+			g = append(g, about+by*complex(apart, 0)+cmplx.Rect(0.3*apart, 0.4*float64(k-2)))
+		}
+		return g
+	}
+	t := &Trim{Reference: 50, Marks: [2]string{"1660 MHz", "1680 MHz"}, Notes: []string{"To take it back: riser height, lower by 0.80 mm.", "VSWR at 1680 MHz: measured 3.74, after that about 3.30, predicted 3.30."},
+		Traces: []Reach{{Name: "predicted", G: trace(0)}, {Name: "measured", G: trace(1), Open: true}, {Name: "band at 1680 MHz", G: trace(-0.3i), Ring: true}, {Name: "explained by 1", G: trace(0.9), Tipped: true}}}
+	from := t.Traces[0].G[2]
+	for i, by := range []complex128{0.9, 0.5 + 0.3i, 0.5 + 0.28i, -0.2} {
+		name := []string{"riser height +0.80 mm", "height at ½ turn −2.00 mm", "height at ¼ turn −0.31 mm", "permittivity of the insulation −0.2"}[i]
+		t.Arrows = append(t.Arrows, Arrow{From: from, To: from + by*complex(apart, 0), Name: name, Says: "explains 91 % of the difference"})
+	}
+	return t
+}
+
+// paired has the longest names that there are.
+func paired(t *Trim) *Trim {
+	t.Arrows[0].Name = "spacing at the start of the lead +5.00 mm and permittivity of the insulation −0.26"
+	return t
 }
 
 // figures are one of each kind, with the awkward ones among them.
@@ -73,6 +98,13 @@ func figures() map[string]Figure {
 	marks := [3]string{"1.66 GHz", "1.68 GHz", "1.7 GHz"}
 	z := []complex128{80 + 10i, 90, 100 - 10i, 120 - 20i}
 	return map[string]Figure{
+		"trim":               trimmed(0.54-0.12i, 0.02),
+		"trim, pair":         paired(trimmed(-0.1+0.1i, 0.03)),
+		"trim, whole":        trimmed(0.1+0.2i, 0.6),
+		"trim, at the rim":   trimmed(-0.95+0.1i, 0.08),
+		"trim, open circuit": trimmed(0.9+0.05i, 0.15),
+		"trim, one frequency": &Trim{Reference: 75, Marks: [2]string{"", "434 MHz"}, Notes: []string{"No difference to explain."},
+			Traces: []Reach{{Name: "predicted", G: []complex128{0.2}}, {Name: "measured", G: []complex128{0.2}, Open: true}}},
 		"lines": &Lines{
 			X: Axis{Label: "frequency, GHz", Min: 1.6, Max: 1.75}, Y: Axis{Label: "gain in the wanted sense, dBic", Min: 8, Max: 14},
 			Series: []Series{{"gain", xs, []float64{12, 13, 13.2, 4}}, {"realised gain, with mismatch", xs, []float64{11, math.NaN(), 12, 3}}},

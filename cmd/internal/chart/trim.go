@@ -2,6 +2,7 @@ package chart
 
 import (
 	"fmt"
+	"image/color"
 	"math"
 
 	"gonum.org/v1/plot/vg"
@@ -244,30 +245,26 @@ func (t *Trim) key(b brush, y float64) {
 		b.stroke(width, tone, nil)
 		b.line(at{trimKey, tip.y}, at{tip.x - 0.7*head, tip.y})
 		b.arrow(tip, 0, head, tone)
-		for k, line := range wrapped(fmt.Sprint(i+1, "  ", a.Name), textSize, t.keyRoom()-arrowEntry) {
-			b.text(line, at{trimKey + arrowEntry, y - rowHeight*float64(k)}, textSize, left, ink)
-			if k > 0 {
-				y -= rowHeight
-			}
-		}
-		y = t.paragraph(b, a.Says, y-rowHeight, arrowEntry) - 5
+		y = t.paragraph(b, fmt.Sprint(i+1, "  ", a.Name), y, arrowEntry, textSize, ink)
+		y = t.paragraph(b, a.Says, y, arrowEntry, tickSize, quiet) - 5
 	}
-	for _, n := range append(t.markNotes(), t.Notes...) {
-		y = t.paragraph(b, n, y-6, 0)
+	for _, n := range append([]string{t.markNote()}, t.Notes...) {
+		y = t.paragraph(b, n, y-6, 0, tickSize, quiet)
 	}
 }
 
-func (t *Trim) markNotes() []string {
+// markNote says which markers stand for which frequency.
+func (t *Trim) markNote() string {
 	if t.Marks[0] == "" {
-		return []string{"markers and arrows at " + t.Marks[1]}
+		return "Markers and arrows at " + t.Marks[1] + "."
 	}
-	return []string{fmt.Sprintf("small markers at %s, large ones and arrows at %s", t.Marks[0], t.Marks[1])}
+	return fmt.Sprintf("Small markers at %s, large ones and arrows at %s.", t.Marks[0], t.Marks[1])
 }
 
 // paragraph writes wrapped lines from y downwards and returns the next one's.
-func (t *Trim) paragraph(b brush, text string, y, inset float64) float64 {
-	for _, line := range wrapped(text, tickSize, t.keyRoom()-inset) {
-		b.text(line, at{trimKey + inset, y}, tickSize, left, quiet)
+func (t *Trim) paragraph(b brush, text string, y, inset, size float64, tone color.Color) float64 {
+	for _, line := range wrapped(text, size, t.keyRoom()-inset) {
+		b.text(line, at{trimKey + inset, y}, size, left, tone)
 		y -= rowHeight
 	}
 	return y
