@@ -46,7 +46,7 @@ func (c *Comparison) trim() chart.Figure {
 	}
 	for _, e := range c.drawn() {
 		from := c.Predicted[c.mid()]
-		t.Arrows = append(t.Arrows, chart.Arrow{From: from, To: from + e.Added[len(e.Added)/2], Name: held.Replace(e.Words()), Says: explains(e)})
+		t.Arrows = append(t.Arrows, chart.Arrow{From: from, To: from + e.Added[len(e.Added)/2], Name: held.Replace(e.Words()), Says: held.Replace(explains(e))})
 	}
 	for _, n := range c.trimNotes() {
 		t.Notes = append(t.Notes, held.Replace(n))

@@ -136,6 +136,48 @@ func TestComparison(t *testing.T) {
 	}
 }
 
+// TestComparisonOfPairs: where one dimension leaves much, pairs stand under it,
+// what a fitter can do to both beside them; the best pair leads the picture.
+func TestComparisonOfPairs(t *testing.T) {
+	c := comparison(4)
+	single := c.Explanations.Single
+	c.Explanations.Pairs = []workshop.Explanation{
+		{Shifts: []workshop.Shift{single[0].Shifts[0], {Name: "line section", By: -2e-3, Undo: "lengthen"}}, Left: 0.04, Added: single[0].Added},
+		{Shifts: []workshop.Shift{single[0].Shifts[0], single[1].Shifts[0]}, Left: 1.2, Added: single[1].Added},
+	}
+	var text, object bytes.Buffer
+	if err := errors.Join(c.WriteText(&text), c.WriteJSON(&object)); err != nil {
+		t.Fatal(err)
+	}
+	for _, due := range []string{"one alone leaves 70 % of it; two at once", "riser height +1.00 mm and line section −2.00 mm", "96 %", "lower by 1.00 mm, lengthen by 2.00 mm", "nothing"} {
+		if !strings.Contains(text.String(), due) {
+			t.Errorf("%q is not in\n%s", due, &text)
+		}
+	}
+	var o struct {
+		Pairs []struct {
+			By       float64 `json:"by_m"`
+			Explains float64 `json:"explains_pct"`
+			Second   struct {
+				Dimension string
+				Undo      *string
+			}
+		}
+	}
+	if err := json.Unmarshal(object.Bytes(), &o); err != nil {
+		t.Fatal(err)
+	}
+	if p := o.Pairs[0]; p.By != 1e-3 || p.Explains != 96 || p.Second.Dimension != "line section" || *p.Second.Undo != "lengthen" || o.Pairs[1].Second.Undo != nil {
+		t.Errorf("%s", &object)
+	}
+	svg := strings.ReplaceAll(string(c.SVG()), "\u00a0", " ")
+	for _, due := range []string{"explains 96 % of the difference", "To take it back: riser height, lower by"} {
+		if !strings.Contains(svg, due) {
+			t.Errorf("%q is not in the picture", due)
+		}
+	}
+}
+
 // TestOverlay: a picture of any number of frequencies, well formed, the same
 // every time, whatever the reflection.
 func TestOverlay(t *testing.T) {

@@ -24,9 +24,6 @@ type movable struct {
 // reaches reports whether it may move so far.
 func (m *movable) reaches(x float64) bool { return x >= m.Lowest-1e-12 && x <= m.Highest+1e-12 }
 
-// fitters says whether a fitter can move it on the finished antenna.
-func (m *movable) fitters() bool { return m.More != "" }
-
 // fittersMovables are what can be moved on a finished antenna, each as far as
 // reach, m, or as far as there is room.
 func fittersMovables(d *models.Design, c *helix.Curve, reach float64) []movable {
