@@ -6,6 +6,7 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 
 	"turnwise/optimize"
@@ -78,7 +79,7 @@ func ZDT1In10() []*Problem {
 
 // ProblemByName finds a problem; it panics when there is none.
 func ProblemByName(name string) *Problem {
-	for _, p := range Problems() {
+	for _, p := range slices.Concat(Problems(), ZDT1In10(), Mixed()) {
 		if p.Name == name {
 			return p
 		}

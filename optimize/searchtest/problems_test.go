@@ -14,7 +14,7 @@ import (
 // The true front of each problem, sampled on its known optimum, has the
 // volume that the problem states (the values named in problems.go).
 func TestTrueFronts(t *testing.T) {
-	for _, p := range searchtest.Problems() {
+	for _, p := range append(searchtest.Problems(), searchtest.Mixed()...) {
 		points := optimum(p)
 		if points == nil {
 			continue
@@ -51,6 +51,17 @@ func optimum(p *searchtest.Problem) []space.Point {
 		_, f := math.Modf(float64(k+1) * 0.6180339887498949)
 		return 0.2 + 0.6*f
 	}
+	coil := func(turns, core, pitch float64) {
+		add(turns, math.Min(math.Floor(turns/5), 7), core, 7, pitch, 0.28, 0.6)
+	}
+	for quarters := range 161 {
+		switch p.Name {
+		case "coil":
+			coil(float64(quarters)/4, 1, 0.5)
+		case "coil-narrow":
+			coil(float64(quarters)/4, 0, 0.56)
+		}
+	}
 	for i := range n + 1 {
 		u := float64(i) / n
 		switch p.Name {
@@ -79,5 +90,29 @@ func TestShiftedOptimaAreInside(t *testing.T) {
 	s, err := p.Evaluate(context.Background(), optimize.Candidate{Point: make(space.Point, 30)})
 	if err != nil || s.Aims[1] < 2 {
 		t.Errorf("the old optimum still is one: %v (%v)", s.Aims, err)
+	}
+}
+
+// Of the narrow coil less than a hundredth of the space is feasible.
+func TestNarrowIsNarrow(t *testing.T) {
+	p := searchtest.ProblemByName("coil-narrow")
+	rng := optimize.Stream(1, "narrow", 0)
+	met := 0
+	const draws = 100000
+	for range draws {
+		u := make([]float64, len(p.Domain.Space))
+		for i := range u {
+			u[i] = rng.Float64()
+		}
+		s, err := p.Evaluate(context.Background(), optimize.Candidate{Point: p.Domain.Space.FromUnit(u)})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if front.Violation(s.Limits) <= 0 {
+			met++
+		}
+	}
+	if met == 0 || met > draws/100 {
+		t.Errorf("%d of %d points meet the limits", met, draws)
 	}
 }
