@@ -29,7 +29,7 @@ type coupling struct {
 	slopes     []complex128 // of one spot, the rim's Φ: [signed mode][node]
 	raw        []complex128 // [function][signed mode][raw entry]
 	y          []complex128 // [function][signed mode][entry]
-	back       []complex128 // s y of one mode, [function][entry]
+	back       []complex128 // s y of a function, turned: [function][−mode][entry]
 }
 
 // wireSpot is a point of a wire about the axis, with the tangent there.
@@ -58,12 +58,15 @@ type rimNode struct {
 }
 
 // modeLevels are the numbers of modes that plates are solved for.
-var modeLevels = [...]int{4, 6, 8, 12, 16, 24, 32}
+var modeLevels = [...]int{4, 5, 6, 7, 8, 10, 12, 16, 20, 24, 32}
 
 // levels of accuracy: what the modes and the azimuths leave out.
 const (
-	modeLoss    = 12.0 // −ln of a share of the wires' matrix
-	azimuthLoss = 12.0 // −ln of a share of what is sent to a ring
+	modeLoss    = 9.0  // −ln of a share of the wires' matrix
+	azimuthLoss = 10.0 // −ln of a share of what is sent to a ring
+	spotLoss    = 8.0  // −ln of a share of what an element sends
+	leastSpots  = 3
+	mostSpots   = 10
 )
 
 // survey lays the spots and says how many modes the antenna needs at the
@@ -98,20 +101,23 @@ func (s *wireSpot) decay(p *place) float64 {
 	return math.Acosh(1 + (size2(d)+z*z)/(2*size))
 }
 
-// lay takes the spots from the mesh.
+// lay lays the spots: as many an element as its distance from the edge, in
+// half lengths δ, wants for (δ + √(1 + δ²))^−2n to be spotLoss.
 func (c *coupling) lay(m *mesh) {
 	c.spots, c.value, c.slope = c.spots[:0], c.value[:0], c.slope[:0]
-	g := &legendre[m.set.apart]
 	for i := range m.elements {
 		e := &m.elements[i]
+		delta := 2 * c.clear(e) / e.length
+		n := int(math.Ceil(spotLoss / 2 / math.Asinh(delta)))
+		g := &legendre[min(max(n, leastSpots), mostSpots)]
 		for j, x := range g.x {
-			p := &m.spots[i*len(g.x)+j]
-			s := wireSpot{element: i, rho: math.Hypot(p.at[0], p.at[1]), z: p.at[2], cos: 1, uz: p.tangent[2]}
+			at, tangent, _ := e.at(x)
+			s := wireSpot{element: i, rho: math.Hypot(at[0], at[1]), z: at[2], cos: 1, uz: tangent[2]}
 			if s.rho > 0 {
-				s.cos, s.sin = p.at[0]/s.rho, p.at[1]/s.rho
+				s.cos, s.sin = at[0]/s.rho, at[1]/s.rho
 			}
-			s.ur = p.tangent[0]*s.cos + p.tangent[1]*s.sin
-			s.uphi = p.tangent[1]*s.cos - p.tangent[0]*s.sin
+			s.ur = tangent[0]*s.cos + tangent[1]*s.sin
+			s.uphi = tangent[1]*s.cos - tangent[0]*s.sin
 			c.spots = append(c.spots, s)
 			w := g.w[j] * e.length / 2
 			for l := range m.order {
@@ -120,6 +126,16 @@ func (c *coupling) lay(m *mesh) {
 			}
 		}
 	}
+}
+
+// clear is an element's distance from the plate's edge, from a cup's rim too.
+func (c *coupling) clear(e *element) float64 {
+	gap := math.Inf(1)
+	for _, p := range e.tips {
+		z := max(0, p[2]-c.plate.Rim)
+		gap = min(gap, math.Hypot(math.Hypot(p[0], p[1])-c.plate.Radius, z))
+	}
+	return max(gap, 1e-3*e.length)
 }
 
 // prepare does what does not depend on frequency: rules, distances, and the
@@ -163,7 +179,7 @@ func (c *coupling) lines(set *settings) {
 	for _, u := range c.ring {
 		c.rings = append(c.rings, ringRule{place: c.place(beyond, u)})
 	}
-	g := &legendre[set.apart+1]
+	g := &legendre[set.apart]
 	for i := range c.patches {
 		p := &c.patches[i]
 		if p.part != rim {
@@ -293,13 +309,14 @@ func (mean means) plane(samples []sample, r *ringRule, k float64) {
 	}
 }
 
-// adjacent are (a_{m−1} ± a_{m+1})/2.
-func adjacent(a means, m int) (plus, minus complex128) {
-	below := a[1]
+// adjacent are (a_{m−1} ± a_{m+1})/2 and a_m.
+func adjacent(a means, m int) (plus, minus, mid complex128) {
+	below, above := a[1], a[m+1]
 	if m > 0 {
 		below = a[m-1]
 	}
-	return (below + a[m+1]) / 2, (below - a[m+1]) / 2
+	br, bi, ar, ai := real(below)/2, imag(below)/2, real(above)/2, imag(above)/2
+	return complex(br+ar, bi+ai), complex(br-ar, bi-ai), a[m]
 }
 
 // planeModes are K_ρ and K_φ/j of a mode and of its like below zero, but for
@@ -308,12 +325,17 @@ type planeModes struct{ up, down [2]complex128 }
 
 func (s *wireSpot) plane(rho complex128, mean means, m int) planeModes {
 	const scale = -1 / (2 * math.Pi)
-	p, q := s.z*s.ur-s.rho*s.uz, s.z*s.uphi
-	plus, minus := adjacent(mean, m)
-	even := complex(scale*p, 0)*plus + complex(scale*s.uz, 0)*rho*mean[m]
-	odd := complex(0, scale*q) * minus
-	turn, straight := complex(scale*p, 0)*minus, complex(0, scale*q)*plus
-	return planeModes{up: [2]complex128{even - odd, turn - straight}, down: [2]complex128{even + odd, -turn - straight}}
+	p, q, u := scale*(s.z*s.ur-s.rho*s.uz), scale*s.z*s.uphi, scale*s.uz
+	plus, minus, a := adjacent(mean, m)
+	a *= rho
+	er, ei := p*real(plus)+u*real(a), p*imag(plus)+u*imag(a)
+	or, oi := -q*imag(minus), q*real(minus)
+	tr, ti := p*real(minus), p*imag(minus)
+	sr, si := -q*imag(plus), q*real(plus)
+	return planeModes{
+		up:   [2]complex128{complex(er-or, ei-oi), complex(tr-sr, ti-si)},
+		down: [2]complex128{complex(er+or, ei+oi), complex(-tr-sr, -ti-si)},
+	}
 }
 
 // planeRow puts the modes of the plane's current on ring j into the row.
@@ -335,12 +357,14 @@ func (c *coupling) rimMeans(samples []sample, r *ringRule) {
 	clear(dif)
 	for i := range r.sin2 {
 		a, b := &samples[2*i], &samples[2*i+1]
-		direct, image := a.phasor/a.r, b.phasor/b.r
+		u, v := 1/real(a.r), 1/real(b.r)
+		dr, di, ir, ii := u*real(a.phasor), u*imag(a.phasor), v*real(b.phasor), v*imag(b.phasor)
+		sr, si, er, ei := dr+ir, di+ii, dr-ir, di-ii
 		cosine := r.cosine[i*azimuthModes:]
-		for m := range sum {
-			w := complex(cosine[m], 0)
-			sum[m] += w * (direct + image)
-			dif[m] += w * (direct - image)
+		cosine = cosine[:len(sum)]
+		for m, cos := range cosine {
+			sum[m] += complex(cos*sr, cos*si)
+			dif[m] += complex(cos*er, cos*ei)
 		}
 	}
 	scale := complex(2*math.Pi/float64(len(r.sin2)), 0)
@@ -355,12 +379,12 @@ func (c *coupling) rimRow(s *wireSpot, j int) {
 	wide, nodes := c.entriesRaw(), len(c.rims)
 	first := 2*len(c.ring) + j
 	for m := range c.modes + 1 {
-		plus, minus := adjacent(c.pair, m)
-		upright := complex(s.uz, 0) * c.mean[m]
-		turn, straight := complex(s.ur, 0)*minus, complex(0, s.uphi)*plus
+		plus, minus, charge := adjacent(c.pair, m)
+		upright := complex(s.uz*real(c.mean[m]), s.uz*imag(c.mean[m]))
+		turn, straight := complex(s.ur*real(minus), s.ur*imag(minus)), complex(-s.uphi*imag(plus), s.uphi*real(plus))
 		up, down := c.row[(c.modes+m)*wide+first:], c.row[(c.modes-m)*wide+first:]
-		up[0], up[nodes], up[2*nodes] = upright, turn-straight, c.pair[m]
-		down[0], down[nodes], down[2*nodes] = upright, -turn-straight, c.pair[m]
+		up[0], up[nodes], up[2*nodes] = upright, turn-straight, charge
+		down[0], down[nodes], down[2*nodes] = upright, -turn-straight, charge
 	}
 }
 
@@ -416,24 +440,21 @@ func (c *coupling) project(m *mesh, k float64) {
 //
 //	ΔZ = ỹ₀ᵀ s₀ y₀ + Σ_{m>0} (ỹ_mᵀ s_m y_m + its transpose).
 func (c *coupling) apply(m *mesh, e *echo, z []complex128, both bool) {
-	q, n := c.entries(), m.functions
-	c.back = cleared(c.back, n*q)
-	for mode := range c.modes + 1 {
-		c.echo(e.modes[mode].s, mode, n)
-		for i := range n {
-			last := i
-			if both {
-				last = n - 1
-			}
-			row := z[i*n : i*n+last+1]
-			mine, back := c.sent(i, -mode), c.back[i*q:(i+1)*q]
-			for j := range row {
-				v := dot(mine, c.back[j*q:(j+1)*q])
-				if mode > 0 {
-					v += dot(c.sent(j, -mode), back)
-				}
-				row[j] += v
-			}
+	n, q := m.functions, c.entries()
+	sent, below := q*(2*c.modes+1), q*c.modes // the modes below zero stand first
+	size := below + q
+	c.back = cleared(c.back, n*size)
+	for fn := range n {
+		c.echo(e, fn, c.back[fn*size:(fn+1)*size])
+	}
+	for i := range n {
+		last := i
+		if both {
+			last = n - 1
+		}
+		row, y, back := z[i*n:i*n+last+1], c.y[i*sent:i*sent+size], c.back[i*size:i*size+below]
+		for j := range row {
+			row[j] += dot(y, c.back[j*size:(j+1)*size]) + dot(back, c.y[j*sent:j*sent+below])
 		}
 	}
 }
@@ -445,28 +466,43 @@ func (c *coupling) sent(fn, mode int) []complex128 {
 	return c.y[at : at+q]
 }
 
-// echo makes s y of all functions, the azimuthal entries turned.
-func (c *coupling) echo(s []complex128, mode, functions int) {
+// echo makes s y of a function in the modes from 0 up, the azimuthal entries
+// turned, each in the place of the mode below zero that it meets.
+func (c *coupling) echo(e *echo, fn int, back []complex128) {
 	q := c.entries()
-	for i := range functions {
-		y, back := c.sent(i, mode), c.back[i*q:(i+1)*q]
-		for j := range back {
-			v := dot(s[j*q:(j+1)*q], y)
-			if c.azimuthal(j) {
-				v = -v
-			}
-			back[j] = v
+	for mode := range c.modes + 1 {
+		s, y, out := e.modes[mode].s, c.sent(fn, mode), back[(c.modes-mode)*q:][:q]
+		for j := range out {
+			out[j] = dot(s[j*q:(j+1)*q], y)
+		}
+		for _, j := range c.turns {
+			out[j] = -out[j]
 		}
 	}
 }
 
+// dot is Σ a b; its sums are kept apart so that none waits for another.
 func dot(a, b []complex128) complex128 {
 	b = b[:len(a)]
-	var re, im float64
-	for i, x := range a {
-		y := b[i]
-		re += real(x)*real(y) - imag(x)*imag(y)
-		im += real(x)*imag(y) + imag(x)*real(y)
+	var rr, ii, ri, ir, ss, jj, sj, js float64
+	i := 0
+	for ; i+1 < len(a); i += 2 {
+		x, y, u, v := a[i], b[i], a[i+1], b[i+1]
+		rr += real(x) * real(y)
+		ii += imag(x) * imag(y)
+		ri += real(x) * imag(y)
+		ir += imag(x) * real(y)
+		ss += real(u) * real(v)
+		jj += imag(u) * imag(v)
+		sj += real(u) * imag(v)
+		js += imag(u) * real(v)
 	}
-	return complex(re, im)
+	if i < len(a) {
+		x, y := a[i], b[i]
+		rr += real(x) * real(y)
+		ii += imag(x) * imag(y)
+		ri += real(x) * imag(y)
+		ir += imag(x) * real(y)
+	}
+	return complex(rr-ii+(ss-jj), ri+ir+(sj+js))
 }

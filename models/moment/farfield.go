@@ -110,10 +110,9 @@ func (w *work) radiated() float64 {
 	flat = max(flat, w.antenna.Plate.Radius)
 	reach := w.wave * math.Hypot(flat, max(tall, w.antenna.Plate.Rim))
 	around := harmonics(w.wave * flat)
-	steps := harmonics(reach)/2 + 1
-	lo := -1.0
+	steps, lo := harmonics(reach)+1, -1.0
 	if w.antenna.Plane && !w.antenna.Plate.Finite() {
-		lo = 0
+		steps, lo = steps/2+1, 0
 	}
 	return w.sphere(steps, around, lo)
 }

@@ -32,11 +32,11 @@ type settings struct {
 func (f Fidelity) settings() (settings, bool) {
 	switch f {
 	case Draft:
-		return settings{degree: 4, turn: 4.2, wave: 3.8, least: 1, points: 3, edge: 4, near: 1.2, graded: 8, smooth: 4, apart: 4, beyond: 7}, true
+		return settings{degree: 4, turn: 4.2, wave: 3.8, least: 1, points: 3, edge: 4, near: 1.2, graded: 8, smooth: 4, apart: 4, beyond: 6}, true
 	case Standard, "":
-		return settings{degree: 4, turn: 5.4, wave: 4.4, least: 1, points: 3, edge: 4, near: 1.2, graded: 10, smooth: 5, apart: 5, beyond: 9}, true
+		return settings{degree: 4, turn: 5.4, wave: 4.4, least: 1, points: 3, edge: 4, near: 1.2, graded: 10, smooth: 5, apart: 5, beyond: 7}, true
 	case Fine:
-		return settings{degree: 4, turn: 9, wave: 8, least: 2, points: 4, edge: 5, near: 1.6, graded: 16, smooth: 8, apart: 8, beyond: 14}, true
+		return settings{degree: 4, turn: 9, wave: 8, least: 2, points: 4, edge: 5, near: 1.6, graded: 16, smooth: 8, apart: 8, beyond: 12}, true
 	}
 	return settings{}, false
 }

@@ -78,27 +78,20 @@ func plateOf(g models.Ground) Plate {
 	return Plate{}
 }
 
-// sheltered refuses a plate that ends before the riser's opening does, that
-// the winding overhangs, or whose rim it touches.
+// sheltered refuses a plate that the winding overhangs so low that the
+// plane's current beyond the edge is no outgoing wave.
 func (w *worker) sheltered() error {
 	p := plateOf(w.design.Ground)
 	if !p.Finite() {
 		return nil
 	}
 	d := w.design
-	thick := d.Conductor.Diameter/2 + max(d.Insulation.Thickness, 0)
-	if foot := d.Diameter[0]/2 + frillRatio*d.PinDiameter()/2; foot >= p.Radius {
-		return fmt.Errorf("ground.diameter: a plate %.4g mm across ends inside the riser's opening; more than %.4g mm are due", 2e3*p.Radius, 2e3*foot)
-	}
 	steps := int(math.Ceil(32 * d.Turns))
 	for i := range steps + 1 {
 		t := d.Turns * float64(i) / float64(steps)
-		over, z := w.curve.Diameter(t)/2-p.Radius, w.curve.Height(t)
-		if p.Rim > 0 && z <= p.Rim+thick && over > -thick {
-			return fmt.Errorf("ground.diameter: the winding, %.4g mm across, touches the rim of a cup of %.4g mm", 2e3*(over+p.Radius+thick), 2e3*p.Radius)
-		}
-		if over > 0 && z < overhang*over {
-			return fmt.Errorf("ground.diameter: the winding, %.4g mm across, overhangs a plate of %.4g mm at a height of only %.4g mm; a plate as wide as the winding is due", 2e3*(over+p.Radius), 2e3*p.Radius, 1e3*z)
+		r, z := w.curve.Diameter(t)/2, w.curve.Height(t)
+		if z < overhang*(r-p.Radius) {
+			return fmt.Errorf("ground.diameter: the winding, %.4g mm across there, overhangs a plate of %.4g mm at a height of only %.4g mm; a plate as wide as the winding is due", 2e3*r, 2e3*p.Radius, 1e3*z)
 		}
 	}
 	return nil

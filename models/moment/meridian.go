@@ -18,8 +18,8 @@ import (
 
 // reach is how the meridian goes on beyond the edge.
 const (
-	slantTurn  = 55 * math.Pi / 180 // α
-	slantWaves = 2.0                // length, wavelengths
+	slantTurn  = 66 * math.Pi / 180 // α
+	slantWaves = 2.2                // length, wavelengths
 	slantCrowd = 4.0                // how much finer it starts than it ends
 )
 
@@ -63,6 +63,7 @@ type meridian struct {
 	axial   int       // function of F on the axis, which only m = 1 has
 	around  []bool    // of each function: F
 	ring    []float64 // parameters beyond of the rings that take the plane's current
+	turns   []int     // entries of y whose sign turns with the mode's
 }
 
 func (s *settings) meridian(p Plate, k float64) *meridian {
@@ -70,7 +71,7 @@ func (s *settings) meridian(p Plate, k float64) *meridian {
 	m := &meridian{plate: p, degree: s.degree, slant: cmplx.Rect(slantWaves*wave, -slantTurn)}
 	m.parts[disc] = 1 + int(math.Ceil(s.wave*p.Radius/wave*math.Pi/2))
 	if p.Rim > 0 {
-		m.parts[rim] = 2 + int(math.Ceil(s.wave*p.Rim/wave*math.Pi/2))
+		m.parts[rim] = 1 + int(math.Ceil(s.wave*p.Rim/wave*math.Pi/2))
 	}
 	m.parts[beyond] = s.beyond
 	for p := range m.parts {
@@ -90,6 +91,7 @@ func (s *settings) meridian(p Plate, k float64) *meridian {
 	for i := range n + m.degree {
 		m.ring = append(m.ring, greville(n, i, m.degree))
 	}
+	m.turns = m.azimuthal()
 	return m
 }
 
@@ -165,13 +167,19 @@ func (m *meridian) number() {
 	m.count = next
 }
 
-// azimuthal tells the entries of y whose sign turns with the mode's.
-func (m *meridian) azimuthal(entry int) bool {
+// azimuthal lists the entries of y whose sign turns with the mode's: the
+// azimuthal current on the rings beyond and the rim's functions F.
+func (m *meridian) azimuthal() (turns []int) {
 	n := len(m.ring)
-	if entry < 2*n {
-		return entry >= n
+	for i := range n {
+		turns = append(turns, n+i)
 	}
-	return entry-2*n >= m.parts[rim]+m.degree-1
+	for i := m.unknown - m.rimCount(); i < m.unknown; i++ {
+		if m.around[i] {
+			turns = append(turns, 2*n+i-(m.unknown-m.rimCount()))
+		}
+	}
+	return turns
 }
 
 // lay visits the elements on which spline i is not zero.

@@ -3,6 +3,7 @@ package moment
 import (
 	"errors"
 	"fmt"
+	"math"
 )
 
 // Plate is a finite ground about the axis that stands in place of the
@@ -29,7 +30,7 @@ import (
 //
 // Beyond the edge the plane's current is an outgoing wave and has no end. Its
 // meridian goes on into complex radii, R + s e^{−jα}, where every outgoing
-// wave dies away within two wavelengths; the integrals do not change, as the
+// wave dies away within about two wavelengths; the integrals do not change, as the
 // fields have no singularity between the real line and the slanting one.
 type Plate struct {
 	Radius float64 // m
@@ -53,3 +54,20 @@ func (p Plate) check(plane bool) error {
 
 // mostPlate is a length in metres that no plate has.
 const mostPlate = 1e6
+
+// Plates beyond these sizes, in wavelengths, are not solved: the rules around
+// the axis end there.
+const (
+	mostRadii = 15
+	mostRim   = 10
+)
+
+// fits tells whether a plate can be solved up to the wave number k.
+func (p Plate) fits(k float64) error {
+	waves := k / (2 * math.Pi)
+	if p.Radius*waves > mostRadii || p.Rim*waves > mostRim {
+		return fmt.Errorf("ground: a plate %.4g wavelengths across with a rim of %.4g; up to %d and %d are solved: a smaller one, or an infinite plane, is due",
+			2*p.Radius*waves, p.Rim*waves, 2*mostRadii, mostRim)
+	}
+	return nil
+}

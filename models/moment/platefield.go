@@ -134,7 +134,7 @@ func (s *shore) amplitudes(current []complex128) {
 				s.sum[j] += i * y[j]
 			}
 		}
-		s.turned(m, s.sum)
+		s.opposite(m, s.sum)
 		mode := &s.echo.modes[abs(m)]
 		out := s.amplitude[(s.modes+m)*n:][:n]
 		for i := range out {
@@ -150,16 +150,14 @@ func (s *shore) amplitudes(current []complex128) {
 	}
 }
 
-// turned turns the azimuthal entries of a mode below zero: the plate answers
+// opposite turns the azimuthal entries of a mode below zero: the plate answers
 // it as its like above.
-func (s *shore) turned(m int, y []complex128) {
+func (s *shore) opposite(m int, y []complex128) {
 	if m >= 0 {
 		return
 	}
-	for j := range y {
-		if s.azimuthal(j) {
-			y[j] = -y[j]
-		}
+	for _, j := range s.turns {
+		y[j] = -y[j]
 	}
 }
 

@@ -3,6 +3,7 @@ package moment
 import (
 	"container/list"
 	"sync"
+	"sync/atomic"
 )
 
 // plates keeps the echoes of plates for all workers, the latest used.
@@ -36,6 +37,7 @@ type plateKey struct {
 type keptEcho struct {
 	key  plateKey
 	once sync.Once
+	done atomic.Bool
 	echo *echo
 	err  error
 	size int
@@ -48,13 +50,21 @@ const mostKept = 256 << 20
 // the same one wait for the first.
 func (p *plates) echo(set *settings, key plateKey) (*echo, error) {
 	k := p.find(key)
+	if !k.done.Load() {
+		p.solve(set, k)
+	}
+	return k.echo, k.err
+}
+
+// solve solves a place's plate unless another worker has.
+func (p *plates) solve(set *settings, k *keptEcho) {
 	k.once.Do(func() {
-		k.echo, k.err = p.meridian(set, key.plate, key.finest).echo(set, key.k, key.modes)
+		defer k.done.Store(true)
+		k.echo, k.err = p.meridian(set, k.key.plate, k.key.finest).echo(set, k.key.k, k.key.modes)
 		if k.err == nil {
 			p.weigh(k)
 		}
 	})
-	return k.echo, k.err
 }
 
 // find gets the place of a key and makes it the latest.

@@ -60,14 +60,15 @@ func TestRefusals(t *testing.T) {
 		{"thin air", func(d *models.Design) { d.Insulation = models.Insulation{Thickness: 1e-3, Permittivity: 0.5} }, nil, []string{"insulation.permittivity", "from 1"}},
 		{"no conductivity", func(d *models.Design) { d.Conductor.Material.Conductivity = 0 }, nil, []string{"conductor.conductivity", "above zero"}},
 		{"a plate within the opening", func(d *models.Design) { d.Ground = models.Ground{Kind: models.Disc, Diameter: d.Diameter[0]} }, nil, []string{"ground.diameter", "opening", "more than"}},
+		{"a plate as wide as a field", func(d *models.Design) { d.Ground = models.Ground{Kind: models.Disc, Diameter: 1e3} }, nil, []string{"ground", "wavelengths across", "up to 30"}},
 		{"a low winding over the edge", func(d *models.Design) {
-			d.Diameter = append(d.Diameter, 2*d.Diameter[0])
-			d.Ground = models.Ground{Kind: models.Disc, Diameter: 1.1 * d.Diameter[0]}
+			d.Diameter = append(d.Diameter, 3*d.Diameter[0])
+			d.Turns, d.Ground = 1, models.Ground{Kind: models.Disc, Diameter: 1.1 * d.Diameter[0]}
 		}, nil, []string{"ground.diameter", "overhangs", "as wide as the winding"}},
 		{"a winding through the rim", func(d *models.Design) {
-			d.Diameter = append(d.Diameter, 2*d.Diameter[0])
-			d.Ground = models.Ground{Kind: models.Cup, Diameter: 1.5 * d.Diameter[0], Rim: d.Turns * d.Spacing[0]}
-		}, nil, []string{"ground.diameter", "touches the rim"}},
+			d.Ground = models.Ground{Kind: models.Cup, Diameter: d.Diameter[0] + 0.9*d.Conductor.Diameter, Rim: d.Spacing[0]}
+			d.Feed.Pin = d.Conductor.Diameter / 3
+		}, nil, []string{"ground.diameter", "cup's wall", "a wider cup"}},
 		{"more turns than room", func(d *models.Design) { d.Turns = 1000 }, nil, []string{"1000 turns", "at most 2500", "fewer turns"}},
 		{"light", nil, []float64{1e15}, []string{"1e+06 GHz", "at most 2500", "lower frequency"}},
 		{"beyond light", nil, []float64{1e9, 1e300}, []string{"1e+291 GHz", "at most 2500", "lower frequency"}},
@@ -121,7 +122,9 @@ func TestWarnings(t *testing.T) {
 		{"six decades", nil, []float64{1e3, 1e9}, []string{"axial mode"}},
 		{"a steep cone", func(d *models.Design) { d.Diameter = models.Law{0.004, 0.2} }, nil, []string{"0.0419 to 2.1 wavelengths", "axial mode"}},
 		{"a wide strip", func(d *models.Design) { d.Feed.Strip = models.Strip{Turns: 0.25, Width: 0.02} }, nil, []string{"strip is 3.34 times", "3"}},
-		{"close to a rim", func(d *models.Design) { d.Ground = models.Ground{Kind: models.Cup, Diameter: d.Diameter[0] + 0.02, Rim: 0.1} }, nil, []string{"cup", "modes"}},
+		{"close to a rim", func(d *models.Design) {
+			d.Ground = models.Ground{Kind: models.Cup, Diameter: d.Diameter[0] + 0.02, Rim: 0.1}
+		}, nil, []string{"cup", "modes"}},
 		{"60 turns", func(d *models.Design) { d.Turns = 60 }, nil, []string{"excess phase is 1.02", "0.5"}},
 	}
 	for _, tt := range tests {

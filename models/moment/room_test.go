@@ -16,7 +16,10 @@ func TestAnswersAllocateNothing(t *testing.T) {
 	coat := benchDesign(4)
 	coat.Feed.Strip = models.Strip{Turns: 0.25, Width: 0.006}
 	coat.Insulation = models.Insulation{Thickness: 3e-4, Permittivity: 2.3}
-	for name, d := range map[string]models.Design{"uniform": benchDesign(4), "taper": benchTaper(4), "strip and coat": coat} {
+	disc, cup := benchDesign(4), benchDesign(4)
+	disc.Ground = models.Ground{Kind: models.Disc, Diameter: 0.3}
+	cup.Ground = models.Ground{Kind: models.Cup, Diameter: 0.3, Rim: 0.1}
+	for name, d := range map[string]models.Design{"uniform": benchDesign(4), "taper": benchTaper(4), "strip and coat": coat, "disc": disc, "cup": cup} {
 		var curve helix.Curve
 		fit := testing.AllocsPerRun(3, func() {
 			if err := curve.Wind(&d); err != nil {
@@ -54,7 +57,10 @@ func TestRoomIsLeftClean(t *testing.T) {
 	strip.Feed.Strip = models.Strip{Turns: 0.25, Width: 0.006}
 	coat := benchTaper(4)
 	coat.Insulation = models.Insulation{Thickness: 3e-4, Permittivity: 2.3}
-	designs := []models.Design{benchDesign(12), strip, strip, coat, benchDesign(2), benchTaper(9), strip}
+	disc, cup := benchTaper(4), benchDesign(3)
+	disc.Ground = models.Ground{Kind: models.Disc, Diameter: 0.3}
+	cup.Ground = models.Ground{Kind: models.Cup, Diameter: 0.25, Rim: 0.1}
+	designs := []models.Design{benchDesign(12), strip, disc, strip, cup, coat, benchDesign(2), disc, benchTaper(9), strip}
 	q := models.Question{Hz: []float64{0.97e9, 1e9, 1.02e9}, Outputs: models.Cuts | models.Spread | models.Balance}
 	used := newWorker()
 	for i := range designs {
@@ -79,7 +85,11 @@ func TestManyDesignsAtOnce(t *testing.T) {
 	}
 	q := models.Question{Hz: []float64{0.98e9, 1.02e9}, Outputs: models.Cuts | models.Spread}
 	ask := func(i int) ([]models.Sample, error) {
-		r, err := s.Simulate(context.Background(), benchTaper(1+float64(i%7)), q)
+		d := benchTaper(1 + float64(i%7))
+		if i%4 == 3 {
+			d.Ground = models.Ground{Kind: models.Disc, Diameter: 0.2 + 0.05*float64(i%3)}
+		}
+		r, err := s.Simulate(context.Background(), d, q)
 		return r.Samples, err
 	}
 	const count = 28

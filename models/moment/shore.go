@@ -37,6 +37,9 @@ func (s *shore) prepare(m *mesh, p Plate, set settings, hz []float64) error {
 	}
 	s.step = evenly(s.k)
 	highest := s.k[len(s.k)-1]
+	if err := p.fits(highest); err != nil {
+		return err
+	}
 	mer := s.store.meridian(&s.set, p, highest)
 	s.modes, s.short = s.survey(m, mer, highest)
 	s.coupling.prepare(&s.set, s.modes, s.k[0], highest, s.step)
