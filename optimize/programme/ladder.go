@@ -12,8 +12,9 @@ import (
 // ladder puts what a searcher asks to the cheapest model first and asks the
 // dearer ones only about the part that promises most once each model's answers
 // have been corrected towards the next one's. The searcher is told what the
-// finest model said; the rest is unknown to it. A part goes up whatever the
-// cheap model says of it, so that it seeds and orders but never screens out.
+// finest model said, and of the rest, under the rung that answered, what it
+// would say at its worst. A part goes up whatever the cheap model says of it,
+// so that it seeds and orders but never screens out.
 type ladder struct {
 	inner  optimize.Searcher
 	finest int
@@ -39,6 +40,11 @@ const (
 	randomShare   = 1.0 / 5
 	leastPairs    = 20
 )
+
+// doubt is how many deviations worse than foretold a point is told that did
+// not go up: where the models agree it is worth something, and where they do
+// not it never beats what the finest has seen.
+const doubt = 3.0
 
 func newLadder(inner optimize.Searcher, d optimize.Domain, evaluations int, seed uint64) *ladder {
 	l := &ladder{inner: inner, finest: d.Finest, left: evaluations, seed: seed}
@@ -93,11 +99,28 @@ func (l *ladder) Tell(es []optimize.Evaluation) {
 	told := l.answers[l.finest]
 	for i := range told {
 		if told[i].Status == "" {
-			told[i] = optimize.Evaluation{Candidate: l.batch[i], Status: optimize.Failed, Err: "not asked of the finest model"}
+			told[i] = l.foretold(i)
 		}
 	}
 	l.inner.Tell(told)
 	l.open = nil
+}
+
+// foretold is what the finest model is taken to say of a place that did not
+// reach it.
+func (l *ladder) foretold(i int) optimize.Evaluation {
+	rung := l.finest - 1
+	for rung > 0 && l.answers[rung][i].Status == "" {
+		rung--
+	}
+	e := l.answers[rung][i]
+	for _, step := range l.steps[rung:] {
+		if e.Status != optimize.OK || step.pairs < leastPairs {
+			return optimize.Evaluation{Candidate: l.batch[i], Status: optimize.Failed, Err: "not asked of the finest model"}
+		}
+		e.Aims, e.Limits = step.foretell(&e, doubt)
+	}
+	return e
 }
 
 // promoted are the places that go up, in order.
@@ -110,7 +133,7 @@ func (l *ladder) promoted() []int {
 	drawn := int(randomShare * float64(n))
 	values := make([]front.Value, len(l.open))
 	for k, i := range l.open {
-		values[k] = step.foretell(&l.answers[l.rung][i])
+		values[k] = step.value(&l.answers[l.rung][i])
 	}
 	var order []int
 	for _, layer := range front.Layers(values) {
@@ -140,61 +163,4 @@ func (l *ladder) Close() error {
 		return c.Close()
 	}
 	return nil
-}
-
-// correction takes a model's aims and limits to the next finer one's, a
-// straight line each, by least squares over all that both have answered.
-type correction struct {
-	pairs   int
-	outputs []line // of aims, then limits
-}
-
-// line is a regression of y on x that grows.
-type line struct{ n, x, y, xx, xy float64 }
-
-func (l *line) add(x, y float64) {
-	l.n++
-	l.x += x
-	l.y += y
-	l.xx += x * x
-	l.xy += x * y
-}
-
-// of is the line at x. Where x never varied it is y's mean.
-func (l *line) of(x float64) float64 {
-	spread := l.n*l.xx - l.x*l.x
-	if !(spread > 1e-12*l.n*l.xx) {
-		return l.y / l.n
-	}
-	slope := (l.n*l.xy - l.x*l.y) / spread
-	return l.y/l.n + slope*(x-l.x/l.n)
-}
-
-func (c *correction) learn(rough, fine *optimize.Evaluation) {
-	if rough.Status != optimize.OK || fine.Status != optimize.OK {
-		return
-	}
-	c.pairs++
-	for m := range rough.Aims {
-		c.outputs[m].add(rough.Aims[m], fine.Aims[m])
-	}
-	for m := range rough.Limits {
-		c.outputs[len(rough.Aims)+m].add(rough.Limits[m], fine.Limits[m])
-	}
-}
-
-// foretell is what the finer model will make of an answer.
-func (c *correction) foretell(e *optimize.Evaluation) front.Value {
-	if e.Status != optimize.OK {
-		return front.Value{Unknown: true}
-	}
-	aims := make([]float64, len(e.Aims))
-	for m, x := range e.Aims {
-		aims[m] = c.outputs[m].of(x)
-	}
-	limits := make([]float64, len(e.Limits))
-	for m, x := range e.Limits {
-		limits[m] = c.outputs[len(aims)+m].of(x)
-	}
-	return front.Value{Aims: aims, Violation: front.Violation(limits)}
 }
