@@ -1,6 +1,6 @@
 // Package moment is the internal full-wave evaluator: the method of moments
-// for thin round wires, in free space or over an infinite perfectly
-// conducting plane.
+// for thin round wires, in free space, over an infinite perfectly conducting
+// plane, or over a disc or cup about the axis, which [Plate] describes.
 //
 // The current along the exact centre line is a spline of degree 4 in arc
 // length; the mixed-potential electric-field equation is tested with the

@@ -2,6 +2,7 @@ package moment
 
 import (
 	"container/list"
+	"math"
 	"sync"
 	"sync/atomic"
 )
@@ -54,6 +55,69 @@ func (p *plates) echo(set *settings, key plateKey) (*echo, error) {
 		p.solve(set, k)
 	}
 	return k.echo, k.err
+}
+
+// between fills out with the echo at wave number k, by the polynomial through
+// those at nodes, whose barycentric weights are alternating halves of sines: the
+// Chebyshev points of the first kind.
+func (p *plates) between(set *settings, key plateKey, nodes []float64, k float64, out *echo) error {
+	total := 0.0
+	for i, at := range nodes {
+		if k == at {
+			return p.between(set, key, nodes[i:i+1], math.Nextafter(k, 0), out)
+		}
+		total += barycentric(i, len(nodes)) / (k - at)
+	}
+	for i, at := range nodes {
+		key.k = at
+		e, err := p.echo(set, key)
+		if err != nil {
+			return err
+		}
+		if i == 0 {
+			out.like(e, k)
+		}
+		out.add(e, barycentric(i, len(nodes))/(k-at)/total)
+	}
+	return nil
+}
+
+func barycentric(i, n int) float64 {
+	w := math.Sin(math.Pi * (float64(i) + 0.5) / float64(n))
+	if i%2 == 1 {
+		return -w
+	}
+	return w
+}
+
+// chebyshev lays n points from lo to hi.
+func chebyshev(points []float64, lo, hi float64, n int) []float64 {
+	points = points[:0]
+	for i := range n {
+		points = append(points, (lo+hi)/2-(hi-lo)/2*math.Cos(math.Pi*(float64(i)+0.5)/float64(n)))
+	}
+	return points
+}
+
+// like makes room in e for an echo like another, of nothing.
+func (e *echo) like(o *echo, k float64) {
+	e.meridian, e.k = o.meridian, k
+	for len(e.modes) < len(o.modes) {
+		e.modes = append(e.modes, echoMode{})
+	}
+	e.modes = e.modes[:len(o.modes)]
+	for i := range e.modes {
+		e.modes[i].s = cleared(e.modes[i].s, len(o.modes[i].s))
+		e.modes[i].current = cleared(e.modes[i].current, len(o.modes[i].current))
+	}
+}
+
+// add adds w times another echo.
+func (e *echo) add(o *echo, w float64) {
+	for i := range e.modes {
+		axpy(e.modes[i].s, o.modes[i].s, w)
+		axpy(e.modes[i].current, o.modes[i].current, w)
+	}
 }
 
 // solve solves a place's plate unless another worker has.

@@ -56,7 +56,7 @@ func New(f Fidelity) (*Solver, error) {
 // Identity names the version, the fidelity and the instructions, whose
 // roundings may differ.
 func (s *Solver) Identity() string {
-	return "full-wave 1 " + string(s.fidelity) + " " + runtime.GOARCH
+	return "full-wave 2 " + string(s.fidelity) + " " + runtime.GOARCH
 }
 
 // Simulate answers everything that an infinite plane lets one ask. A fine
