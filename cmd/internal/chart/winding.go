@@ -33,6 +33,9 @@ func (d *Winding) top() float64 {
 	return top
 }
 
+// deep is how far the antenna reaches along its axis.
+func (d *Winding) deep() float64 { return math.Max(d.top()+d.Diameter, d.Rim) }
+
 // wide is half of what the winding needs across its axis, without the plate.
 func (d *Winding) wide() float64 {
 	r := 0.0
@@ -64,7 +67,7 @@ const (
 )
 
 func (v SideView) scale() float64 {
-	return math.Min((v.Width-2*edge-behind-beyond)/(v.top()+v.Diameter), (tallest-2*planeMargin)/(2*v.across()))
+	return math.Min((v.Width-2*edge-behind-beyond)/v.deep(), (tallest-2*planeMargin)/(2*v.across()))
 }
 
 func (v SideView) captionRows() float64 {
@@ -85,7 +88,7 @@ func (v SideView) Draw(c vg.Canvas) {
 	w, h := v.Size()
 	s := v.scale()
 	room := w - 2*edge - behind - beyond
-	o := at{edge + behind + math.Max(0, (room-(v.top()+v.Diameter)*s)/2), h - edge - v.captionRows()*rowHeight - 4 - planeMargin - v.across()*s}
+	o := at{edge + behind + math.Max(0, (room-v.deep()*s)/2), h - edge - v.captionRows()*rowHeight - 4 - planeMargin - v.across()*s}
 	place := func(p [3]float64) at { return at{o.x + p[2]*s, o.y + p[0]*s} }
 	v.ground(b, o, s)
 	b.stroke(hairline, rule, []vg.Length{8, 3, 2, 3})

@@ -72,7 +72,7 @@ func wanted(s *objectives.Spec) string {
 	if s.Base.Handedness != 0 {
 		fmt.Fprintf(&b, ", wound %s-handed (%s)", s.Base.Handedness, threadWords(s.Base.Handedness))
 	}
-	fmt.Fprintf(&b, ", fed at %s Ω, on %s.", trimmed(s.Base.Feed.Impedance, 2), groundWords(s.Base.Ground))
+	fmt.Fprintf(&b, ", fed at %s Ω, on %s.", trimmed(s.Base.Feed.Impedance, 2), GroundWords(s.Base.Ground))
 	if s.Base.FeedsReflector {
 		fmt.Fprintf(&b, " It feeds a reflector, which reverses the sense: %s-hand in space needs %s-hand from the antenna, and every figure here is the antenna's own.", -own, own)
 	}

@@ -52,7 +52,7 @@ func (r *Run) sheetCharts(s *Sheet) []Chart {
 		return charts
 	}
 	charts = append(charts, r.gainChart(s), r.axialRatioChart(s), r.vswrChart(s), r.smithChart(s))
-	charts = append(charts, r.patternCharts(s)...)
+	charts = append(append(charts, r.patternCharts(s)...), r.rearChart(s)...)
 	return append(charts, s.lawChart(), s.handChart())
 }
 
@@ -81,11 +81,11 @@ func (s *Sheet) drawings() []Chart {
 	if !w.Right {
 		w.Turn = "anticlockwise going away from you: left-handed"
 	}
-	if k := d.Ground.Kind; k == models.Disc || k == models.Cup {
+	if d.Ground.Finite() {
 		w.Plate = d.Ground.Diameter * 1e3
-		if k == models.Cup {
-			w.Rim = d.Ground.Rim * 1e3
-		}
+	}
+	if d.Ground.Kind == models.Cup {
+		w.Rim = d.Ground.Rim * 1e3
 	}
 	for _, p := range s.Wire {
 		w.Wire = append(w.Wire, [3]float64{p[0] * 1e3, p[1] * 1e3, p[2] * 1e3})

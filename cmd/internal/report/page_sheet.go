@@ -169,7 +169,7 @@ func dimensions(s *Sheet) []pair {
 	if t := d.Feed.Transformer; t.Impedance > 0 {
 		ps = append(ps, pair{"line section", fmt.Sprintf("%s Ω, %s", trimmed(t.Impedance, 2), millimetres(t.Length))})
 	}
-	ps = append(ps, pair{"stands on", groundWords(d.Ground)})
+	ps = append(ps, pair{"stands on", GroundWords(d.Ground)})
 	if s.Simulation != nil {
 		ps = append(ps, pair{"excess phase at the band's upper end", trimmed(s.Simulation.ExcessPhase, 2)})
 	}
@@ -213,7 +213,11 @@ func (s *Sheet) balance() []pair {
 	var ps []pair
 	off := worst(func(w sweepRow) float64 { return math.Abs(float64(w.PowerBalance) - 1) })
 	if !math.IsNaN(off) {
-		ps = append(ps, pair{"power balance", fmt.Sprintf("radiated and lost power account for the accepted power to %.3f %% at every frequency of the band", 100*off)})
+		into := ""
+		if s.Member.Design.Ground.Finite() {
+			into = " in all directions"
+		}
+		ps = append(ps, pair{"power balance", fmt.Sprintf("power radiated%s and power lost account for the accepted power to %.3f %% at every frequency of the band", into, 100*off)})
 	}
 	lost := worst(func(w sweepRow) float64 { return 1 - float64(w.Efficiency) })
 	ps = append(ps, pair{"lost in the conductor", fmt.Sprintf("at most %.2f %% of the accepted power", 100*lost)})

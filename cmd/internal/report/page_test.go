@@ -16,6 +16,7 @@ import (
 
 	"turnwise/cmd/internal/folder"
 	"turnwise/models"
+	"turnwise/models/helix"
 	"turnwise/objectives"
 	"turnwise/optimize"
 	"turnwise/optimize/front"
@@ -44,7 +45,12 @@ func TestWords(t *testing.T) {
 		{figureName(objectives.VSWRBandwidth), "VSWR bandwidth"},
 		{lawWords(models.Law{0.0721, 0.05}), "72.1 → 50 mm"},
 		{threadWords(models.Left), "opposite to an ordinary screw thread"},
-		{groundWords(models.Ground{Kind: models.Cup, Diameter: 0.15, Rim: 0.06}), "a cup 150 mm across with a rim of 60 mm"},
+		{GroundWords(models.Ground{Kind: models.Cup, Diameter: 0.15, Rim: 0.06}), "a cup 150 mm across with a rim of 60 mm, 1 mm aluminium"},
+		{GroundWords(models.Ground{Kind: models.Disc, Diameter: 0.2, Thickness: 1.5e-3, Material: models.Material{Name: "brass", Density: 8530}}), "a disc 200 mm across, 1.5 mm brass"},
+		{GroundWords(models.Ground{Kind: models.Disc, Material: models.Material{Density: 2660}}), "a disc, 1 mm metal of 2.66 g/cm³"},
+		{GroundWords(models.Ground{Kind: models.Infinite, Thickness: 1}), "an infinite ground plane"},
+		{massWords(helix.Geometry{Mass: 0.085, ConductorMass: 0.0352}), "85 g (the conductor 35.2 g)"},
+		{massWords(helix.Geometry{Mass: 0.0352, ConductorMass: 0.0352}), "35.2 g"},
 		{trimmed(-0.0001, 3), "0"},
 		{signed(-0.001), "+0.00"},
 		{and([]string{"a", "b", "c"}), "a, b and c"},

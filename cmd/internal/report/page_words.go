@@ -1,7 +1,6 @@
 package report
 
 import (
-	"fmt"
 	"math"
 	"strconv"
 	"strings"
@@ -151,17 +150,6 @@ func aimWords(a objectives.Aim) string {
 		return "most " + figureName(a.Figure)
 	}
 	return "least " + figureName(a.Figure)
-}
-
-// groundWords is what the antenna stands on.
-func groundWords(g models.Ground) string {
-	switch g.Kind {
-	case models.Disc:
-		return fmt.Sprintf("a disc %s across", millimetres(g.Diameter))
-	case models.Cup:
-		return fmt.Sprintf("a cup %s across with a rim of %s", millimetres(g.Diameter), millimetres(g.Rim))
-	}
-	return "an infinite ground plane"
 }
 
 // lawWords is a law in millimetres, from the feed to the open end.

@@ -7,6 +7,7 @@ import (
 	"fmt"
 	"io"
 	"math"
+	"slices"
 	"text/tabwriter"
 
 	"turnwise/models"
@@ -185,20 +186,15 @@ func (s *Simulation) WriteText(w io.Writer) error {
 	g := s.Geometry
 	d := &s.Design
 	fmt.Fprintf(w, "%s: %.4g turns, %s-handed, %s conductor %.4g mm\n", titleOr(d.Title, "design"), d.Turns, d.Handedness, d.Conductor.Material.Name, d.Conductor.Diameter*1e3)
-	fmt.Fprintf(w, "length %.1f mm, widest %.1f mm, wire %.4g m, mass %.4g g, least bend radius %.1f mm\n",
-		g.Length*1e3, g.Widest*1e3, g.WireLength, g.Mass*1e3, g.BendRadius*1e3)
+	fmt.Fprintf(w, "on %s\n", GroundWords(d.Ground))
+	fmt.Fprintf(w, "length %.1f mm, widest %.1f mm, wire %.4g m, mass %s, least bend radius %.1f mm\n",
+		g.Length*1e3, g.Widest*1e3, g.WireLength, massWords(g), g.BendRadius*1e3)
 	fmt.Fprintf(w, "excess phase %.2f at the band's upper end (gain peaks at 0.3 to 0.5 and falls off a cliff past 0.6)\n\n", s.ExcessPhase)
 	mark := ""
 	if s.Response.Indicative {
 		mark = "*"
 	}
-	t := tabwriter.NewWriter(w, 0, 0, 2, ' ', tabwriter.AlignRight)
-	fmt.Fprintf(t, "MHz\tgain dBic\trealised%s\tAR dB%s\tsense\tVSWR%s\tport Ω%s\tefficiency\tbeamwidth°\tsidelobe dB\tbalance\t\n", mark, mark, mark, mark)
-	for _, r := range s.rows() {
-		fmt.Fprintf(t, "%.6g\t%s\t%s\t%s\t%s\t%s\t%s\t%s\t%s\t%s\t%s\t\n", r.Hz/1e6, short(r.Gain, 2), short(r.RealisedGain, 2), short(r.AxialRatio, 2),
-			r.Sense, short(r.VSWR, 2), ohms(r.R, r.X), short(r.Efficiency, 4), short(r.Beamwidth, 1), short(r.Sidelobe, 1), short(r.PowerBalance, 4))
-	}
-	if err := t.Flush(); err != nil {
+	if err := s.writeSweep(w, mark); err != nil {
 		return err
 	}
 	if mark != "" {
@@ -210,6 +206,36 @@ func (s *Simulation) WriteText(w io.Writer) error {
 	}
 	_, err := fmt.Fprintf(w, "%s\n", s.Response.Statement)
 	return err
+}
+
+// writeSweep is a row a frequency; the front to back ratio has a column where
+// anything has a rear.
+func (s *Simulation) writeSweep(w io.Writer, mark string) error {
+	rows := s.rows()
+	rear := slices.ContainsFunc(rows, func(r sweepRow) bool { return r.FrontToBack.known() })
+	t := tabwriter.NewWriter(w, 0, 0, 2, ' ', tabwriter.AlignRight)
+	optional := func(text string) string {
+		if !rear {
+			return ""
+		}
+		return text + "\t"
+	}
+	fmt.Fprintf(t, "MHz\tgain dBic\trealised%s\tAR dB%s\tsense\tVSWR%s\tport Ω%s\tefficiency\tbeamwidth°\tsidelobe dB\t%sbalance\t\n", mark, mark, mark, mark, optional("front/back dB"))
+	for _, r := range rows {
+		fmt.Fprintf(t, "%.6g\t%s\t%s\t%s\t%s\t%s\t%s\t%s\t%s\t%s\t%s%s\t\n", r.Hz/1e6, short(r.Gain, 2), short(r.RealisedGain, 2), short(r.AxialRatio, 2),
+			r.Sense, short(r.VSWR, 2), ohms(r.R, r.X), short(r.Efficiency, 4), short(r.Beamwidth, 1), short(r.Sidelobe, 1), optional(short(r.FrontToBack, 1)), short(r.PowerBalance, 4))
+	}
+	return t.Flush()
+}
+
+// massWords is the whole mass, and what the conductor has of it where a plate
+// or cup has the rest.
+func massWords(g helix.Geometry) string {
+	text := fmt.Sprintf("%.4g g", g.Mass*1e3)
+	if g.ConductorMass < g.Mass {
+		text += fmt.Sprintf(" (the conductor %.4g g)", g.ConductorMass*1e3)
+	}
+	return text
 }
 
 // writeHand sets the hand formulas beside the model's mid-band answer.

@@ -25,7 +25,7 @@ func answered() *Simulation {
 			Feed:      models.Feed{Impedance: 50},
 		},
 		Model: "full-wave", Fidelity: "standard",
-		Geometry:    helix.Geometry{Length: 0.2855, WireLength: 1.5, Widest: 0.06, Mass: 0.042, BendRadius: 0.03},
+		Geometry:    helix.Geometry{Length: 0.2855, WireLength: 1.5, Widest: 0.06, Mass: 0.042, ConductorMass: 0.042, BendRadius: 0.03},
 		ExcessPhase: 0.35,
 		Hand:        HandFigures{Kraus1949: 15.3, KrausLate: 14.4, KingWong: 13.2, BeamwidthDeg: 34.5, AxialRatioDB: 0.424, Resistance: 150},
 		DesignJSON:  map[string]any{"turns": 8.25},
@@ -219,7 +219,7 @@ func TestSimulationText(t *testing.T) {
 	}
 	text := b.String()
 	for _, want := range []string{
-		"test: 8.25 turns, right-handed, copper conductor 2 mm\n",
+		"test: 8.25 turns, right-handed, copper conductor 2 mm\non an infinite ground plane\n",
 		"length 285.5 mm, widest 60.0 mm, wire 1.5 m, mass 42 g, least bend radius 30.0 mm\n",
 		"excess phase 0.35 ",
 		"warning: the program's\nwarning: the model's\nthin wire on an infinite plane\n",
@@ -229,7 +229,7 @@ func TestSimulationText(t *testing.T) {
 		}
 	}
 	for _, want := range [][]string{
-		{"1680", "10.00", "9.49", "1.25", "right", "2.00", "120.0", "-30.0j", "0.9900", "30.0", "-12.5", "1.0005"},
+		{"1680", "10.00", "9.49", "1.25", "right", "2.00", "120.0", "-30.0j", "0.9900", "30.0", "-12.5", "20.0", "1.0005"},
 		{"Kraus", "1949,", "15", "C²NS", "15.30", "dBi", "+2.29"},
 		{"King", "&", "Wong", "1980", "13.20", "dBi", "+0.19"},
 		{"beamwidth", "(Kraus)", "34.50", "°", "+4.50"},
@@ -241,6 +241,19 @@ func TestSimulationText(t *testing.T) {
 	}
 	if strings.Contains(text, "indicative") || strings.Contains(text, "*") {
 		t.Errorf("marked as indicative:\n%s", text)
+	}
+}
+
+// Without a rear there is no column for front to back.
+func TestSimulationTextWithoutARear(t *testing.T) {
+	s := answered()
+	s.Response.Samples[0].RearGain = 0
+	var b bytes.Buffer
+	if err := s.WriteText(&b); err != nil {
+		t.Fatal(err)
+	}
+	if text := b.String(); strings.Contains(text, "front/back") || !strings.Contains(text, "-12.5   1.0005") {
+		t.Errorf("the sweep is\n%s", text)
 	}
 }
 

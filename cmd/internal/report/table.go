@@ -7,6 +7,7 @@ import (
 	"math"
 	"slices"
 	"strconv"
+	"strings"
 	"text/tabwriter"
 
 	"turnwise/cmd/internal/folder"
@@ -68,7 +69,8 @@ func WriteTable(w io.Writer, t *folder.Table, figures []objectives.Figure) error
 func shownColumns(t *folder.Table) []int {
 	var shown []int
 	for i, name := range t.Varied {
-		if name == string(objectives.Turns) || name == string(objectives.Conductor) {
+		switch {
+		case name == string(objectives.Turns), name == string(objectives.Conductor), strings.HasPrefix(name, "ground_"):
 			shown = append(shown, i)
 		}
 	}

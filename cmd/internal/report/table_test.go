@@ -65,6 +65,21 @@ func TestWriteTable(t *testing.T) {
 	}
 }
 
+// What the antenna stands on is bought as well.
+func TestWriteTableOfGrounds(t *testing.T) {
+	table := aTable()
+	table.Varied[1], table.Varied[2] = "feed_height_m", "ground_diameter_m"
+	table.Members[0].Varied[2], table.Members[1].Varied[2] = "0.15", "0.2"
+	var b bytes.Buffer
+	if err := WriteTable(&b, table, nil); err != nil {
+		t.Fatal(err)
+	}
+	want := "id          turns  ground_diameter_m\n0123456789  8.25   0.15\nabcdef0123  3      0.2  unchecked\n"
+	if got := b.String(); got != want {
+		t.Errorf("table\n%s\nwant\n%s", got, want)
+	}
+}
+
 func TestAmounts(t *testing.T) {
 	for _, x := range []struct {
 		figure   objectives.Figure
