@@ -36,6 +36,13 @@
 //	            of 17 digits shrink by half at the price of being read by
 //	            no other program
 //	model       id, identity
+//	growth      how the front grew: evaluations (on record then, however they
+//	            ended), front (members, of the finest rung), hypervolume
+//	            (against reference; NULL with more than three aims),
+//	            reference (JSON list: the worst of each aim that anything
+//	            feasible had). After each evaluation at first, then after
+//	            every fiftieth part more, and with every decision. A journal
+//	            that was begun without it is given it when it is gone on with
 //	decision    seq, kind (start, extension, stop, …), detail (JSON),
 //	            evaluations (highest evaluation.seq before it), at_us
 //

@@ -64,12 +64,13 @@ func (w *Writer) enter(e *optimize.Evaluation) bool {
 
 // remember reads back what the file holds of models and fronts.
 func (w *Writer) remember() error {
-	w.models, w.fronts = map[string]int64{}, map[int][]member{}
+	w.models, w.fronts, w.grown = map[string]int64{}, map[int][]member{}, grown{}
 	for e, err := range w.entries("entered = 1 AND seq > ?", "seq", 0) {
 		if err != nil {
 			return err
 		}
 		w.fronts[e.Rung], _ = admit(w.fronts[e.Rung], member{e.ID, e.Aims})
+		w.grown.take(&e.Evaluation, w.header.finest())
 	}
-	return nil
+	return w.rememberGrowth()
 }

@@ -42,6 +42,7 @@ type Writer struct {
 	// What the next group needs to know of the file; see forget.
 	models map[string]int64
 	fronts map[int][]member // by rung
+	grown  grown
 	now    func() time.Time
 }
 
@@ -211,7 +212,7 @@ func Open(path string) (*Writer, error) {
 	if w.Reader, err = read(path, "mode=ro"); err != nil {
 		return nil, errors.Join(err, db.Close())
 	}
-	if err := errors.Join(w.prepare(), w.remember()); err != nil {
+	if err := errors.Join(w.layGrowth(), w.prepare(), w.remember()); err != nil {
 		return nil, errors.Join(fault(path, err), w.Close())
 	}
 	return w, nil

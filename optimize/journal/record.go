@@ -97,6 +97,14 @@ func (w *Writer) append(evs []optimize.Evaluation, final bool) error {
 			if _, err := ins.Exec(args...); err != nil {
 				return fmt.Errorf("candidate %d: %w", evs[i].ID, err)
 			}
+			if final {
+				continue
+			}
+			if w.grown.take(&evs[i], w.header.finest()); w.grown.due() {
+				if err := w.keepGrowth(tx, w.grown.growth()); err != nil {
+					return err
+				}
+			}
 		}
 		return nil
 	})
@@ -279,7 +287,7 @@ func (w *Writer) Decide(kind string, detail any) error {
 	defer w.mu.Unlock()
 	return fault(w.path, w.transact(func(tx *sql.Tx) error {
 		_, err := tx.Stmt(w.stmts.decision).Exec(kind, string(js), w.now().UnixMicro())
-		return err
+		return errors.Join(err, w.keepGrowth(tx, w.grown.growth()))
 	}))
 }
 

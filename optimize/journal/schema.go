@@ -52,7 +52,7 @@ CREATE TABLE evaluation (
 CREATE UNIQUE INDEX evaluation_candidate ON evaluation (candidate) WHERE final = 0;
 CREATE INDEX evaluation_final ON evaluation (candidate) WHERE final = 1;
 CREATE INDEX evaluation_entered ON evaluation (rung) WHERE entered = 1;
-`
+` + growthTable
 
 // views does not hold evaluations and front, which depend on the header.
 const views = `
