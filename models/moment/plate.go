@@ -26,7 +26,7 @@ import (
 //
 // y_m being what the wires' functions send to the rings of the plate's
 // meridian and S_m a small matrix of the plate and the frequency alone, which
-// is kept (surface.go).
+// is kept (plate_echo.go).
 //
 // Beyond the edge the plane's current is an outgoing wave and has no end. Its
 // meridian goes on into complex radii, R + s e^{−jα}, where every outgoing
