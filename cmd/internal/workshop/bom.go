@@ -5,8 +5,6 @@ import (
 	"encoding/csv"
 	"fmt"
 	"math"
-
-	"turnwise/models"
 )
 
 // part is a line of the bill of materials.
@@ -52,7 +50,8 @@ func (s *sheet) bill() []part {
 		f := s.flatStrip()
 		out = append(out, part{Name: "strip", Description: fmt.Sprintf("%s strip %s mm wide", s.material(), s.Resolution.mm(f.width)), Quantity: 1, Length: f.length, Note: "cut to the flat pattern"})
 	}
-	out = append(out, s.groundPart(), s.formerPart(),
+	out = append(out, s.groundParts()...)
+	out = append(out, s.formerPart(),
 		part{Name: "connector", Description: fmt.Sprintf("coaxial, %s ohm, panel mounting", shortest(d.Feed.Impedance)), Quantity: 1, Note: "at the riser's foot"})
 	if t := d.Feed.Transformer; t.Impedance > 0 {
 		out = append(out, part{Name: "line section", Description: fmt.Sprintf("%s ohm, velocity %s", shortest(t.Impedance), shortest(max(t.Velocity, 0)+one(t.Velocity == 0))), Quantity: 1, Length: t.Length, Note: "between connector and plate"})
@@ -77,17 +76,6 @@ func (s *sheet) conductorName() string {
 		kind = fmt.Sprintf("tube, wall %s mm", bought(c.Wall))
 	}
 	return fmt.Sprintf("%s mm %s %s", bought(c.Diameter), s.material(), kind)
-}
-
-func (s *sheet) groundPart() part {
-	g := s.Design.Ground
-	switch g.Kind {
-	case models.Disc:
-		return part{Name: "ground", Description: "plate", Quantity: 1, Diameter: g.Diameter}
-	case models.Cup:
-		return part{Name: "ground", Description: fmt.Sprintf("cup with a rim of %s mm", s.Resolution.mm(g.Rim)), Quantity: 1, Diameter: g.Diameter}
-	}
-	return part{Name: "ground", Description: "plate", Quantity: 1, Diameter: math.Ceil(750*s.wavelength()) / 1e3, Note: "at least; the design assumes an infinite plane"}
 }
 
 func (s *sheet) formerPart() part {

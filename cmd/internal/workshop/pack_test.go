@@ -172,7 +172,7 @@ func TestBill(t *testing.T) {
 		}
 		for part, due := range map[string]bool{
 			"conductor": true, "ground": true, "former": true, "connector": true, "end cap": true,
-			"riser": d.Feed.Pin > 0 || d.Feed.Strip.Turns > 0, "strip": d.Feed.Strip.Turns > 0, "line section": d.Feed.Transformer.Impedance > 0,
+			"riser": d.Feed.Pin > 0 || d.Feed.Strip.Turns > 0, "strip": d.Feed.Strip.Turns > 0, "rim": d.Ground.Kind == models.Cup, "line section": d.Feed.Transformer.Impedance > 0,
 		} {
 			if (have[part] != nil) != due {
 				t.Errorf("%s: a %s is due: %t; the bill has %v", name, part, due, have[part])
@@ -186,6 +186,33 @@ func TestBill(t *testing.T) {
 		if extra := length - k.Wire; err != nil || extra < feedAllowance+trimAllowance-1e-9 || extra > feedAllowance+trimAllowance+1e-3 {
 			t.Errorf("%s: cut to %g m for %g m of wire (%v)", name, length, k.Wire, err)
 		}
+	}
+}
+
+// TestGroundParts: cut out and bent, the parts of a cup have its inside and,
+// but for the sheet's thickness, its mass.
+func TestGroundParts(t *testing.T) {
+	d := antennas["cone"]
+	d.Ground = models.Ground{Kind: models.Cup, Diameter: 0.12, Rim: 0.04, Thickness: 0.8e-3, Material: models.Material{Name: "brass", Conductivity: 16e6, Density: 8530}}
+	s := &sheet{Settled: &Settled{Design: d, Resolution: Fine}}
+	parts := s.groundParts()
+	if len(parts) != 2 {
+		t.Fatalf("%d parts of a cup", len(parts))
+	}
+	base, strip := parts[0], parts[1]
+	if base.Diameter != 0.12 || base.Description != "cup's base of 0.8 mm brass sheet" {
+		t.Errorf("base %+v", base)
+	}
+	// Its neutral line is a circle of the inside and one thickness.
+	if inside := strip.Length/math.Pi - 0.8e-3; math.Abs(inside-0.12) > 1e-12 || strip.Description != "strip of 0.8 mm brass sheet, 40.80 mm wide" {
+		t.Errorf("inside %g m across, %+v", inside, strip)
+	}
+	if mass, model := base.Mass+strip.Mass, d.Ground.Mass(); mass < model || mass > 1.02*model {
+		t.Errorf("parts of %g kg for a cup of %g kg", mass, model)
+	}
+	s.Design.Ground.Kind = models.Disc
+	if parts = s.groundParts(); len(parts) != 1 || parts[0].Description != "plate of 0.8 mm brass sheet" || math.Abs(parts[0].Mass-s.Design.Ground.Mass()) > 1e-15 {
+		t.Errorf("parts of a disc: %+v", parts)
 	}
 }
 

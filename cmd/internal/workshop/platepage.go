@@ -44,13 +44,16 @@ func (s *sheet) holes() []hole {
 // platePage is the ground's drilling plan.
 func (s *sheet) platePage() leaf {
 	holes := s.holes()
-	view, name := s.plateView(holes, 84)
+	view, name, whole := s.plateView(holes)
 	l := newLeaf("ground plate, drilling plan", name)
 	y := top
 	y -= l.Heading(drawing.Point{X: left, Y: y}, across, heading, "Ground plate, seen from the winding, scale "+name)
 	b := view.Bounds()
 	l.Place(view, left+(across-b.Width())/2-b.Min.X, y-4-b.Max.Y)
 	y -= b.Height() + 8
+	if s.Design.Ground.Finite() && !whole {
+		y -= s.placeEdge(l, y)
+	}
 	t := &drawing.Table{Size: small, Row: 5, Columns: []drawing.Column{
 		{Title: "hole", Width: 12, Align: drawing.Middle}, {Title: "x", Width: 18, Align: drawing.Right}, {Title: "y", Width: 18, Align: drawing.Right},
 		{Title: "Ø", Width: 16, Align: drawing.Right}, {Title: "for", Width: 82}, {Title: "as built", Width: 24},
@@ -68,10 +71,9 @@ func (s *sheet) platePage() leaf {
 
 func (s *sheet) plateWords() []string {
 	out := []string{"x and y are from the winding's axis; the riser stands on +x. Scribe both axes: the template's 0° line and the riser meet on +x."}
-	switch s.Design.Ground.Kind {
-	case models.Disc, models.Cup:
-		out = append(out, "Centre the winding on it: "+s.groundWords()+". The full-wave model takes it for an infinite plane.")
-	default:
+	if s.Design.Ground.Finite() {
+		out = append(out, "Centre the winding on it: "+s.groundWords()+", of "+s.sheetName()+". Its size decides gain and pattern as the winding's does: cut it as drawn.")
+	} else {
 		out = append(out, fmt.Sprintf("The design assumes an infinite plane. Make the plate at least %.0f across, 0.75 wavelengths at mid-band (practice); a smaller one costs gain, and any real one moves it by a decibel or two.", math.Ceil(750*s.wavelength())))
 	}
 	return append(out,
@@ -79,15 +81,32 @@ func (s *sheet) plateWords() []string {
 		"The plate conducts over its whole upper face: bare metal under the connector's flange, no paint.")
 }
 
-// plateView draws the plate from above with its holes; the plate's own edge
-// where it fits beside them.
-func (s *sheet) plateView(holes []hole, room float64) (*drawing.Drawing, string) {
-	g := s.Design.Ground
-	half := 650 * s.Curve.Diameter(0)
-	name, k := fitScale(2*half, 2*half, across-60, room)
-	edge := 500 * g.Diameter
-	finite := (g.Kind == models.Disc || g.Kind == models.Cup) && 2*edge*k <= room
-	if finite {
+// plateRoom is what the holes' view may take of the page, mm.
+const plateRoom = 84.0
+
+// placeEdge puts a small view of the whole plate on the page, y downwards, and
+// gives the height it takes.
+func (s *sheet) placeEdge(l leaf, y float64) float64 {
+	edge := 500 * s.Design.Ground.Diameter
+	name, k := fitScale(2*edge, 2*edge, across, 40)
+	d := new(drawing.Drawing)
+	d.Circle(drawing.Outline, drawing.Point{}, edge*k)
+	d.Cross(drawing.Axis, drawing.Point{}, edge*k+3)
+	d.Circle(drawing.Axis, drawing.Point{}, 500*s.Curve.Diameter(0)*k)
+	d.Disc(drawing.Outline, drawing.Point{X: 500 * s.Curve.Diameter(0) * k}, 0.6)
+	d.Measure(drawing.Point{X: -edge * k}, drawing.Point{X: edge * k}, 0, -edge*k-9, "Ø "+s.Resolution.mm(s.Design.Ground.Diameter))
+	height := l.Heading(drawing.Point{X: left, Y: y}, across, body, "The whole plate, scale "+name+"; dot: riser")
+	b := d.Bounds()
+	l.Place(d, left+(across-b.Width())/2-b.Min.X, y-height-b.Max.Y)
+	return height + b.Height() + 6
+}
+
+// plateView draws the plate from above with its holes, and its own edge where
+// that fits beside them: the whole plate.
+func (s *sheet) plateView(holes []hole) (view *drawing.Drawing, name string, whole bool) {
+	half, edge := 650*s.Curve.Diameter(0), 500*s.Design.Ground.Diameter
+	name, k := fitScale(2*half, 2*half, across-60, plateRoom)
+	if whole = s.Design.Ground.Finite() && 2*edge*k <= plateRoom; whole {
 		half = math.Max(half, edge)
 	}
 	d := new(drawing.Drawing)
@@ -95,7 +114,7 @@ func (s *sheet) plateView(holes []hole, room float64) (*drawing.Drawing, string)
 	d.Line(drawing.Axis, drawing.Point{X: -h - 5}, drawing.Point{X: h + 5})
 	d.Line(drawing.Axis, drawing.Point{Y: -h - 5}, drawing.Point{Y: h + 5})
 	d.Add(drawing.Text{Layer: drawing.Lettering, At: drawing.Point{X: h + 6, Y: -1}, Size: body, S: "+x"}, drawing.Text{Layer: drawing.Lettering, At: drawing.Point{X: 1.5, Y: h + 3.5}, Size: body, S: "+y"})
-	if finite {
+	if whole {
 		d.Circle(drawing.Outline, drawing.Point{}, edge*k)
 	}
 	if !s.former.combs {
@@ -109,8 +128,8 @@ func (s *sheet) plateView(holes []hole, room float64) (*drawing.Drawing, string)
 		d.Add(drawing.Text{Layer: drawing.Lettering, At: at.Plus(r+0.8, r+0.8), Size: body, Bold: true, S: letters(i)})
 	}
 	d.Measure(drawing.Point{}, drawing.Point{X: holes[0].At.X * k}, 0, -h-6, s.Resolution.mm(holes[0].At.X/1e3))
-	if finite {
-		d.Measure(drawing.Point{X: -edge * k}, drawing.Point{X: edge * k}, 0, -h-13, "Ø "+s.Resolution.mm(g.Diameter))
+	if whole {
+		d.Measure(drawing.Point{X: -edge * k}, drawing.Point{X: edge * k}, 0, -h-13, "Ø "+s.Resolution.mm(s.Design.Ground.Diameter))
 	}
-	return d, name
+	return d, name, whole
 }

@@ -55,7 +55,11 @@ func (s *sheet) pages() []*drawing.Page {
 	if s.Design.Feed.Strip.Turns > 0 {
 		leaves = append(leaves, s.stripPage())
 	}
-	leaves = append(leaves, s.platePage(), s.testPage(), s.trimPage(), s.cautionsPage())
+	leaves = append(leaves, s.platePage())
+	if s.Design.Ground.Kind == models.Cup {
+		leaves = append(leaves, s.cupPage())
+	}
+	leaves = append(leaves, s.testPage(), s.trimPage(), s.cautionsPage())
 	pages := make([]*drawing.Page, len(leaves))
 	for i, l := range leaves {
 		s.titleBlock(l, i+1, len(leaves))

@@ -50,7 +50,7 @@ func (s *sheet) sideView(room, tall float64) (*drawing.Drawing, string) {
 		widest = math.Max(widest, 500*c.Diameter(c.Turns()*float64(i)/64))
 	}
 	half := math.Max(widest*1.25, plate)
-	name, k := fitScale(1e3*c.Top(), 2*half, room, tall)
+	name, k := fitScale(1e3*math.Max(c.Top(), s.Design.Ground.Rim), 2*half, room, tall)
 	d := new(drawing.Drawing)
 	s.plateEdge(d, k, half)
 	pen := math.Min(math.Max(0.3, 1e3*s.Design.Conductor.Diameter*k), 3)
@@ -147,6 +147,19 @@ func (s *sheet) sideDimensions(d *drawing.Drawing, k, half float64) {
 	if len(s.Design.Diameter) > 1 {
 		d.Measure(drawing.Point{Y: start}, drawing.Point{Y: -start}, 90, 7, "Ø "+r.mm(c.Diameter(0)))
 	}
+	s.groundDimensions(d, k, low)
+}
+
+// groundDimensions are those of a plate or cup on the side view.
+func (s *sheet) groundDimensions(d *drawing.Drawing, k, low float64) {
+	r, g := s.Resolution, s.Design.Ground
+	edge, rim := 500*g.Diameter*k, 1e3*g.Rim*k
+	if g.Finite() {
+		d.Measure(drawing.Point{Y: edge}, drawing.Point{Y: -edge}, 90, 14, "Ø "+r.mm(g.Diameter))
+	}
+	if g.Kind == models.Cup {
+		d.Measure(drawing.Point{Y: low}, drawing.Point{X: rim, Y: low}, 0, -14, "rim "+r.mm(g.Rim))
+	}
 }
 
 // spacingFrom is the first whole turn past the lead that has a whole turn
@@ -241,8 +254,12 @@ func (s *sheet) mainTable() *drawing.Table {
 		row("cut the wire to", fixed(1e3*k.Length(), 0))
 	}
 	row("wire, plate to open end", r.mm(c.WireLength()))
-	row("mass of the conductor", grams(g.Mass))
+	row("mass of the conductor", grams(g.ConductorMass))
 	row("ground", s.groundWords())
+	if s.Design.Ground.Finite() {
+		row("ground of", s.sheetName())
+		row("mass with the ground", grams(g.Mass))
+	}
 	return t
 }
 
@@ -280,17 +297,6 @@ func (s *sheet) formerRows(row func(what, drawn string)) {
 	}
 	row("former Ø, conductor on it", both(1))
 	row("trial mandrel Ø, hard copper", both(1-springBack))
-}
-
-func (s *sheet) groundWords() string {
-	r, g := s.Resolution, s.Design.Ground
-	switch g.Kind {
-	case models.Disc:
-		return "disc Ø " + r.mm(g.Diameter)
-	case models.Cup:
-		return "cup Ø " + r.mm(g.Diameter) + ", rim " + r.mm(g.Rim)
-	}
-	return fmt.Sprintf("plate, Ø ≥ %.0f", math.Ceil(750*s.wavelength()))
 }
 
 // windingNotes are what a workshop must know beyond the numbers.

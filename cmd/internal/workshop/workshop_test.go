@@ -143,8 +143,9 @@ func TestLayoutOfAny(t *testing.T) {
 		d.Title, d.Band, d.FeedsReflector, d.Sense = "any", antennas["cone"].Band, true, -d.Handedness
 		d.Conductor.Wall, d.Insulation = 0.0003, models.Insulation{Thickness: 0.0002, Permittivity: 2.3}
 		d.Feed.Transformer = antennas["cone"].Feed.Transformer
-		if rapid.Bool().Draw(t, "cup") {
-			d.Ground = models.Ground{Kind: models.Cup, Diameter: rapid.Float64Range(0.25, 0.9).Draw(t, "cup Ø"), Rim: rapid.Float64Range(0.01, 0.2).Draw(t, "rim")}
+		d.Ground = models.Ground{
+			Kind:     rapid.SampledFrom([]models.GroundKind{models.Infinite, models.Disc, models.Cup}).Draw(t, "ground"),
+			Diameter: rapid.Float64Range(0.45, 0.9).Draw(t, "ground Ø"), Rim: rapid.Float64Range(0.01, 0.4).Draw(t, "rim"),
 		}
 		c, err := helix.Wind(&d)
 		if err != nil {
