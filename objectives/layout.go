@@ -3,6 +3,7 @@ package objectives
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strconv"
 
 	"turnwise/models"
@@ -74,7 +75,34 @@ func NewLayout(s *Spec) *Layout {
 			l.Space = append(l.Space, s.variable(c, v))
 		}
 	}
+	l.raiseFeed()
 	return l
+}
+
+// raiseFeed lets the feed height begin where the chosen conductor allows it:
+// a thicker one need not wait for a higher feed to come by.
+func (l *Layout) raiseFeed() {
+	feed := slices.IndexFunc(l.Columns, func(c Column) bool { return c.Quantity == FeedHeight })
+	if feed < 0 || l.conductor < 0 {
+		return
+	}
+	pin := l.spec.Base.Feed.Pin > 0 || slices.ContainsFunc(l.Columns, func(c Column) bool { return c.Quantity == Pin })
+	floors := &space.Floors{By: l.conductor}
+	for i := range l.spec.Stock {
+		stock := &l.spec.Stock[i]
+		least := stock.Diameter/2 + stock.Insulation.Thickness + leastAirBelow
+		if !pin {
+			least = math.Max(least, leastRiser*stock.Diameter/2)
+		}
+		floors.Least = append(floors.Least, ceil(least, LengthGrid))
+	}
+	l.Space[feed].Floors = floors
+}
+
+// ceil is the least multiple of a grid that is no less than x, rounding aside.
+func ceil(x, grid float64) float64 {
+	per := math.Round(1 / grid)
+	return math.Ceil(x*per-1e-6) / per
 }
 
 func (s *Spec) variable(c Column, v Vary) space.Variable {
@@ -169,29 +197,29 @@ func slot(d *models.Design, c Column) *float64 {
 // Point is the canonical point nearest to a design, and in words whatever of
 // the design the space cannot follow.
 func (l *Layout) Point(d models.Design) (space.Point, []string) {
-	s, sp := l.spec, l.Space
-	p := make(space.Point, len(sp))
-	var notes []string
-	law := map[Quantity]models.Law{}
+	s := l.spec
+	asked := d
 	for _, v := range s.Vary {
 		switch v.Quantity {
 		case Diameter:
-			law[Diameter] = helix.Resample(d.Diameter, v.Knots)
+			asked.Diameter = helix.Resample(d.Diameter, v.Knots)
 		case Spacing:
-			law[Spacing] = helix.Resample(d.Spacing, v.Knots)
+			asked.Spacing = helix.Resample(d.Spacing, v.Knots)
 		}
 	}
-	asked := d
-	asked.Diameter, asked.Spacing = law[Diameter], law[Spacing]
+	want := make(space.Point, len(l.Columns))
 	for i, c := range l.Columns {
 		if c.Quantity == Conductor {
-			p[i] = float64(s.nearestStock(d.Conductor))
-			continue
+			want[i] = float64(s.nearestStock(d.Conductor))
+		} else {
+			want[i] = *slot(&asked, c)
 		}
-		want := *slot(&asked, c)
-		p[i] = sp[i].Snap(want)
-		if math.Abs(p[i]-want) > c.Quantity.Grid()*0.51 {
-			notes = append(notes, fmt.Sprintf("%s: %g taken as %g, the nearest that may vary", c.Name, want, p[i]))
+	}
+	p := l.Space.Canonical(want)
+	var notes []string
+	for i, c := range l.Columns {
+		if math.Abs(p[i]-want[i]) > c.Quantity.Grid()*0.51 {
+			notes = append(notes, fmt.Sprintf("%s: %g taken as %g, the nearest that may vary", c.Name, want[i], p[i]))
 		}
 	}
 	got := l.Design(p)

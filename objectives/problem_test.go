@@ -5,6 +5,7 @@ import (
 	"encoding/json"
 	"errors"
 	"math"
+	"slices"
 	"strings"
 	"testing"
 
@@ -128,6 +129,30 @@ func TestLayoutRoundTrip(t *testing.T) {
 			t.Fatalf("point %v came back as %v (%v)", pt, back, notes)
 		}
 	})
+}
+
+// A thicker conductor needs a higher feed, which its choice brings with it: no
+// choice of stock alone makes a point that the screens reject for its feed.
+func TestFeedHeightBeginsWhereTheConductorAllows(t *testing.T) {
+	s := spec()
+	s.Stock[1].Diameter = 5e-3
+	p := problem(t, s, tones{gain: flat(10)})
+	conductor := slices.IndexFunc(p.Layout.Columns, func(c objectives.Column) bool { return c.Quantity == objectives.Conductor })
+	feed := slices.IndexFunc(p.Layout.Columns, func(c objectives.Column) bool { return c.Quantity == objectives.FeedHeight })
+	low := p.Layout.Space[feed].From
+	raised := false
+	for i, stock := range p.Stock {
+		pt := make(space.Point, len(p.Layout.Space))
+		pt[conductor], pt[feed] = float64(i), low
+		got, want := p.Layout.Space.Canonical(pt)[feed], math.Max(low, objectives.LeastFeedHeight(stock.Diameter))
+		if math.Abs(got-want) > objectives.LengthGrid {
+			t.Errorf("%s: the feed height begins at %g, want %g", stock.Name, got, want)
+		}
+		raised = raised || got > low
+	}
+	if !raised {
+		t.Errorf("no stock of the test raises the feed above %g", low)
+	}
 }
 
 func TestLayoutFollowsForeignDesign(t *testing.T) {

@@ -30,6 +30,15 @@ type Variable struct {
 	Step     float64  // Stepped: distance of two values
 	Grid     float64  // Real: resolution of a canonical value; 0: none
 	Choices  []string // Choice
+	// Floors, where set, raise From by what an earlier variable chooses, so
+	// that a search may choose anew without leaving what is allowed.
+	Floors *Floors
+}
+
+// Floors are a variable's least values under each name of a choice.
+type Floors struct {
+	By    int // the choice's place in the space
+	Least []float64
 }
 
 // Point is one value per variable, in the space's order, in the variables'
@@ -117,7 +126,11 @@ func (s Space) Canonical(p Point) Point {
 // Snap makes a point canonical in place.
 func (s Space) Snap(p Point) {
 	for i := range s {
-		p[i] = s[i].Snap(p[i])
+		v := &s[i]
+		p[i] = v.Snap(p[i])
+		if v.Floors != nil {
+			p[i] = min(max(p[i], v.Floors.Least[int(p[v.Floors.By])]), v.To)
+		}
 	}
 }
 

@@ -131,3 +131,20 @@ func TestCanonicalRefusesAnotherLength(t *testing.T) {
 	}()
 	mixed.Canonical(space.Point{1})
 }
+
+// A variable begins where an earlier choice lets it.
+func TestFloorsFollowTheChoice(t *testing.T) {
+	s := space.Space{space.NewChoice("wire", "thin", "thick", "far too thick"), space.NewReal("height", 4, 12, 0)}
+	s[1].Floors = &space.Floors{By: 0, Least: []float64{3, 5, 20}}
+	for _, c := range []struct{ point, want space.Point }{
+		{space.Point{0, 1}, space.Point{0, 4}},
+		{space.Point{1, 1}, space.Point{1, 5}},
+		{space.Point{1, 7}, space.Point{1, 7}},
+		{space.Point{2, 7}, space.Point{2, 12}}, // the space still ends at To
+	} {
+		got := s.Canonical(c.point)
+		if got.Key() != c.want.Key() || s.Canonical(got).Key() != got.Key() {
+			t.Errorf("%v became %v, want %v", c.point, got, c.want)
+		}
+	}
+}
