@@ -8,6 +8,7 @@ import (
 	"fmt"
 	"os"
 	"path/filepath"
+	"regexp"
 	"strings"
 	"sync"
 	"testing"
@@ -259,7 +260,8 @@ func TestBrowserWithoutScripts(t *testing.T) {
 	b.quiet()
 }
 
-// On paper every sheet is there, nothing is cut off and no control is seen.
+// On paper every sheet is there, nothing is cut off, no control is seen, and
+// no sheet takes two pages.
 func TestBrowserOnPaper(t *testing.T) {
 	run := madeRun(t, "testdata/dish.yaml")
 	b := show(t, filepath.Join(run, reportFile), 690, true)
@@ -281,6 +283,9 @@ func TestBrowserOnPaper(t *testing.T) {
 		p.PreferCSSPageSize = &css
 	}))
 	b.must(err)
+	if n := len(regexp.MustCompile(`/Type /Page\b`).FindAll(pdf, -1)); n < mostSheets || n >= 2*mostSheets {
+		t.Errorf("%d sheets and the rest take %d pages", mostSheets, n)
+	}
 	if folder := os.Getenv("PICTURES"); folder != "" {
 		b.must(os.WriteFile(filepath.Join(folder, "report.pdf"), pdf, 0o644))
 	}

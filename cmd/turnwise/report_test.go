@@ -182,6 +182,10 @@ func TestReportPage(t *testing.T) {
 	if n := len(root.find("article")); n != mostSheets {
 		t.Errorf("%d sheets, %d are due", n, mostSheets)
 	}
+	// What the model states of itself is on every sheet; paper needs it once.
+	if n := bytes.Count(page, []byte(`<div class="repeated"><dt>model</dt><dd>`)); n != mostSheets-1 {
+		t.Errorf("%d sheets repeat the first one's statement, all but one are due", n)
+	}
 	if strings.Contains(parts["style"], "url(") || strings.Contains(parts["style"], "@import") {
 		t.Error("the style loads something")
 	}

@@ -24,6 +24,7 @@ type sheetView struct {
 	Balance          []pair
 	Warnings         []string
 	Statement        string
+	Repeats          bool // the first sheet states the same
 	Indicative       bool
 	Tolerance        *toleranceView
 	Err              string
@@ -68,6 +69,7 @@ func (r *Run) sheetView(i int) sheetView {
 	if s.Simulation != nil {
 		v.Hand, v.HandModel, v.Balance = s.handRows(), named(s.Simulation.Model), s.balance()
 		v.Statement, v.Indicative = s.Simulation.Response.Statement, s.Simulation.Response.Indicative
+		v.Repeats = i > 0 && r.Sheets[0].Simulation != nil && r.Sheets[0].Simulation.Response.Statement == v.Statement
 		v.Warnings = append(append([]string{}, s.Simulation.Warnings...), s.Simulation.Response.Warnings...)
 	}
 	return v
