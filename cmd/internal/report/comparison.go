@@ -188,6 +188,7 @@ type shiftObject struct {
 	By       *number      `json:"by_m"`
 	Plain    *number      `json:"by"`
 	Explains *number      `json:"explains_pct,omitempty"`
+	OrMore   bool         `json:"or_more"`
 	Undo     *string      `json:"undo"`
 	Stands   string       `json:"moved"`
 	Second   *shiftObject `json:"second,omitempty"`
@@ -200,7 +201,7 @@ func shiftObjects(list []workshop.Explanation) []*shiftObject {
 		var o *shiftObject
 		for _, s := range slices.Backward(list[i].Shifts) {
 			by := number(s.By)
-			o = &shiftObject{Name: s.Name, By: &by, Undo: orNull(s.Undo), Stands: s.Stands, Second: o}
+			o = &shiftObject{Name: s.Name, By: &by, OrMore: s.OrMore, Undo: orNull(s.Undo), Stands: s.Stands, Second: o}
 			if s.Plain {
 				o.By, o.Plain = nil, &by
 			}

@@ -20,6 +20,7 @@ type Shift struct {
 	Stands string // what exactly is changed
 	By     float64
 	Plain  bool // By is a number without unit; else metres
+	OrMore bool // it was not sought any farther
 	// Undo is what a fitter does on the finished antenna to take it back;
 	// empty where it takes winding anew.
 	Undo string
@@ -239,7 +240,8 @@ func (c *candidate) piece(b *bench) *piece {
 func (c *candidate) shifts() []Shift {
 	out := make([]Shift, len(c.causes))
 	for i, one := range c.causes {
-		out[i] = Shift{Name: one.Name, Stands: one.Stands, By: c.by[i], Plain: one.Plain, Undo: one.Less}
+		low, high := one.span()
+		out[i] = Shift{Name: one.Name, Stands: one.Stands, By: c.by[i], Plain: one.Plain, OrMore: c.by[i] == low || c.by[i] == high, Undo: one.Less}
 		if c.by[i] < 0 {
 			out[i].Undo = one.More
 		}
@@ -249,14 +251,17 @@ func (c *candidate) shifts() []Shift {
 
 // Words say the change with its sign: "riser height +0.80 mm".
 func (s *Shift) Words() string {
-	sign := "+"
+	sign, more := "+", ""
 	if s.By < 0 {
 		sign = "−"
 	}
-	if s.Plain {
-		return fmt.Sprintf("%s %s%.3g", s.Name, sign, math.Abs(s.By))
+	if s.OrMore {
+		more = " or more"
 	}
-	return fmt.Sprintf("%s %s%.2f mm", s.Name, sign, math.Abs(s.By)*1e3)
+	if s.Plain {
+		return fmt.Sprintf("%s %s%.3g%s", s.Name, sign, math.Abs(s.By), more)
+	}
+	return fmt.Sprintf("%s %s%.2f mm%s", s.Name, sign, math.Abs(s.By)*1e3, more)
 }
 
 // Words say all its changes.

@@ -130,8 +130,23 @@ func TestExplainBend(t *testing.T) {
 	if s := best.Shifts[0]; s.Name != "height at ½ turn" || math.Abs(s.By+0.0025) > 0.2e-3 || s.Undo != "lift" {
 		t.Errorf("%+v", best)
 	}
+	if best.Shifts[0].OrMore {
+		t.Error("it was sought farther")
+	}
 	if w, u := best.Words(), best.UndoWords(); !strings.HasPrefix(w, "height at ½ turn −2.") || !strings.HasPrefix(u, "lift by 2.") {
 		t.Errorf("%q, %q", w, u)
+	}
+}
+
+// TestExplainFar: what lies farther off than was sought is called so.
+func TestExplainFar(t *testing.T) {
+	d := antennas["cylinder"]
+	hz := d.Band.Hz()
+	far := reach(hz[0])
+	all := explain(t, d, hz, differing(t, d, hz, func(d *models.Design) { d.Feed.Height += 1.5 * far }))
+	s := all.Best().Shifts[0]
+	if s.Name != "riser height" || math.Abs(s.By-far) > 1e-9 || !s.OrMore || !strings.HasSuffix(s.Words(), " mm or more") {
+		t.Errorf("%+v: %s", s, s.Words())
 	}
 }
 
