@@ -57,8 +57,9 @@ func (e *Explanations) Best() *Explanation {
 	return nil
 }
 
-// explained is the number of frequencies that amounts are sought at.
-const explained = 5
+// explained is the number of frequencies that changes are simulated at before
+// their amounts are sought; between them they are taken along straight lines.
+const explained = 9
 
 // unexplained is the part of a difference that one dimension may leave before
 // pairs are sought.
@@ -77,15 +78,10 @@ type cause struct {
 // difference, also pairs. Each is simulated as found, and judged by that.
 func Explain(ctx context.Context, rung objectives.Rung, d models.Design, spreads tolerance.Spreads, hz []float64, difference []complex128) (Explanations, error) {
 	var out Explanations
-	at := Thinned(len(hz), explained)
-	few, due := make([]float64, len(at)), make([]complex128, len(at))
-	for i, k := range at {
-		few[i], due[i] = hz[k], difference[k]
-	}
-	if energy(due) < 1e-18 {
+	if energy(difference) < 1e-18 {
 		return out, nil
 	}
-	causes, err := possibleCauses(ctx, rung, d, spreads, few)
+	causes, err := possibleCauses(ctx, rung, d, spreads, hz)
 	if err != nil {
 		return out, err
 	}
@@ -93,11 +89,11 @@ func Explain(ctx context.Context, rung objectives.Rung, d models.Design, spreads
 	if err != nil {
 		return out, err
 	}
-	if out.Single, err = judged(ctx, band, singles(causes, due), difference); err != nil {
+	if out.Single, err = judged(ctx, band, singles(causes, difference), difference); err != nil {
 		return out, err
 	}
 	if len(out.Single) > 0 && out.Single[0].Left > unexplained {
-		out.Pairs, err = judged(ctx, band, pairs(causes, due), difference)
+		out.Pairs, err = judged(ctx, band, pairs(causes, difference), difference)
 	}
 	return out, err
 }
@@ -131,14 +127,19 @@ func possibleCauses(ctx context.Context, rung objectives.Rung, d models.Design, 
 	if err != nil {
 		return nil, err
 	}
-	b, err := newBench(ctx, rung, d, hz)
+	at := Thinned(len(hz), explained)
+	few := make([]float64, len(at))
+	for i, k := range at {
+		few[i] = hz[k]
+	}
+	b, err := newBench(ctx, rung, d, few)
 	if err != nil {
 		return nil, err
 	}
 	far := reach(hz[len(hz)/2])
 	var out []cause
 	for _, m := range append(fittersMovables(&d, c, far), windingMovables(&d, spreads, far)...) {
-		one := cause{m, make([]path, len(hz))}
+		paths := make([]path, len(few))
 		for _, by := range m.amounts() {
 			p := b.piece()
 			if by != 0 {
@@ -151,13 +152,35 @@ func possibleCauses(ctx context.Context, rung objectives.Rung, d models.Design, 
 			if err != nil {
 				continue // it cannot be so far off
 			}
-			for k := range hz {
-				one.at[k] = append(one.at[k], waypoint{by, g[k]})
+			for k := range few {
+				paths[k] = append(paths[k], waypoint{by, g[k]})
 			}
 		}
-		out = append(out, one)
+		out = append(out, cause{m, between(few, paths, hz)})
 	}
 	return out, nil
+}
+
+// between gives a path at each of many frequencies from those at a few, the
+// first and the last among them.
+func between(few []float64, paths []path, hz []float64) []path {
+	out := make([]path, len(hz))
+	i := 0
+	for k, f := range hz {
+		for i < len(few)-2 && f > few[i+1] {
+			i++
+		}
+		if f == few[i] {
+			out[k] = paths[i]
+			continue
+		}
+		u := complex((f-few[i])/(few[i+1]-few[i]), 0)
+		for w, a := range paths[i] {
+			b := paths[i+1][w]
+			out[k] = append(out[k], waypoint{a.By, a.Added + u*(b.Added-a.Added)})
+		}
+	}
+	return out
 }
 
 // windingMovables are the dimensions that only winding anew would mend, each

@@ -4,6 +4,8 @@ import (
 	"cmp"
 	"context"
 	"math"
+	"math/cmplx"
+	"math/rand/v2"
 	"slices"
 	"strings"
 	"testing"
@@ -135,6 +137,39 @@ func TestExplainBend(t *testing.T) {
 	}
 	if w, u := best.Words(), best.UndoWords(); !strings.HasPrefix(w, "height at ½ turn −2.") || !strings.HasPrefix(u, "lift by 2.") {
 		t.Errorf("%q, %q", w, u)
+	}
+}
+
+// TestExplainNoise: what the analyser adds by chance at every frequency evens
+// out over the band.
+func TestExplainNoise(t *testing.T) {
+	d := antennas["cylinder"]
+	d.Turns = 4
+	hz := models.Band{From: 1.6e9, To: 1.76e9, Samples: 41}.Hz()
+	difference := differing(t, d, hz, func(d *models.Design) { d.Feed.Height += 1.2e-3 })
+	level := math.Sqrt(energy(difference)/float64(len(hz))) / 2
+	chance := rand.New(rand.NewPCG(1, 2))
+	for i := range difference {
+		difference[i] += cmplx.Rect(level, 2*math.Pi*chance.Float64())
+	}
+	best := explain(t, d, hz, difference).Single[0]
+	if s := best.Shifts[0]; s.Name != "riser height" || math.Abs(s.By/1.2e-3-1) > 0.15 || math.Abs(best.Left-0.2) > 0.05 {
+		t.Errorf("%s leaves %.3f", s.Words(), best.Left)
+	}
+}
+
+// TestBetween: halfway between two frequencies a path is their mean, at each
+// its own.
+func TestBetween(t *testing.T) {
+	few := []path{{{-1, 1}, {2, 4}}, {{-1, 3i}, {2, 8}}, {{-1, 5}, {2, 6}}}
+	got := between([]float64{10, 20, 30}, few, []float64{10, 15, 20, 30})
+	for k, want := range []path{few[0], {{-1, 0.5 + 1.5i}, {2, 6}}, few[1], few[2]} {
+		if !slices.Equal(got[k], want) {
+			t.Errorf("%v, want %v", got[k], want)
+		}
+	}
+	if one := between([]float64{10}, few[:1], []float64{10}); !slices.Equal(one[0], few[0]) {
+		t.Errorf("at one frequency %v", one)
 	}
 }
 
