@@ -102,14 +102,69 @@ func BenchmarkMeasuredCup(b *testing.B) {
 // peak is a gain and the circumference in wavelengths where it stands.
 type peak struct{ db, c float64 }
 
-// peakOf sweeps a winding from C = 0.9 λ to 1.25 λ.
+// peakOf sweeps a winding from C = 0.9 λ to 1.3 λ.
 func peakOf(t testing.TB, d models.Design) (p peak) {
 	around := math.Pi * d.Diameter[0] / models.LightSpeed
-	r := simulate(t, Standard, d, models.Axis, models.Band{From: 0.9 / around, To: 1.25 / around, Samples: 36}.Hz()...)
+	r := simulate(t, Standard, d, models.Axis, models.Band{From: 0.9 / around, To: 1.3 / around, Samples: 41}.Hz()...)
 	for _, s := range r.Samples {
 		if db := decibels(s.Gain.Right); db > p.db {
 			p = peak{db, s.Hz * around}
 		}
 	}
 	return p
+}
+
+// BenchmarkPlateConvergence prints what modes of the azimuth and elements of
+// the meridian leave out: against the most of both, in decibels on the axis and
+// per cent of the impedance.
+func BenchmarkPlateConvergence(b *testing.B) {
+	levels := modeLevels
+	defer func() { modeLevels = levels }()
+	for _, g := range [][2]float64{{0.5, 0}, {0.5, 0.25}, {0.8, 0.4}} {
+		d := grounded(tableDesign(), g[0], g[1])
+		set, _ := Standard.settings()
+		dense := set
+		dense.wave, dense.beyond, dense.graded, dense.smooth = 3*set.wave, 3*set.beyond, 16, 8
+		want := platedAt(b, d, dense, 24)
+		report := func(name string, set settings, modes int) {
+			b.Run(fmt.Sprintf("diameter=%g,rim=%g,%s", g[0], g[1], name), func(b *testing.B) {
+				var got reading
+				for b.Loop() {
+					got = platedAt(b, d, set, modes)
+				}
+				b.ReportMetric(decibels(total(got.sides[0])/total(want.sides[0])), "dB-axis")
+				b.ReportMetric(100*apart(got.port, want.port), "%-impedance")
+			})
+		}
+		for _, modes := range []int{2, 4, 6, 8, 12} {
+			report(fmt.Sprintf("modes=%d", modes), dense, modes)
+		}
+		for _, wave := range []float64{2, set.wave, 8} {
+			s := dense
+			s.wave = wave
+			report(fmt.Sprintf("plate=%g", wave), s, 24)
+		}
+		for _, beyond := range []int{4, 6, 7, 9, 12} {
+			s := dense
+			s.beyond = beyond
+			report(fmt.Sprintf("beyond=%d", beyond), s, 24)
+		}
+	}
+}
+
+// platedAt reads a design at 1 GHz with settings of the plate alone, and its
+// number of modes.
+func platedAt(t testing.TB, d models.Design, set settings, modes int) (r reading) {
+	for i := range modeLevels {
+		modeLevels[i] = modes
+	}
+	see := watcher(func(s *Solution) error {
+		r = reading{port: 1 / s.Admittance(0, 0), sides: []models.Circular{scaled(s.Intensity(0, 0), 4*math.Pi/s.Accepted())}}
+		return nil
+	})
+	a := wound(t, d, Standard, 1e9)
+	if err := new(work).sweep(t.Context(), a, set, []float64{1e9}, see); err != nil {
+		t.Fatal(err)
+	}
+	return r
 }
