@@ -123,7 +123,7 @@ func TestWarnings(t *testing.T) {
 		{"a steep cone", func(d *models.Design) { d.Diameter = models.Law{0.004, 0.2} }, nil, []string{"0.0419 to 2.1 wavelengths", "axial mode"}},
 		{"a wide strip", func(d *models.Design) { d.Feed.Strip = models.Strip{Turns: 0.25, Width: 0.02} }, nil, []string{"strip is 3.34 times", "3"}},
 		{"close to a rim", func(d *models.Design) {
-			d.Ground = models.Ground{Kind: models.Cup, Diameter: d.Diameter[0] + 0.02, Rim: 0.1}
+			d.Ground = models.Ground{Kind: models.Cup, Diameter: d.Diameter[0] + 2.5*d.Conductor.Diameter, Rim: 0.1}
 		}, nil, []string{"cup", "modes"}},
 		{"60 turns", func(d *models.Design) { d.Turns = 60 }, nil, []string{"excess phase is 1.02", "0.5"}},
 	}

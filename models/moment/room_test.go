@@ -16,7 +16,7 @@ func TestAnswersAllocateNothing(t *testing.T) {
 	coat := benchDesign(4)
 	coat.Feed.Strip = models.Strip{Turns: 0.25, Width: 0.006}
 	coat.Insulation = models.Insulation{Thickness: 3e-4, Permittivity: 2.3}
-	disc, cup := benchDesign(4), benchDesign(4)
+	disc, cup := benchDesign(2), benchDesign(2)
 	disc.Ground = models.Ground{Kind: models.Disc, Diameter: 0.3}
 	cup.Ground = models.Ground{Kind: models.Cup, Diameter: 0.3, Rim: 0.1}
 	for name, d := range map[string]models.Design{"uniform": benchDesign(4), "taper": benchTaper(4), "strip and coat": coat, "disc": disc, "cup": cup} {
@@ -33,7 +33,7 @@ func TestAnswersAllocateNothing(t *testing.T) {
 			set, _ := f.settings()
 			w := newWorker()
 			q := models.Question{
-				Hz:      models.Band{From: 0.98e9, To: 1.02e9, Samples: 3}.Hz(),
+				Hz:      []float64{0.98e9, 1.02e9},
 				Outputs: models.Cone | models.Cuts | models.Spread | models.Balance, Cone: 0.2,
 			}
 			samples := make([]models.Sample, len(q.Hz))
