@@ -66,8 +66,13 @@ func check(ctx context.Context, s streams, path, lasting string) error {
 	}
 	workers := runtime.NumCPU()
 	planned := plannedEvaluations(&b, one, workers)
-	whole := time.Duration(float64(one) * float64(planned) / float64(workers))
-	fmt.Fprintf(w, "time          one evaluation %s here; %d of them on %d workers about %s, and the final front besides\n", brief(one), planned, workers, brief(whole))
+	ground, sizes := timeGround(ctx, p, one), grounds(p)
+	whole := time.Duration((float64(one)*float64(planned) + float64(ground)*float64(sizes)) / float64(workers))
+	first := ""
+	if ground > 0 {
+		first = fmt.Sprintf(" and up to %s more for the first on each of %d grounds", brief(ground), sizes)
+	}
+	fmt.Fprintf(w, "time          one evaluation %s here%s; %d of them on %d workers about %s, and the final front besides\n", brief(one), first, planned, workers, brief(whole))
 	if one >= dearFrom {
 		fmt.Fprintf(w, "searcher      learned: an evaluation takes so long that surfaces through the answers pay\n")
 	}
@@ -90,6 +95,7 @@ func describeBrief(w io.Writer, b *configs.Brief, p *objectives.Problem) {
 	if s.Base.FeedsReflector {
 		fmt.Fprintf(w, "              it feeds a reflector, which turns its %s-hand circular into the other\n", s.Base.Sense)
 	}
+	describeGround(w, p)
 	for _, r := range b.Ladder {
 		fmt.Fprintf(w, "model         %s\n", strings.TrimSpace(r.Model+" "+r.Fidelity))
 	}
@@ -186,7 +192,8 @@ func randomPoint(p *objectives.Problem, random func() float64) space.Point {
 const enoughTiming = 3 * time.Second
 
 // timeEvaluation is how long one evaluation takes here: the mean over some
-// designs of hand rules and some drawn at random, the first of all left out.
+// designs of hand rules and some drawn at random, on one ground, the first of
+// all left out.
 func timeEvaluation(ctx context.Context, p *objectives.Problem) (time.Duration, error) {
 	const most = 12
 	points := p.HandSeeds(most / 2)
@@ -199,6 +206,9 @@ func timeEvaluation(ctx context.Context, p *objectives.Problem) (time.Duration, 
 	}
 	if len(points) == 0 {
 		points = append(points, randomPoint(p, rng.Float64))
+	}
+	for i := range points {
+		points[i] = onGroundOf(p, points[0], points[i])
 	}
 	var faults []error
 	var sum time.Duration
