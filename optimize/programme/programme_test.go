@@ -108,3 +108,47 @@ func TestLeftoversAreUsed(t *testing.T) {
 		t.Errorf("%d of 400 evaluations used: %s", len(all), s.Explain())
 	}
 }
+
+// near is a programme whose genetic stages end with the learned searcher
+// around the front.
+func near(plan ...int) programme.Config {
+	c := standard(plan...)
+	c.Near = 40
+	return c
+}
+
+func TestContractWithNear(t *testing.T) {
+	searchtest.Run(t, func(d optimize.Domain, n int, seed uint64, _ []optimize.Evaluation) optimize.Searcher {
+		c := near(n)
+		c.Seed = seed
+		return programme.New(d, c)
+	})
+}
+
+// Near takes the end of the genetic stage, at most half of it, in extensions
+// too, and nothing where the learned searcher has it all.
+func TestNearTakesTheEndOfTheGeneticStage(t *testing.T) {
+	p := searchtest.ProblemByName("tnk")
+	for _, c := range []struct {
+		config                              programme.Config
+		sample, genetic, learned, simplexes int
+	}{
+		{near(200), 20, 100, 40, 40},
+		{near(50), 5, 18, 17, 10},
+		{near(200, 100), 20, 100 + 40, 40 + 40, 40 + 20},
+	} {
+		s := programme.New(p.Domain, c.config)
+		got := stages(searchtest.Drive(p, s))
+		s.Close()
+		if got[programme.Sample] != c.sample || got[programme.Genetic] != c.genetic || got[programme.Learned] != c.learned || got[programme.Simplex] != c.simplexes {
+			t.Errorf("plan %v: %v", c.config.Plan, got)
+		}
+	}
+	c := near(200)
+	c.Dear = true
+	s := programme.New(p.Domain, c)
+	defer s.Close()
+	if got := stages(searchtest.Drive(p, s)); got[programme.Genetic] != 0 || got[programme.Learned] != 140 {
+		t.Errorf("dear: %v", got)
+	}
+}

@@ -25,21 +25,36 @@ type promise struct {
 	value    front.Value
 }
 
-// infill chooses n points by the surfaces and notes what they promise; fewer
-// where nothing does.
+// infill chooses n points by surfaces through all that is known and notes
+// what they promise; fewer where nothing does.
 func (s *Search) infill(n int) []space.Point {
 	s.promised = nil
 	if n == 0 {
 		return nil
 	}
-	centres := s.centres()
-	surfaces, ok := s.learn(centres)
+	chosen, ok := s.promises(s.centres(), n, "inner")
 	if !ok {
 		return nil
 	}
-	var points []space.Point
-	for _, p := range s.choose(s.foretold(surfaces, centres), n, surfaces.typical) {
-		points = append(points, p.point)
+	return s.note(chosen, n)
+}
+
+// promises are at most n points that surfaces through some centres choose;
+// part is the random stream's name. False: no surface can be laid.
+func (s *Search) promises(centres []int, n int, part string) ([]promise, bool) {
+	surfaces, ok := s.learn(centres)
+	if !ok {
+		return nil, false
+	}
+	return s.choose(s.foretold(surfaces, centres, part), n, surfaces.typical), true
+}
+
+// note keeps what the chosen points promise, and lets go of caution where
+// there are fewer than the n that were wanted.
+func (s *Search) note(chosen []promise, n int) []space.Point {
+	points := make([]space.Point, len(chosen))
+	for i, p := range chosen {
+		points[i] = p.point
 		s.promised = append(s.promised, p.value)
 	}
 	if len(points) < n {
@@ -99,7 +114,7 @@ const afresh = 3
 
 // foretold runs the genetic searcher on the surfaces and gives all that it
 // asked.
-func (s *Search) foretold(f *surfaces, centres []int) []promise {
+func (s *Search) foretold(f *surfaces, centres []int, part string) []promise {
 	var start []optimize.Evaluation
 	if s.caution >= 0 || s.round%afresh != 0 {
 		for _, i := range centres {
@@ -109,7 +124,7 @@ func (s *Search) foretold(f *surfaces, centres []int) []promise {
 	g := genetic.New(s.domain, genetic.Config{
 		Population:  innerPopulation,
 		Evaluations: min(max(innerEach*s.c.Evaluations, innerLeast), innerMost),
-		Seed:        s.stream("inner"),
+		Seed:        s.stream(part),
 	}, start)
 	room := newColumns(f)
 	var all []promise

@@ -16,6 +16,10 @@ type Config struct {
 	Evaluations int // that may be asked
 	Batch       int // 0: 5 to 16, by the evaluations
 	Seed        uint64
+	// Near lays surfaces around members of the front, many small ones, where
+	// else one goes through all that is known: for a search that has a front
+	// already and many evaluations behind it.
+	Near bool
 }
 
 // Bounds of a batch, and the rounds that a search should have at least.
@@ -121,7 +125,11 @@ func (s *Search) points(n int) []space.Point {
 		add(s.draw(min(n, short)), drawn)
 		return points
 	}
-	add(s.infill(s.parts.take(n)), learned)
+	infill := s.infill
+	if s.c.Near {
+		infill = s.infillNear
+	}
+	add(infill(s.parts.take(n)), learned)
 	add(s.breed(n-len(points), points), bred)
 	return points
 }
