@@ -125,10 +125,7 @@ func (c *coupling) lines(set *settings) {
 			continue
 		}
 		for j, x := range g.x {
-			n := rimNode{patch: p, weight: g.w[j] / 2}
-			for l := range c.degree + 1 {
-				n.value[l], n.slope[l] = p.value[l].at(x, c.degree+1), 2*p.slope[l].at(x, c.degree+1)
-			}
+			n := rimNode{patch: p, weight: g.w[j] / 2, splineValues: p.values(x, c.degree)}
 			c.rims = append(c.rims, n)
 			c.rings = append(c.rings, ringRule{place: c.place(rim, float64(p.at)+(x+1)/2)})
 		}

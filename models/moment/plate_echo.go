@@ -35,7 +35,7 @@ func (m *meridian) rimCount() int {
 		return 0
 	}
 	n := m.parts[rim] + m.degree
-	return 2*n - 1
+	return 2*n - 2
 }
 
 // echo solves the plate at wave number k for the modes 0 to modes.

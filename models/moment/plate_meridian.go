@@ -12,15 +12,18 @@ import (
 //
 //	J = (t̂ T/ρ + jφ̂ F/σ) e^{jmφ},   σ = ds/du,
 //
-// with T and F splines in u. Its charge is (dT/du − mF)/(ρσ). The parameter
-// crowds towards edges as the square root of the distance does, so that
-// currents that go there as that root or its inverse are splines as well.
+// with T and F splines in u. Its charge is (dT/du − mF)/(ρσ). On the plate F is
+// of one degree less, as dT/du is, so that the currents without charge are
+// among the functions: of equal degrees some are only nearly there, and their
+// small charges resonate where nothing else does. The parameter crowds towards
+// edges as the square root of the distance does, so that currents that go
+// there as that root or its inverse are splines as well.
 
 // reach is how the meridian goes on beyond the edge.
 const (
 	slantTurn  = 66 * math.Pi / 180 // α
 	slantWaves = 2.2                // length, wavelengths
-	slantCrowd = 4.0                // how much finer it starts than it ends
+	slantGrow  = 3.0                // ln of how much finer it starts than it ends
 )
 
 // part is a piece of the meridian.
@@ -35,10 +38,26 @@ const (
 // patch is an element of the meridian.
 type patch struct {
 	part         part
-	at           int // element of the part, whose parameter is at + (x + 1)/2
-	value, slope [maxOrder]poly
+	at           int            // element of the part, whose parameter is at + (x + 1)/2
+	value, slope [maxOrder]poly // of T
+	flow         [maxOrder]poly // of F
 	t, f         []term
 	tips         [3]place
+}
+
+// splineValues are an element's splines at a point.
+type splineValues struct {
+	value, slope [maxOrder]float64 // of T, and its derivative by u
+	flow         [maxOrder]float64 // of F
+}
+
+// values are the splines at the local coordinate x.
+func (p *patch) values(x float64, degree int) (v splineValues) {
+	for l := range degree + 1 {
+		v.value[l], v.slope[l] = p.value[l].at(x, degree+1), 2*p.slope[l].at(x, degree+1)
+		v.flow[l] = p.flow[l].at(x, degree+1)
+	}
+	return v
 }
 
 // term is a function's part on an element: its number and the spline.
@@ -77,6 +96,7 @@ func (s *settings) meridian(p Plate, k float64) *meridian {
 	for p := range m.parts {
 		for e := range m.parts[p] {
 			q := patch{part: part(p), at: e, value: splines(m.parts[p], e, m.degree)}
+			q.flow = splines(m.parts[p], e, m.flow(part(p)))
 			for i := range q.slope {
 				q.slope[i] = q.value[i].slope()
 			}
@@ -93,6 +113,15 @@ func (s *settings) meridian(p Plate, k float64) *meridian {
 	}
 	m.turns = m.azimuthal()
 	return m
+}
+
+// flow is the degree of F. Beyond the edge, where nothing is unknown and so
+// nothing resonates, it shares its rings with T.
+func (m *meridian) flow(p part) int {
+	if p == beyond {
+		return m.degree
+	}
+	return m.degree - 1
 }
 
 // greville is the mean of the inner knots of spline i.
@@ -118,11 +147,12 @@ func (m *meridian) place(p part, u float64) place {
 		h := m.plate.Rim / 2
 		return place{rho: complex(m.plate.Radius, 0), sigma: complex(h*sin*math.Pi/n, 0), z: h * (1 - cos), cos: 1}
 	}
-	x := u / n
-	scale := m.slant / (1 + slantCrowd)
+	// Wires close to the edge, or in the middle of a small plate, want it fine
+	// there; along the waves that die away it may be coarse.
+	scale, grown := m.slant/complex(math.Expm1(slantGrow), 0), slantGrow*u/n
 	return place{
-		rho:   complex(m.plate.Radius, 0) + scale*complex(x+slantCrowd*x*x, 0),
-		sigma: scale * complex((1+2*slantCrowd*x)/n, 0),
+		rho:   complex(m.plate.Radius, 0) + scale*complex(math.Expm1(grown), 0),
+		sigma: scale * complex(slantGrow/n*math.Exp(grown), 0),
 		sin:   1,
 	}
 }
@@ -155,11 +185,12 @@ func (m *meridian) number() {
 			m.around = append(m.around, false)
 			next++
 		}
-		for i := range n + m.degree {
+		flow := m.flow(part(p))
+		for i := range n + flow {
 			if part(p) == disc && i == 0 {
 				m.axial = next
 			}
-			lay(patches, i, m.degree, func(q *patch, local int) { q.f = append(q.f, term{next, local}) })
+			lay(patches, i, flow, func(q *patch, local int) { q.f = append(q.f, term{next, local}) })
 			m.around = append(m.around, true)
 			next++
 		}

@@ -4,9 +4,9 @@ import "math"
 
 // rimNode is a node of the rim's quadrature, its place among the rings.
 type rimNode struct {
-	patch        *patch
-	weight       float64
-	value, slope [maxOrder]float64
+	splineValues
+	patch  *patch
+	weight float64
 }
 
 // rimMeans are the modes of e^{−jkR}/R, integrated over the ring: the sums
@@ -74,7 +74,7 @@ func (c *coupling) project(m *mesh, k float64) {
 				y[plane+t.fn-first] += upright*complex(n.value[t.local], 0) + charge*complex(n.slope[t.local], 0)
 			}
 			for _, f := range n.patch.f {
-				y[plane+f.fn-first] += (around - charge*complex(mode, 0)) * complex(n.value[f.local], 0)
+				y[plane+f.fn-first] += (around - charge*complex(mode, 0)) * complex(n.flow[f.local], 0)
 			}
 		}
 	}

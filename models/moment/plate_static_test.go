@@ -80,7 +80,7 @@ func (m *meridian) moments(power float64) []float64 {
 				out[e.fn] += g.w[j] / 2 * real(at.sigma) * p.value[e.local].at(x, m.degree+1)
 			}
 			for _, e := range p.f {
-				out[e.fn] += g.w[j] / 2 * math.Pow(real(at.rho), power) * p.value[e.local].at(x, m.degree+1)
+				out[e.fn] += g.w[j] / 2 * math.Pow(real(at.rho), power) * p.flow[e.local].at(x, m.degree+1)
 			}
 		}
 	}

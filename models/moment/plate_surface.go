@@ -113,26 +113,16 @@ func (s *surface) node(p, q *patch, x, y, w float64) {
 	a, b := s.at(p, x), s.at(q, y)
 	d, z := a.rho-b.rho, a.z-b.z
 	s.rings.between(d*d+complex(z*z, 0), a.rho*b.rho)
-	var pv, qv, ps, qs [maxOrder]float64
-	s.values(p, x, &pv, &ps)
-	s.values(q, y, &qv, &qs)
+	u, v := p.values(x, s.degree), q.values(y, s.degree)
 	for m := range s.c {
 		f := s.factors(m, &a, &b, w)
-		f.add(s.c[m], s.count, p, q, &pv, &ps, &qv, &qs)
+		f.add(s.c[m], s.count, p, q, &u, &v)
 	}
 }
 
 // at is the point of a patch at its local coordinate.
 func (s *surface) at(p *patch, x float64) place {
 	return s.place(p.part, float64(p.at)+(x+1)/2)
-}
-
-// values are the patch's splines and their derivatives by u.
-func (s *surface) values(p *patch, x float64, value, slope *[maxOrder]float64) {
-	order := s.degree + 1
-	for l := range order {
-		value[l], slope[l] = p.value[l].at(x, order), 2*p.slope[l].at(x, order)
-	}
 }
 
 // factors are what multiplies the functions at a pair of points: by the
@@ -162,26 +152,26 @@ func (s *surface) factors(m int, a, b *place, w float64) factors {
 
 // add puts the products of all functions of two patches in their places and
 // those across the diagonal.
-func (f *factors) add(c []complex128, n int, p, q *patch, pv, ps, qv, qs *[maxOrder]float64) {
-	put := func(i, j int, v complex128) {
-		c[i*n+j] += v
-		c[j*n+i] += v
+func (f *factors) add(c []complex128, n int, p, q *patch, u, v *splineValues) {
+	put := func(i, j int, by complex128, current float64, charge float64) {
+		e := by*complex(current, 0) + f.charge*complex(charge, 0)
+		c[i*n+j] += e
+		c[j*n+i] += e
 	}
-	real := func(v complex128, a float64) complex128 { return v * complex(a, 0) }
 	for _, i := range p.t {
 		for _, j := range q.t {
-			put(i.fn, j.fn, real(f.tt, pv[i.local]*qv[j.local])+real(f.charge, ps[i.local]*qs[j.local]))
+			put(i.fn, j.fn, f.tt, u.value[i.local]*v.value[j.local], u.slope[i.local]*v.slope[j.local])
 		}
 		for _, j := range q.f {
-			put(i.fn, j.fn, real(f.tf, pv[i.local]*qv[j.local])-real(f.charge, f.m*ps[i.local]*qv[j.local]))
+			put(i.fn, j.fn, f.tf, u.value[i.local]*v.flow[j.local], -f.m*u.slope[i.local]*v.flow[j.local])
 		}
 	}
 	for _, i := range p.f {
 		for _, j := range q.t {
-			put(i.fn, j.fn, real(f.ft, pv[i.local]*qv[j.local])-real(f.charge, f.m*pv[i.local]*qs[j.local]))
+			put(i.fn, j.fn, f.ft, u.flow[i.local]*v.value[j.local], -f.m*u.flow[i.local]*v.slope[j.local])
 		}
 		for _, j := range q.f {
-			put(i.fn, j.fn, real(f.ff, pv[i.local]*qv[j.local])+real(f.charge, f.m*f.m*pv[i.local]*qv[j.local]))
+			put(i.fn, j.fn, f.ff, u.flow[i.local]*v.flow[j.local], f.m*f.m*u.flow[i.local]*v.flow[j.local])
 		}
 	}
 }

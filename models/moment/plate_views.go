@@ -59,19 +59,18 @@ func (s *shore) openView() *vista {
 // currents adds a patch's rings to a view.
 func (s *shore) currents(v *vista, p *patch) {
 	g := &legendre[onNodes]
-	order := s.degree + 1
 	for j, x := range g.x {
-		at := s.place(p.part, float64(p.at)+(x+1)/2)
+		at, splines := s.place(p.part, float64(p.at)+(x+1)/2), p.values(x, s.degree)
 		out := v.add(fieldNode{at.rho, at.z, at.sin, at.cos})
 		wt, wf := at.sigma*complex(g.w[j]/2, 0), at.rho*complex(g.w[j]/2, 0)
 		for m := -s.modes; m <= s.modes; m++ {
 			a := s.amplitude[(s.modes+m)*s.count:][:s.count]
 			var t, f complex128
 			for _, e := range p.t {
-				t += a[e.fn] * complex(p.value[e.local].at(x, order), 0)
+				t += a[e.fn] * complex(splines.value[e.local], 0)
 			}
 			for _, e := range p.f {
-				f += a[e.fn] * complex(p.value[e.local].at(x, order), 0)
+				f += a[e.fn] * complex(splines.flow[e.local], 0)
 			}
 			out[2*(v.modes+m)], out[2*(v.modes+m)+1] = t*wt, f*wf
 		}
