@@ -5,6 +5,7 @@ package simtest
 
 import (
 	"context"
+	"errors"
 	"fmt"
 	"math"
 	"testing"
@@ -91,7 +92,7 @@ func answer(s models.Simulator, d models.Design, q models.Question) (models.Resp
 	if err != nil {
 		return r, fmt.Errorf("a good question about %s: %w", d.Title, err)
 	}
-	return r, sound(&r, q)
+	return r, errors.Join(sound(&r, q), rear(&d, &r))
 }
 
 // sweep is a good question.

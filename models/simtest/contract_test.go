@@ -131,6 +131,16 @@ func TestClausesCanFail(t *testing.T) {
 		{"outputs", "beamwidth is 0", spoilt(func(r *models.Response) { r.Samples[0].Beamwidth = 0 })},
 		{"outputs", "peak directivity is", spoilt(func(r *models.Response) { r.Samples[0].PeakDirectivity *= 0.5 })},
 		{"outputs", "sidelobe is 3", spoilt(func(r *models.Response) { r.Samples[0].Sidelobe = 3 })},
+		{"outputs", "no rear", spoilt(func(r *models.Response) {
+			if r.Answered&models.Cuts != 0 {
+				r.Samples[0].RearGain = 0.1
+			}
+		})},
+		{"outputs", "behind an infinite plane", spoilt(func(r *models.Response) {
+			if r.Answered&models.Pattern != 0 {
+				r.Samples[0].Pattern[0].Rays[0].Angle = 2
+			}
+		})},
 		{"outputs", "power balance is 0", spoilt(func(r *models.Response) { r.Samples[0].PowerBalance = 0 })},
 		{"outputs", "spread port", spoilt(func(r *models.Response) { r.Samples[0].SpreadPort = 0 })},
 		{"outputs", "number of cuts", spoilt(func(r *models.Response) { r.Samples[0].Pattern = nil })},

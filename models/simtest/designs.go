@@ -6,8 +6,9 @@ import (
 	"turnwise/models"
 )
 
-// good are designs that every simulator answers: small, for dear ones, over
-// the infinite plane, of both hands, with and without what a feed may have.
+// good are designs that every simulator answers: small, for dear ones, of both
+// hands, with and without what a feed may have, over the infinite plane and on
+// a disc.
 func good() []models.Design {
 	plain := models.Design{
 		Title: "three turns", Turns: 3, Diameter: models.Law{0.095}, Spacing: models.Law{0.066}, Handedness: models.Right,
@@ -20,7 +21,9 @@ func good() []models.Design {
 	tapered.Diameter, tapered.Spacing = models.Law{0.1, 0.095, 0.08}, models.Law{0.06, 0.07}
 	tapered.Feed.Lead = models.Lead{Turns: 0.5, Spacing: 0.012, Shape: models.Ramp}
 	tapered.Feed.Transformer = models.Transformer{Impedance: 85, Length: 0.07, Velocity: 0.9}
-	return []models.Design{plain, tapered}
+	plated := plain
+	plated.Title, plated.Ground = "three turns on a disc", models.Ground{Kind: models.Disc, Diameter: 0.25}
+	return []models.Design{plain, tapered, plated}
 }
 
 // bad are designs that nobody can answer, by what is wrong with them.

@@ -152,3 +152,24 @@ func (f *findings) pattern(cuts []models.Cut) {
 		}
 	}
 }
+
+// rear demands that nothing lies behind an infinite plane.
+func rear(d *models.Design, r *models.Response) error {
+	if d.Ground.Finite() {
+		return nil
+	}
+	for i := range r.Samples {
+		s := &r.Samples[i]
+		if s.RearGain != 0 {
+			return fmt.Errorf("at %g Hz: the rear gain is %g; an infinite plane has no rear", s.Hz, s.RearGain)
+		}
+		for _, c := range s.Pattern {
+			for _, ray := range c.Rays {
+				if math.Abs(ray.Angle) > math.Pi/2+1e-9 {
+					return fmt.Errorf("at %g Hz: a direction %g rad from the axis lies behind an infinite plane", s.Hz, ray.Angle)
+				}
+			}
+		}
+	}
+	return nil
+}
