@@ -90,7 +90,9 @@ func (ses *session) close() {
 const dearFrom = 300 * time.Millisecond
 
 // nearMost is how many evaluations of a stage the learned searcher has around
-// the front's members: it saves simulations, and takes some 30 ms for each.
+// the front's members of full-wave searches: it saves simulations, and takes
+// some 30 ms for each, also where a resumed run repeats itself. Other models
+// are cheaper than that, or say by their time that they are dear.
 const nearMost = 800
 
 // searcher is the programme of the run.
@@ -99,7 +101,7 @@ func (ses *session) searcher() *programme.Search {
 		Plan: ses.planned, Sample: ses.brief.Search.Sample, Genetic: ses.brief.Search.Genetic, Simplex: ses.brief.Search.Simplex,
 		Seed: ses.brief.Seed, Seeds: ses.problem.HandSeeds(20), DearFrom: dearFrom,
 	}
-	if ses.problem.Finest().Model != configs.ClosedForm {
+	if ses.problem.Finest().Model == configs.FullWave {
 		c.Near = nearMost
 	}
 	for i, d := range ses.brief.Starts {
