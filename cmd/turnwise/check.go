@@ -7,6 +7,7 @@ import (
 	"io"
 	"math"
 	"runtime"
+	"slices"
 	"strings"
 	"time"
 
@@ -217,7 +218,9 @@ func timeEvaluation(ctx context.Context, p *objectives.Problem) (time.Duration, 
 		began := time.Now()
 		_, err := p.Evaluate(ctx, optimize.Candidate{Point: pt, Rung: len(p.Rungs()) - 1})
 		if err != nil {
-			faults = append(faults, err)
+			if !slices.ContainsFunc(faults, func(said error) bool { return said.Error() == err.Error() }) {
+				faults = append(faults, err)
+			}
 			continue
 		}
 		if i > 0 {
