@@ -50,6 +50,7 @@ func interrupted(t *testing.T, signal syscall.Signal, most, short int) {
 			if !hit {
 				break
 			}
+			l.settle(name, 100*time.Millisecond)
 			late = late || final && l.evaluations(name) == slowEvaluations
 			kills++
 			now := l.calls(name) - l.answers(name) - lost
@@ -74,6 +75,32 @@ func interrupted(t *testing.T, signal syscall.Signal, most, short int) {
 	t.Logf("%d interruptions", kills)
 }
 
+// A search that was killed between the making of its journal and the first
+// line in it begins when it is resumed.
+func TestKilledBeforeItsStart(t *testing.T) {
+	l := &laboratory{t: t, dir: t.TempDir()}
+	l.file("slow.yaml")
+	l.search("straight", 4, nil)
+	if err := os.CopyFS(l.path("early"), os.DirFS(l.path("straight"))); err != nil {
+		t.Fatal(err)
+	}
+	if err := os.Remove(l.path("early/journal.db")); err != nil {
+		t.Fatal(err)
+	}
+	r := l.read("straight")
+	book, err := journal.Create(l.path("early/journal.db"), r.Header())
+	if err = errors.Join(err, r.Close()); err != nil {
+		t.Fatal(err)
+	}
+	if err := book.Close(); err != nil {
+		t.Fatal(err)
+	}
+	l.search("early", 2, nil)
+	if !bytes.Equal(l.front("early"), l.front("straight")) || l.evaluations("early") != slowEvaluations {
+		t.Errorf("%d evaluations, front:\n%s\nthe straight run's:\n%s", l.evaluations("early"), l.front("early"), l.front("straight"))
+	}
+}
+
 // slowEvaluations is the budget of slow.yaml.
 const slowEvaluations = 300
 
@@ -81,6 +108,18 @@ const slowEvaluations = 300
 type laboratory struct {
 	t   *testing.T
 	dir string
+}
+
+// settle waits until models that outlived their search are done with what
+// they had.
+func (l *laboratory) settle(run string, patience time.Duration) {
+	for last := -1; ; time.Sleep(patience) {
+		now := l.calls(run)
+		if now == last {
+			return
+		}
+		last = now
+	}
 }
 
 func (l *laboratory) path(name string) string { return filepath.Join(l.dir, name) }

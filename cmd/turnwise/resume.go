@@ -126,11 +126,17 @@ func (ses *session) recall(ctx context.Context, asked int) error {
 			ses.done = true
 		}
 	}
-	if len(ses.planned) == 0 {
-		return failed(fmt.Errorf("the journal in %s knows no start of its run", ses.folder.Dir))
-	}
 	if ses.past, err = ses.book.Past(ctx); err != nil {
 		return failed(err)
+	}
+	if len(ses.planned) == 0 {
+		if len(ses.past) > 0 {
+			return failed(fmt.Errorf("the journal in %s knows no start of its run", ses.folder.Dir))
+		}
+		// Killed between the journal's making and its first line.
+		if err := ses.plan(ctx); err != nil {
+			return err
+		}
 	}
 	if asked > sum(ses.planned) {
 		ses.planned = append(ses.planned, asked-sum(ses.planned))

@@ -40,7 +40,7 @@ func TestKilledAtRandomWhileSpread(t *testing.T) {
 	}
 	for !c.search("far", kills < most) {
 		kills++
-		c.settle()
+		c.settle("far", 300*time.Millisecond)
 		before, withWorkers := unheard, c.lost
 		unheard = l.calls("far") - l.answers("far")
 		searching := l.evaluations("far") < slowEvaluations
@@ -102,17 +102,6 @@ func (c *crew) replace(i int) {
 	c.workers[i].Wait()
 	c.lost += crewSlots
 	c.hire(i)
-}
-
-// settle waits until the workers are done with what they had.
-func (c *crew) settle() {
-	for last := -1; ; time.Sleep(300 * time.Millisecond) {
-		now := c.calls("far")
-		if now == last {
-			return
-		}
-		last = now
-	}
 }
 
 // dismiss ends them all.
