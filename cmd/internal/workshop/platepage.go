@@ -42,9 +42,13 @@ func (s *sheet) holes() []hole {
 }
 
 // platePage is the ground's drilling plan.
-func (s *sheet) platePage() leaf {
+func (s *sheet) platePage() leaf { return fitted(84, s.plate) }
+
+// plate is the page with so much room for the holes' view, and where its
+// words end.
+func (s *sheet) plate(room float64) (leaf, float64) {
 	holes := s.holes()
-	view, name, whole := s.plateView(holes)
+	view, name, whole := s.plateView(holes, room)
 	l := newLeaf("ground plate, drilling plan", name)
 	y := top
 	y -= l.Heading(drawing.Point{X: left, Y: y}, across, heading, "Ground plate, seen from the winding, scale "+name)
@@ -66,7 +70,7 @@ func (s *sheet) platePage() leaf {
 	for _, words := range s.plateWords() {
 		y -= l.Paragraph(drawing.Point{X: left, Y: y}, across, body, words) + 1
 	}
-	return l
+	return l, y
 }
 
 func (s *sheet) plateWords() []string {
@@ -80,9 +84,6 @@ func (s *sheet) plateWords() []string {
 		fmt.Sprintf("The opening is %s times the riser's diameter, an air line of 50 Ω, as the calculation has it. A connector with another dielectric keeps its own diameters. Take its fixing holes from the connector itself.", shortest(models.Opening)),
 		"The plate conducts over its whole upper face: bare metal under the connector's flange, no paint.")
 }
-
-// plateRoom is what the holes' view may take of the page, mm.
-const plateRoom = 84.0
 
 // placeEdge puts a small view of the whole plate on the page, y downwards, and
 // gives the height it takes.
@@ -103,10 +104,10 @@ func (s *sheet) placeEdge(l leaf, y float64) float64 {
 
 // plateView draws the plate from above with its holes, and its own edge where
 // that fits beside them: the whole plate.
-func (s *sheet) plateView(holes []hole) (view *drawing.Drawing, name string, whole bool) {
+func (s *sheet) plateView(holes []hole, room float64) (view *drawing.Drawing, name string, whole bool) {
 	half, edge := 650*s.Curve.Diameter(0), 500*s.Design.Ground.Diameter
-	name, k := fitScale(2*half, 2*half, across-60, plateRoom)
-	if whole = s.Design.Ground.Finite() && 2*edge*k <= plateRoom; whole {
+	name, k := fitScale(2*half, 2*half, across-60, room)
+	if whole = s.Design.Ground.Finite() && 2*edge*k <= room; whole {
 		half = math.Max(half, edge)
 	}
 	d := new(drawing.Drawing)

@@ -147,3 +147,13 @@ func fitScale(width, height, room, tall float64) (name string, value float64) {
 	last := scales[len(scales)-1]
 	return last.name, last.value
 }
+
+// fitted is a page whose picture takes as much of tall, mm, as leaves room for
+// the words under it.
+func fitted(tall float64, page func(tall float64) (leaf, float64)) leaf {
+	for least := tall / 2; ; tall -= 4 {
+		if l, y := page(tall); y >= bottom || tall <= least {
+			return l
+		}
+	}
+}

@@ -10,8 +10,11 @@ import (
 
 // viewsPage shows the antenna from the side and from its open end, with its
 // main dimensions and the way to wind it.
-func (s *sheet) viewsPage() leaf {
-	side, name := s.sideView(across-40, 62)
+func (s *sheet) viewsPage() leaf { return fitted(62, s.views) }
+
+// views is the page with a side view so tall, and where its words end.
+func (s *sheet) views(tall float64) (leaf, float64) {
+	side, name := s.sideView(across-40, tall)
 	l := newLeaf("antenna, views and main dimensions", name)
 	y := top
 	y -= l.Heading(drawing.Point{X: left, Y: y}, across, heading, "Side view, riser at the upper edge, scale "+name)
@@ -38,7 +41,7 @@ func (s *sheet) viewsPage() leaf {
 	for _, words := range s.windingNotes() {
 		y -= l.Paragraph(drawing.Point{X: left, Y: y}, across, small, words) + 0.8
 	}
-	return l
+	return l, y
 }
 
 // sideView projects the winding on a plane through the axis: z to the right,
