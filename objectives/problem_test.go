@@ -624,6 +624,32 @@ func TestScreenOfACup(t *testing.T) {
 	}
 }
 
+// Where a taper may vary, seeds that grow away from the plane stand beside
+// the uniform ones; where none may, there are only those.
+func TestHandSeedsGrowWhereATaperMayVary(t *testing.T) {
+	for _, knots := range []int{1, 2, 3} {
+		s := spec()
+		s.Limits = nil
+		s.Vary[1].Knots, s.Vary[2].From = knots, 0.02
+		p := problem(t, s, tones{gain: flat(10)})
+		grow, uniform := 0, 0
+		for _, pt := range p.HandSeeds(20) {
+			d := p.Layout.Design(pt).Diameter
+			switch last := len(d) - 1; {
+			case d[last] == d[0]:
+				uniform++
+			case slices.IsSorted(d):
+				grow++
+			default:
+				t.Errorf("%d knots: a seed of diameters %v", knots, d)
+			}
+		}
+		if uniform == 0 || (grow > 0) != (knots > 1) {
+			t.Errorf("%d knots: %d seeds grow, %d are uniform", knots, grow, uniform)
+		}
+	}
+}
+
 // Hand seeds stand on the least plate of the hand rules, so that they have
 // room to stand.
 func TestHandSeedsOnAPlate(t *testing.T) {
