@@ -105,7 +105,7 @@ func shortest(b *testing.B, spec objectives.Spec, gain float64, seed uint64, eva
 	confirm := func(ctx context.Context, c optimize.Candidate, _ bool) (optimize.Score, error) {
 		return last.Confirm(ctx, c.Point, false)
 	}
-	settled, err := optimize.Settle(context.Background(), r.Evaluations, confirm, optimize.SettleOptions{Workers: 2, Most: 100})
+	settled, err := optimize.Settle(context.Background(), r.Evaluations, confirm, optimize.SettleOptions{Workers: 2, Most: 200}) // as a brief has it
 	if err != nil {
 		b.Fatal(err)
 	}
