@@ -46,8 +46,8 @@ func (p *Problem) screen(d *models.Design, stock *Stock, curve *helix.Curve) (vi
 		}
 	}
 	g := curve.Geometry()
-	c := curve.Clearances()
 	radius := d.Conductor.Diameter/2 + d.Insulation.Thickness
+	c := curve.ClearancesFrom(leastTurnGap * radius)
 	fail(leastTurnGap*radius-c.Turns, lengthOfMatter, "neighbouring turns are %.4g mm apart, centre to centre; %.4g mm is the least", c.Turns*1e3, leastTurnGap*radius*1e3)
 	fail(radius+leastAirBelow-c.Plane, lengthOfMatter, "the winding passes %.4g mm above the plane, centre line; %.4g mm is the least", c.Plane*1e3, (radius+leastAirBelow)*1e3)
 	fail(radius+leastAirBelow-c.Rim, lengthOfMatter, "the winding passes %.4g mm from the cup's wall, centre line; %.4g mm is the least", c.Rim*1e3, (radius+leastAirBelow)*1e3)

@@ -32,9 +32,17 @@ const (
 // nearest point of the next turn lies a little before a whole turn, since
 // the winding climbs. Laws that wave more than once a turn may hide an
 // approach closer by up to a few parts in a thousand.
-func (c *Curve) Clearances() Clearance {
+func (c *Curve) Clearances() Clearance { return c.ClearancesFrom(math.Inf(1)) }
+
+// ClearancesFrom is [Curve.Clearances] for who only asks whether the turns are
+// at least so far apart, m: where that is plain, Turns is a lower bound.
+func (c *Curve) ClearancesFrom(enough float64) Clearance {
 	out := Clearance{Turns: math.Inf(1), Plane: c.height, Rim: c.rim()}
 	if c.turns < nearest {
+		return out
+	}
+	if c.leastGap >= enough {
+		out.Turns = c.leastGap
 		return out
 	}
 	var room [64]float64
@@ -60,6 +68,19 @@ func (c *Curve) Clearances() Clearance {
 		out.Turns = c.gap(0)
 	}
 	return out
+}
+
+// leastGap is a lower bound of the turns' clearance. Points 1 ∓ δ/2π turns
+// apart, δ ≤ π, differ in height by S(1 − δ/2π) or more and across the axis by
+// 2r sin(δ/2) ≥ 2rδ/π, with the least spacing S and the least radius r; the
+// sum of the squares is least at Sb/√(a² + b²), a = S/2π, b = 2r/π.
+func leastGap(d *models.Design) float64 {
+	s, r := slices.Min(d.Spacing), slices.Min(d.Diameter)/2
+	if d.Feed.Lead.Turns > 0 {
+		s = min(s, d.Feed.Lead.Spacing)
+	}
+	a, b := s/(2*math.Pi), 2*r/math.Pi
+	return s * b / math.Hypot(a, b)
 }
 
 // rim is the least distance between the winding and the wall of a cup.

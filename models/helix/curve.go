@@ -23,6 +23,7 @@ type Curve struct {
 	breaks        []float64
 	panels        []panel
 	wire          float64 // arc length from the foot of the riser to the open end
+	leastGap      float64 // lower bound of the turns' clearance, m
 
 	conductor, coat, pin float64 // m: diameter, thickness, riser's diameter
 	section              float64 // m², of the conductor's metal
@@ -72,7 +73,7 @@ func (c *Curve) Wind(d *models.Design) error {
 	}
 	c.turns, c.height, c.hand = d.Turns, d.Feed.Height, float64(d.Handedness)
 	c.conductor, c.coat, c.pin = d.Conductor.Diameter, max(d.Insulation.Thickness, 0), d.PinDiameter()
-	c.section = d.Conductor.Section()
+	c.section, c.leastGap = d.Conductor.Section(), leastGap(d)
 	c.density, c.strip, c.ground = d.Conductor.Material.Density, d.Feed.Strip, d.Ground
 	c.diameter = c.fitter.fit(c.diameter[:0], d.Diameter, d.Turns)
 	c.spacing = c.fitter.fit(c.spacing[:0], d.Spacing, d.Turns)

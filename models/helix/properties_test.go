@@ -139,6 +139,12 @@ func TestClearanceOfAnyWinding(t *testing.T) {
 	rapid.Check(t, func(t *rapid.T) {
 		d, c := drawn(t, sane)
 		got := c.Clearances().Turns
+		if low := c.ClearancesFrom(0).Turns; low > got+1e-8 {
+			t.Errorf("clearance %g, below its lower bound %g", got, low)
+		}
+		if low := c.ClearancesFrom(got * 0.9).Turns; low < got*0.9 {
+			t.Errorf("clearance %g, told as %g to who needs nine tenths of it", got, low)
+		}
 		const per = 48 // samples a turn
 		n := int(d.Turns * per)
 		points := make([]r3.Vec, n+1)

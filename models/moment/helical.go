@@ -60,7 +60,7 @@ func (w *worker) answer(ctx context.Context, set settings, d *models.Design, q m
 func (w *worker) touching() error {
 	c := &w.design.Conductor
 	thick := c.Diameter + 2*max(w.design.Insulation.Thickness, 0)
-	if gap := w.curve.Clearances().Turns; gap <= thick {
+	if gap := w.curve.ClearancesFrom(2 * thick).Turns; gap <= thick {
 		return fmt.Errorf("spacing: neighbouring turns come within %.4g mm of each other, centre to centre, and the conductor with its coat is %.4g mm thick; a wider spacing or a thinner conductor is due",
 			gap*1e3, thick*1e3)
 	}

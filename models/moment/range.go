@@ -35,7 +35,7 @@ func (w *worker) warnings(hz []float64) []string {
 	if thick > mostRadius*lambda {
 		warn("a conductor radius of %.3g wavelengths is thick for a thin-wire model, which ends at %.3g: 0.14 dB and 20 %% in impedance at 0.02", thick/lambda, mostRadius)
 	}
-	clear := w.curve.Clearances()
+	clear := w.curve.ClearancesFrom(leastClear * a)
 	if clear.Turns < leastClear*a {
 		warn("neighbouring turns run %.3g radii apart, centre to centre: the thin-wire model wants %d", clear.Turns/a, leastClear)
 	}
