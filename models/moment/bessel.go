@@ -19,7 +19,7 @@ func besselModes(x complex128, b []complex128) {
 		return
 	}
 	top := max(len(b), int(size)) + 12 + int(4*math.Cbrt(size))
-	// Times jᵐ: B_{m−1} = −(2jm/x)... written for B = jᵐJ: B_{m−1} = (2m/(jx))B_m + B_{m+1}.
+	// B = jᵐJ_m comes down by B_{m−1} = (2m/jx)B_m + B_{m+1}.
 	next, at, sum := complex(0, 0), complex(1e-280, 0), complex(0, 0)
 	sign := 1.0
 	if imag(x) > 0 {

@@ -3,6 +3,8 @@ package moment
 import (
 	"errors"
 	"math"
+
+	"turnwise/models"
 )
 
 // A coaxial opening in the plane, radii a to b about an upright wire's foot,
@@ -49,7 +51,7 @@ func (f *frill) prepare(m *mesh, a *Antenna, port *Port) error {
 	}
 	ratio := port.Ratio
 	if ratio == 0 {
-		ratio = frillRatio
+		ratio = models.Opening
 	}
 	o := opening{at: at, a: radius, b: ratio * radius, log: math.Log(ratio)}
 	for i := range m.elements {

@@ -18,6 +18,7 @@ type coupling struct {
 	modes int
 
 	spots   []wireSpot
+	widest  float64   // largest radius of a spot
 	value   []float64 // of the element's functions at each spot, weight included
 	slope   []float64 // and of their derivatives
 	rims    []rimNode
@@ -53,43 +54,42 @@ const (
 	mostSpots   = 10
 )
 
-// survey lays the spots and says how many modes the antenna needs at the
+// survey lays the spots and takes as many modes as the antenna needs at the
 // highest wave number k; it is short of them where even the last level is.
-func (c *coupling) survey(m *mesh, mer *meridian, k float64) (modes int, short bool) {
+func (c *coupling) survey(m *mesh, mer *meridian, k float64) (short bool) {
 	c.meridian = mer
 	c.lay(m)
 	edge := mer.place(beyond, 0)
-	decay, widest := math.Inf(1), 0.0
+	decay := math.Inf(1)
+	c.widest = 0
 	for i := range c.spots {
 		s := &c.spots[i]
 		decay = min(decay, s.decay(&edge))
 		if mer.parts[rim] > 0 && s.z < mer.plate.Rim {
 			decay = min(decay, s.decay(&place{rho: edge.rho, z: s.z}))
 		}
-		widest = max(widest, s.rho)
+		c.widest = max(c.widest, s.rho)
 	}
-	need := max(modeLoss/2/decay, 2+k*min(widest, mer.plate.Radius))
-	for _, level := range modeLevels {
-		if float64(level) >= need {
-			return level, false
+	need := max(modeLoss/2/decay, 2+k*min(c.widest, mer.plate.Radius))
+	for _, c.modes = range modeLevels {
+		if float64(c.modes) >= need {
+			return false
 		}
 	}
-	return modeLevels[len(modeLevels)-1], true
+	return true
 }
 
 // prepare does what does not depend on frequency: rules, distances, and the
 // phasors at the first wave number and their step (0: none).
-func (c *coupling) prepare(set *settings, modes int, k, highest, step float64) {
-	c.modes = modes
+func (c *coupling) prepare(set *settings, k, highest, step float64) {
 	c.lines(set)
 	for i := range c.rings {
 		r := &c.rings[i]
-		decay, widest := math.Inf(1), 0.0
+		decay := math.Inf(1)
 		for j := range c.spots {
 			decay = min(decay, c.spots[j].decay(&r.place))
-			widest = max(widest, c.spots[j].rho)
 		}
-		around := max(float64(modes)+azimuthLoss/decay, float64(modes)+6+2*highest*widest)
+		around := float64(c.modes) + max(azimuthLoss/decay, 6+2*highest*c.widest)
 		r.azimuths = midpoints[min(max(4, int(math.Ceil(around/2))), mostHalf)]()
 	}
 	c.samples = c.samples[:0]
@@ -105,7 +105,7 @@ func (c *coupling) prepare(set *settings, modes int, k, highest, step float64) {
 			s.step = phasor(step, s.r)
 		}
 	}
-	c.mean, c.pair = cleared(c.mean, modes+2), cleared(c.pair, modes+2)
+	c.mean, c.pair = cleared(c.mean, c.modes+2), cleared(c.pair, c.modes+2)
 }
 
 func phasor(k float64, r complex128) complex128 {

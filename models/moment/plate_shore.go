@@ -11,7 +11,6 @@ type shore struct {
 	plate Plate
 	k     []float64
 	step  float64
-	modes int
 	short bool      // of modes
 	echo  *echo     // of this frequency
 	nodes []float64 // wave numbers between which echoes are interpolated; none: each is solved
@@ -45,8 +44,8 @@ func (s *shore) prepare(m *mesh, p Plate, set settings, hz []float64) error {
 		return err
 	}
 	mer := s.store.meridian(&s.set, p, highest)
-	s.modes, s.short = s.survey(m, mer, highest)
-	s.coupling.prepare(&s.set, s.modes, s.k[0], highest, s.step)
+	s.short = s.survey(m, mer, highest)
+	s.coupling.prepare(&s.set, s.k[0], highest, s.step)
 	s.nodes = s.nodes[:0]
 	if n := s.wanted(); n < len(s.k) {
 		s.nodes = chebyshev(s.nodes, s.k[0], highest, n)

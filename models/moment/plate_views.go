@@ -81,11 +81,7 @@ func (s *shore) currents(v *vista, p *patch) {
 // plane's within its edge.
 func (s *shore) closedView(m *mesh, current []complex128, k float64) *vista {
 	v := &s.closed
-	widest, tallest := 0.0, 0.0
-	for i := range s.spots {
-		widest, tallest = max(widest, s.spots[i].rho), max(tallest, s.spots[i].z)
-	}
-	v.reset(min(max(s.modes, int(math.Ceil(k*min(widest, s.plate.Radius)))+farModes), azimuthModes-2))
+	v.reset(min(max(s.modes, int(math.Ceil(k*min(s.widest, s.plate.Radius)))+farModes), azimuthModes-2))
 	for i := range s.patches {
 		if s.patches[i].part != beyond {
 			s.currents(v, &s.patches[i])

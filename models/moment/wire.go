@@ -62,7 +62,7 @@ type Port struct {
 	At   float64 // centre of a gap, by the curve's parameter
 	Gap  float64 // its width along the wire, m
 	// Ratio is the outer over the inner radius of a coaxial opening; 0 is
-	// read as 2.3, an air line of 50 Ω.
+	// read as [models.Opening], an air line of 50 Ω.
 	Ratio float64
 }
 
@@ -79,9 +79,6 @@ const (
 	SpreadPort
 	FrillPort
 )
-
-// frillRatio is the outer over the inner radius of the standard opening.
-const frillRatio = 2.3
 
 // check tells what is wrong with an antenna's description.
 func (a *Antenna) check() error {

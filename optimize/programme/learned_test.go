@@ -19,12 +19,18 @@ func dear(plan ...int) programme.Config {
 	return c
 }
 
-func TestContractOfTheDear(t *testing.T) {
-	searchtest.Run(t, func(d optimize.Domain, n int, seed uint64, _ []optimize.Evaluation) optimize.Searcher {
-		c := dear(n)
-		c.Seed = seed
-		return programme.New(d, c)
-	})
+// A programme keeps the contract with the learned searcher in the genetic
+// searcher's place, and at its end.
+func TestContractOfTheLearned(t *testing.T) {
+	for name, config := range map[string]func(...int) programme.Config{"dear": dear, "near": near} {
+		t.Run(name, func(t *testing.T) {
+			searchtest.Run(t, func(d optimize.Domain, n int, seed uint64, _ []optimize.Evaluation) optimize.Searcher {
+				c := config(n)
+				c.Seed = seed
+				return programme.New(d, c)
+			})
+		})
+	}
 }
 
 // The learned searcher has the genetic searcher's share.

@@ -117,14 +117,6 @@ func near(plan ...int) programme.Config {
 	return c
 }
 
-func TestContractWithNear(t *testing.T) {
-	searchtest.Run(t, func(d optimize.Domain, n int, seed uint64, _ []optimize.Evaluation) optimize.Searcher {
-		c := near(n)
-		c.Seed = seed
-		return programme.New(d, c)
-	})
-}
-
 // Near takes the end of the genetic stage, at most half of it, in extensions
 // too, and nothing where the learned searcher has it all.
 func TestNearTakesTheEndOfTheGeneticStage(t *testing.T) {
