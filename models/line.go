@@ -37,11 +37,16 @@ func Reflection(z complex128, reference float64) complex128 {
 // (1 + |Γ|)/(1 − |Γ|), not above [VSWRCap]. An impedance that gives power
 // back counts as the cap.
 func VSWR(z complex128, reference float64) float64 {
-	g := cmplx.Abs(Reflection(z, reference))
-	if !(g < 1) {
+	return VSWROf(cmplx.Abs(Reflection(z, reference)))
+}
+
+// VSWROf is the voltage standing wave ratio of a reflection coefficient's
+// magnitude, not above [VSWRCap].
+func VSWROf(reflection float64) float64 {
+	if !(reflection < 1) {
 		return VSWRCap
 	}
-	return math.Min((1+g)/(1-g), VSWRCap)
+	return math.Min((1+reflection)/(1-reflection), VSWRCap)
 }
 
 // MatchSection is the one line section that turns z into r0 (ohms) exactly:

@@ -109,7 +109,7 @@ func (p *Problem) hides(r Rung) bool { return r.Indicative && !p.TrustIndicative
 
 // Domain is what a searcher may know of the problem.
 func (p *Problem) Domain() optimize.Domain {
-	return optimize.Domain{Space: p.Layout.Space, Aims: len(p.Aims), Limits: len(p.Limits), Finest: len(p.rungs) - 1, Screen: p.Screen}
+	return optimize.Domain{Space: p.Layout.Space, Aims: len(p.Aims), Limits: len(p.Limits), Finest: len(p.rungs) - 1, Screen: p.Screen, Traits: p.traits()}
 }
 
 // Evaluate answers a candidate over the band's samples, with the figures
@@ -157,6 +157,7 @@ func (p *Problem) Confirm(ctx context.Context, pt space.Point, whole bool) (opti
 		want = everyFigure
 	}
 	s, err := p.score(ctx, pt, p.finest(), FineSweep(p.Band), want)
+	s.Traits = nil // of other samples than a search's
 	return s, errors.Join(err, p.unanswered(&s))
 }
 
@@ -214,25 +215,34 @@ func (s figureSet) outputs() models.Outputs {
 // the asked share of them reaches.
 func (p *Problem) score(ctx context.Context, pt space.Point, r Rung, hz []float64, want figureSet) (optimize.Score, error) {
 	q := inquiry{rung: r, memory: p.Memory, flights: p.flights}
+	kinds := p.kinds()
 	var rows []Row
+	var traits []float64
 	for _, d := range p.spread(p.Layout.Design(pt)) {
-		one, err := p.figures(ctx, &q, d, hz, want)
+		row, band, err := p.figures(ctx, &q, d, hz, want)
 		if err != nil {
 			return optimize.Score{Answers: q.answers, Took: q.took}, err
 		}
-		rows = append(rows, one)
+		rows = append(rows, row)
+		traits = append(traits, traitsIn(kinds, &d, &band)...)
 	}
-	percent := p.Margins.Percentile
-	if percent == 0 {
-		percent = 100 // the worst
-	}
-	row := atPercentile(rows, percent)
+	row := p.standing(rows)
 	if p.hides(r) {
 		row.hideMatch()
 	}
 	s := p.ScoreOf(row, q.answers)
-	s.Took = q.took
+	s.Traits, s.Took = traits, q.took
 	return s, nil
+}
+
+// standing is what counts of a design whose windings have these figures: the
+// worst of each, or what the asked share reaches.
+func (p *Problem) standing(rows []Row) Row {
+	percent := p.Margins.Percentile
+	if percent == 0 {
+		percent = 100 // the worst
+	}
+	return atPercentile(rows, percent)
 }
 
 // ScoreOf holds a row of figures against the aims and limits.
@@ -247,43 +257,48 @@ func (p *Problem) ScoreOf(row Row, answers []optimize.Answer) optimize.Score {
 	return s
 }
 
-// figures reads one design's figures.
-func (p *Problem) figures(ctx context.Context, q *inquiry, d models.Design, hz []float64, want figureSet) (Row, error) {
+// question asks for what decides a set of figures over a sweep.
+func (p *Problem) question(hz []float64, want figureSet) models.Question {
+	return models.Question{Hz: hz, Outputs: want.outputs(), Cone: p.Cone}
+}
+
+// figures reads one design's figures, and gives its answer over hz.
+func (p *Problem) figures(ctx context.Context, q *inquiry, d models.Design, hz []float64, want figureSet) (Row, models.Response, error) {
 	row := emptyRow()
 	curve, err := helix.Wind(&d)
 	if err != nil {
-		return row, err
+		return row, models.Response{}, err
 	}
 	readGeometry(&row, curve.Geometry())
-	r, err := q.ask(ctx, &d, models.Question{Hz: hz, Outputs: want.outputs(), Cone: p.Cone})
+	r, err := q.ask(ctx, &d, p.question(hz, want))
 	if err != nil {
-		return row, err
+		return row, r, err
 	}
 	readBand(&row, &d, &r)
 	mid := p.Band.Mid()
 	if want.has(GainBandwidth) {
 		wide, err := q.ask(ctx, &d, models.Question{Hz: about(mid, gainReach), Outputs: models.Axis})
 		if err != nil {
-			return row, fmt.Errorf("gain bandwidth: %w", err)
+			return row, r, fmt.Errorf("gain bandwidth: %w", err)
 		}
 		row[GainBandwidth] = gainBandwidth(&d, &wide)
 	}
 	if want.has(VSWRBandwidth) {
 		wide, err := q.ask(ctx, &d, models.Question{Hz: about(mid, vswrReach), Outputs: models.Axis})
 		if err != nil {
-			return row, fmt.Errorf("VSWR bandwidth: %w", err)
+			return row, r, fmt.Errorf("VSWR bandwidth: %w", err)
 		}
 		row[VSWRBandwidth] = vswrBandwidth(&d, &wide, p.vswrLimit())
 	}
 	if want.has(Headroom) {
 		if row[Headroom], err = p.headroom(ctx, q, &d, &row); err != nil {
-			return row, fmt.Errorf("headroom: %w", err)
+			return row, r, fmt.Errorf("headroom: %w", err)
 		}
 	}
 	if !row.finite() {
-		return row, errors.New("a figure came out infinite")
+		return row, r, errors.New("a figure came out infinite")
 	}
-	return row, nil
+	return row, r, nil
 }
 
 // vswrLimit is the brief's limit on VSWR, 2 without one.

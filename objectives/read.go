@@ -20,12 +20,9 @@ func emptyRow() Row {
 	return r
 }
 
-// Caps keep every figure a plain number: an axial ratio, a VSWR, and the
-// level below which a gain is no gain at all.
-const (
-	vswrCap   = 1000
-	gainFloor = -100
-)
+// gainFloor, dB, is the level below which a gain is no gain at all: it keeps
+// every figure a plain number.
+const gainFloor = -100
 
 // Decibels is 10 lg of a power ratio, not below −100.
 func Decibels(ratio float64) float64 {
@@ -35,36 +32,46 @@ func Decibels(ratio float64) float64 {
 	return 10 * math.Log10(ratio)
 }
 
+// worst takes a value of a figure where it is worse than what stands.
+func (r *Row) worst(f Figure, x float64) {
+	if math.IsNaN(r[f]) || (Figures[f].More && x < r[f]) || (!Figures[f].More && x > r[f]) {
+		r[f] = x
+	}
+}
+
 // readBand fills in the figures that a sweep over the band decides: of each,
 // the worst sample.
 func readBand(row *Row, d *models.Design, r *models.Response) {
-	wanted := d.Wanted()
-	worst := func(f Figure, x float64) {
-		if math.IsNaN(row[f]) || (Figures[f].More && x < row[f]) || (!Figures[f].More && x > row[f]) {
-			row[f] = x
-		}
-	}
 	for i := range r.Samples {
-		s := &r.Samples[i]
-		vswr := models.VSWR(s.Input, d.Feed.Impedance)
-		gain := s.Gain.Of(wanted)
-		worst(Gain, Decibels(gain))
-		worst(RealisedGain, Decibels(gain*Transmission(vswr)))
-		worst(AxialRatio, sensedAxialRatio(s, wanted))
-		worst(VSWR, math.Min(vswr, vswrCap))
-		worst(Efficiency, s.Efficiency)
-		if r.Answered&models.Cone != 0 {
-			worst(AxialRatioCone, s.ConeAxialRatio.Of(wanted))
-			worst(EdgeGain, Decibels(s.EdgeGain.Of(wanted)))
-		}
-		if r.Answered&models.Cuts != 0 {
-			worst(Beamwidth, s.Beamwidth*180/math.Pi)
-			worst(Sidelobe, math.Max(s.Sidelobe, -60))
-			if s.RearGain > 0 { // an infinite plane and the hand formulas have no rear
-				worst(FrontToBack, Decibels(gain)-Decibels(s.RearGain))
+		for f, x := range readSample(d, &r.Samples[i], r.Answered) {
+			if !math.IsNaN(x) {
+				row.worst(Figure(f), x)
 			}
 		}
 	}
+}
+
+// readSample gives the figures of one sample.
+func readSample(d *models.Design, s *models.Sample, answered models.Outputs) Row {
+	row, wanted := emptyRow(), d.Wanted()
+	vswr, gain := models.VSWR(s.Input, d.Feed.Impedance), s.Gain.Of(wanted)
+	row[Gain] = Decibels(gain)
+	row[RealisedGain] = Decibels(gain * Transmission(vswr))
+	row[AxialRatio] = sensedAxialRatio(s, wanted)
+	row[VSWR] = vswr
+	row[Efficiency] = s.Efficiency
+	if answered&models.Cone != 0 {
+		row[AxialRatioCone] = s.ConeAxialRatio.Of(wanted)
+		row[EdgeGain] = Decibels(s.EdgeGain.Of(wanted))
+	}
+	if answered&models.Cuts != 0 {
+		row[Beamwidth] = s.Beamwidth * 180 / math.Pi
+		row[Sidelobe] = math.Max(s.Sidelobe, -60)
+		if s.RearGain > 0 { // an infinite plane and the hand formulas have no rear
+			row[FrontToBack] = Decibels(gain) - Decibels(s.RearGain)
+		}
+	}
+	return row
 }
 
 // Transmission is 1 − |Γ|² of a VSWR.

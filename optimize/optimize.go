@@ -27,6 +27,9 @@ type Score struct {
 	Figures []float64
 	Aims    []float64
 	Limits  []float64
+	// Traits are what aims and limits were read from, as the domain's
+	// [Traits] say; nil where it has none.
+	Traits []float64
 	// Answers are what simulators said on the way, for the record only.
 	Answers []Answer
 	// Took is how long the evaluation took where its simulators know better
@@ -104,6 +107,20 @@ type Domain struct {
 	// what does not pass is not worth an evaluation. Pure and safe for
 	// concurrent use; nil: everything passes.
 	Screen func(space.Point) (violation float64, reason string)
+	// Traits, where set, are more learnable than aims and limits are.
+	Traits *Traits
+}
+
+// Traits say how aims and limits come about: most are the worst case of
+// something that is smooth by itself, such as one frequency's gain. A learned
+// searcher follows the smooth parts and reads the rest from them.
+type Traits struct {
+	// Kinds is how many there are. A score holds whole rows, one trait of
+	// every kind in each.
+	Kinds int
+	// Read gives the aims and limits of a point that has such traits. Pure and
+	// safe for concurrent use.
+	Read func(p space.Point, traits []float64) (aims, limits []float64)
 }
 
 // Passes reports whether the point passes the screen.

@@ -89,11 +89,12 @@ func (ses *session) close() {
 // pays: below it, its own time counts.
 const dearFrom = 300 * time.Millisecond
 
-// nearMost is how many evaluations of a stage the learned searcher has around
-// the front's members of full-wave searches: it saves simulations, and takes
-// some 30 ms for each, also where a resumed run repeats itself. Other models
-// are cheaper than that, or say by their time that they are dear.
-const nearMost = 800
+// learnedMost is how many evaluations of a stage the learned searcher has in
+// full-wave searches. It takes time of its own for each, also where a resumed
+// run repeats itself; what it has found by then the genetic searcher takes
+// many times as long to find. Other models are cheaper than that, or say by
+// their time that they are dear.
+const learnedMost = 1900
 
 // searcher is the programme of the run.
 func (ses *session) searcher() *programme.Search {
@@ -102,7 +103,7 @@ func (ses *session) searcher() *programme.Search {
 		Seed: ses.brief.Seed, Seeds: ses.problem.HandSeeds(20), DearFrom: dearFrom,
 	}
 	if ses.problem.Finest().Model == configs.FullWave {
-		c.Near = nearMost
+		c.Learned = learnedMost
 	}
 	for i, d := range ses.brief.Starts {
 		pt, notes := ses.problem.Layout.Point(d)
@@ -120,6 +121,9 @@ func (ses *session) run(ctx context.Context) error {
 		return ses.already()
 	}
 	ses.problem.Memory = ses
+	if err := ses.problem.Recollect(ses.past); err != nil {
+		return failed(fmt.Errorf("%s: %w", ses.folder.Dir, err))
+	}
 	for _, u := range ses.problem.Unapplied {
 		fmt.Fprintf(ses.s.err, "%s is set aside: the model only indicates it; trust_indicative: true in the brief applies it\n", u)
 	}

@@ -1,7 +1,7 @@
 // Package programme runs the stages of a search as one searcher: a first
-// sample, the genetic searcher on what it found, the learned searcher around
-// the front where that pays, then simplexes on the front.
-// Where evaluations are dear the learned searcher takes their place.
+// sample, the learned searcher where that pays, the genetic searcher on what
+// they found, then simplexes on the front.
+// Where evaluations are dear the learned searcher takes the genetic one's place.
 // Shares are of the evaluations planned at the start and never change; what a
 // stage leaves goes to the next, and what the last leaves to another round of
 // the genetic searcher and the simplexes.
@@ -47,11 +47,11 @@ type Config struct {
 	// record decides alike.
 	Dear     bool
 	DearFrom time.Duration
-	// Near is how many evaluations at the end of a genetic stage go to the
-	// learned searcher around the members of the front, half of the stage at
-	// the most. It finds there in fewer evaluations what the genetic searcher
-	// would, and takes time of its own for each. Dear searches do without.
-	Near int
+	// Learned is how many evaluations at the start of a genetic stage go to the
+	// learned searcher, where the domain has traits for it: it finds in fewer
+	// evaluations what the genetic searcher would, and takes time of its own
+	// for each.
+	Learned int
 	// Population of the genetic searcher; 0: fitted to the plan.
 	Population int
 	Seed       uint64
@@ -71,9 +71,8 @@ func (c *Config) main() string {
 // segment is one stage with its part of the plan.
 type segment struct {
 	stage string
-	near  bool // of a learned stage: around the members of the front
-	end   int  // evaluations of the whole programme at which it ends
-	id    int  // distinguishes the random streams of stages of a kind
+	end   int // evaluations of the whole programme at which it ends
+	id    int // distinguishes the random streams of stages of a kind
 }
 
 // Search is the programme as a searcher. Close it when it is no longer asked.
@@ -110,10 +109,13 @@ func New(d optimize.Domain, c Config) *Search {
 			s.segments = append(s.segments, segment{stage: Sample, end: begin + min(sample, n), id: k})
 		}
 		walks := int(math.Round(c.Simplex * float64(n)))
-		near := max(min(c.Near, (n-walks-min(sample, n))/2), 0)
+		learned := 0
+		if d.Traits != nil {
+			learned = max(min(c.Learned, n-walks-min(sample, n)), 0)
+		}
 		s.segments = append(s.segments,
-			segment{stage: Genetic, end: end - walks - near, id: k},
-			segment{stage: Learned, near: true, end: end - walks, id: k},
+			segment{stage: Learned, end: begin + min(sample, n) + learned, id: k},
+			segment{stage: Genetic, end: end - walks, id: k},
 			segment{stage: Simplex, end: end, id: k})
 	}
 	if c.Dear {
@@ -144,15 +146,12 @@ func (s *Search) decide() {
 	}
 }
 
-// learn gives what the genetic searcher would have to the learned one, which
-// then needs none of its own to follow.
+// learn gives what the genetic searcher would have to the learned one before
+// it.
 func (s *Search) learn() {
 	for i := range s.segments {
-		if s.segments[i].stage == Genetic {
-			s.segments[i].stage = Learned
-			if i+1 < len(s.segments) && s.segments[i+1].near {
-				s.segments[i].end = s.segments[i+1].end
-			}
+		if s.segments[i].stage == Learned && i+1 < len(s.segments) && s.segments[i+1].stage == Genetic {
+			s.segments[i].end = s.segments[i+1].end
 		}
 	}
 }
@@ -205,7 +204,7 @@ func (s *Search) open() bool {
 			}
 		case Learned:
 			if s.c.Genetic > 0 {
-				s.stage = surrogate.New(s.domain, surrogate.Config{Evaluations: n, Seed: s.c.Seed + uint64(g.id), Near: g.near}, s.told)
+				s.stage = surrogate.New(s.domain, surrogate.Config{Evaluations: n, Seed: s.c.Seed + uint64(g.id)}, s.told)
 			}
 		case Simplex:
 			if s.c.Simplex > 0 {

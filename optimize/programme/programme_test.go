@@ -109,38 +109,39 @@ func TestLeftoversAreUsed(t *testing.T) {
 	}
 }
 
-// near is a programme whose genetic stages end with the learned searcher
-// around the front.
-func near(plan ...int) programme.Config {
+// taught is a programme whose genetic stages begin with the learned searcher.
+func taught(plan ...int) programme.Config {
 	c := standard(plan...)
-	c.Near = 40
+	c.Learned = 40
 	return c
 }
 
-// Near takes the end of the genetic stage, at most half of it, in extensions
-// too, and nothing where the learned searcher has it all.
-func TestNearTakesTheEndOfTheGeneticStage(t *testing.T) {
-	p := searchtest.ProblemByName("tnk")
+// The learned searcher takes the beginning of the genetic stage, of
+// extensions too, and nothing where there are no traits to learn.
+func TestLearnedTakesTheBeginningOfTheGeneticStage(t *testing.T) {
+	with := searchtest.ProblemByName("tnk").WithTraits()
 	for _, c := range []struct {
+		problem                             *searchtest.Problem
 		config                              programme.Config
 		sample, genetic, learned, simplexes int
 	}{
-		{near(200), 20, 100, 40, 40},
-		{near(50), 5, 18, 17, 10},
-		{near(200, 100), 20, 100 + 40, 40 + 40, 40 + 20},
+		{with, taught(200), 20, 100, 40, 40},
+		{with, taught(50), 5, 0, 35, 10},
+		{with, taught(100, 50), 10, 30 + 0, 40 + 40, 20 + 10},
+		{searchtest.ProblemByName("tnk"), taught(200), 20, 140, 0, 40},
 	} {
-		s := programme.New(p.Domain, c.config)
-		got := stages(searchtest.Drive(p, s))
+		s := programme.New(c.problem.Domain, c.config)
+		got := stages(searchtest.Drive(c.problem, s))
 		s.Close()
 		if got[programme.Sample] != c.sample || got[programme.Genetic] != c.genetic || got[programme.Learned] != c.learned || got[programme.Simplex] != c.simplexes {
 			t.Errorf("plan %v: %v", c.config.Plan, got)
 		}
 	}
-	c := near(200)
+	c := taught(200)
 	c.Dear = true
-	s := programme.New(p.Domain, c)
+	s := programme.New(with.Domain, c)
 	defer s.Close()
-	if got := stages(searchtest.Drive(p, s)); got[programme.Genetic] != 0 || got[programme.Learned] != 140 {
+	if got := stages(searchtest.Drive(with, s)); got[programme.Genetic] != 0 || got[programme.Learned] != 140 {
 		t.Errorf("dear: %v", got)
 	}
 }

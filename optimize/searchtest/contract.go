@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"io"
 	"math"
+	"slices"
 	"testing"
 
 	"turnwise/optimize"
@@ -42,7 +43,21 @@ func domains() map[string]optimize.Domain {
 	screened := optimize.Domain{Space: mixed, Aims: 2, Limits: 1}
 	screened.Screen = func(p space.Point) (float64, string) { return math.Max(0, p[0]+p[1]-1.2), "x + y is above 1.2" }
 	out["screened"] = screened
+	traits := out["2 aims"]
+	traits.Traits = themselves(2, 1)
+	out[withTraits] = traits
 	return out
+}
+
+// withTraits is the domain whose searchers may learn traits.
+const withTraits = "traits"
+
+// themselves are aims and limits as their own traits.
+func themselves(aims, limits int) *optimize.Traits {
+	return &optimize.Traits{Kinds: aims + limits, Read: func(_ space.Point, traits []float64) ([]float64, []float64) {
+		own := slices.Clone(traits)
+		return own[:aims:aims], own[aims:]
+	}}
 }
 
 // answerKind is how a test answers.
@@ -85,6 +100,9 @@ func answerTo(d optimize.Domain, c optimize.Candidate, kind answerKind) optimize
 		for m := range e.Aims {
 			e.Aims[m] = 1
 		}
+	}
+	if d.Traits != nil && e.Status == optimize.OK {
+		e.Traits = slices.Concat(e.Aims, e.Limits)
 	}
 	return e
 }
@@ -135,7 +153,12 @@ func drive(t *testing.T, d optimize.Domain, s optimize.Searcher, kind answerKind
 }
 
 func repeats(t *testing.T, make Factory) {
-	d := domains()["2 aims"]
+	for _, name := range []string{"2 aims", withTraits} {
+		repeatsOn(t, make, domains()[name])
+	}
+}
+
+func repeatsOn(t *testing.T, make Factory, d optimize.Domain) {
 	keys := func(seed uint64) string {
 		text := ""
 		for _, c := range drive(t, d, make(d, 200, seed, known(d)), plainly, 200) {
@@ -169,9 +192,11 @@ func asks(t *testing.T, make Factory, d optimize.Domain) {
 }
 
 func survives(t *testing.T, make Factory, kind answerKind) {
-	d := domains()["2 aims"]
-	drive(t, d, make(d, 150, 7, nil), kind, 150)
-	drive(t, d, make(d, 150, 7, known(d)), kind, 150)
+	for _, name := range []string{"2 aims", withTraits} {
+		d := domains()[name]
+		drive(t, d, make(d, 150, 7, nil), kind, 150)
+		drive(t, d, make(d, 150, 7, known(d)), kind, 150)
+	}
 }
 
 func rejected(t *testing.T, make Factory) {

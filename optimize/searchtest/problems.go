@@ -36,7 +36,17 @@ func (p *Problem) Evaluate(_ context.Context, c optimize.Candidate) (optimize.Sc
 	if p.limits != nil {
 		s.Limits = p.limits(c.Point)
 	}
+	if p.Domain.Traits != nil {
+		s.Traits = slices.Concat(s.Aims, s.Limits)
+	}
 	return s, nil
+}
+
+// WithTraits is the problem whose aims and limits are traits as well.
+func (p *Problem) WithTraits() *Problem {
+	own := *p
+	own.Domain.Traits = themselves(p.Domain.Aims, p.Domain.Limits)
+	return &own
 }
 
 // Fraction is the part of the true front's hypervolume that values cover.

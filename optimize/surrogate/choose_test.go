@@ -110,7 +110,7 @@ func TestCentres(t *testing.T) {
 		known = append(known, e)
 	}
 	s := New(plane(), Config{Evaluations: 10}, known)
-	centres := s.centres()
+	centres := s.centres(mostBest, mostCentres, s.answered)
 	if len(centres) != mostCentres {
 		t.Fatalf("%d centres", len(centres))
 	}

@@ -32,21 +32,23 @@ func (s *Search) infill(n int) []space.Point {
 	if n == 0 {
 		return nil
 	}
-	chosen, ok := s.promises(s.centres(), n, "inner")
+	centres := s.centres(mostBest, mostCentres, s.answered)
+	surfaces, ok := s.learn(centres)
 	if !ok {
 		return nil
 	}
-	return s.note(chosen, n)
-}
-
-// promises are at most n points that surfaces through some centres choose;
-// part is the random stream's name. False: no surface can be laid.
-func (s *Search) promises(centres []int, n int, part string) ([]promise, bool) {
-	surfaces, ok := s.learn(centres)
-	if !ok {
-		return nil, false
+	var start []optimize.Evaluation
+	if s.caution >= 0 || s.round%afresh != 0 {
+		start = s.those(centres)
 	}
-	return s.choose(s.foretold(surfaces, centres, part), n, surfaces.typical), true
+	room := newColumns(surfaces)
+	foretell := func(_ space.Point, u []float64) (aims, limits []float64) {
+		out := make([]float64, len(surfaces.outputs))
+		surfaces.foretell(u, float64(s.caution), room, out)
+		return out[:s.domain.Aims:s.domain.Aims], out[s.domain.Aims:]
+	}
+	all := s.foretold(foretell, start, min(max(innerEach*s.c.Evaluations, innerLeast), innerMost), "inner")
+	return s.note(s.choose(all, n, surfaces.typical), n)
 }
 
 // note keeps what the chosen points promise, and lets go of caution where
@@ -63,11 +65,14 @@ func (s *Search) note(chosen []promise, n int) []space.Point {
 	return points
 }
 
-// centres picks what the surfaces are laid through, best first: most of
-// them by rank, and an even sample of the rest.
-func (s *Search) centres() []int {
+// centres picks what is learned from among the answers that are of use, best
+// first: most of them by rank, and an even sample of the rest.
+func (s *Search) centres(best, most int, use func(int) bool) []int {
 	values := s.values()
-	order := front.Thinned(values, mostBest)
+	for i := range values {
+		values[i].Unknown = !use(i)
+	}
+	order := front.Thinned(values, best)
 	among := map[int]bool{}
 	for _, i := range order {
 		among[i] = true
@@ -79,15 +84,24 @@ func (s *Search) centres() []int {
 			}
 		}
 	}
-	if len(order) <= mostCentres {
+	if len(order) <= most {
 		return order
 	}
-	rest := order[mostBest:]
-	out := slices.Clone(order[:mostBest])
-	for k := range mostCentres - mostBest {
-		out = append(out, rest[k*len(rest)/(mostCentres-mostBest)])
+	rest := order[best:]
+	out := slices.Clone(order[:best])
+	for k := range most - best {
+		out = append(out, rest[k*len(rest)/(most-best)])
 	}
 	return out
+}
+
+// those are the evaluations of some centres.
+func (s *Search) those(centres []int) []optimize.Evaluation {
+	all := make([]optimize.Evaluation, len(centres))
+	for k, i := range centres {
+		all[k] = s.known[i]
+	}
+	return all
 }
 
 // leastTelling is the least number of centres that choose the kernels.
@@ -112,31 +126,19 @@ func (s *Search) learn(centres []int) (*surfaces, bool) {
 // find what lies behind infeasible ground.
 const afresh = 3
 
-// foretold runs the genetic searcher on the surfaces and gives all that it
-// asked.
-func (s *Search) foretold(f *surfaces, centres []int, part string) []promise {
-	var start []optimize.Evaluation
-	if s.caution >= 0 || s.round%afresh != 0 {
-		for _, i := range centres {
-			start = append(start, s.known[i])
-		}
-	}
-	g := genetic.New(s.domain, genetic.Config{
-		Population:  innerPopulation,
-		Evaluations: min(max(innerEach*s.c.Evaluations, innerLeast), innerMost),
-		Seed:        s.stream(part),
-	}, start)
-	room := newColumns(f)
+// foretold runs the genetic searcher, from a start, on what is foretold of
+// points and their features, and gives all that it asked; part is the random
+// stream's name.
+func (s *Search) foretold(foretell func(p space.Point, u []float64) (aims, limits []float64), start []optimize.Evaluation, evaluations int, part string) []promise {
+	g := genetic.New(s.domain, genetic.Config{Population: innerPopulation, Evaluations: evaluations, Seed: s.stream(part)}, start)
 	var all []promise
 	for batch := g.Ask(); len(batch) > 0; batch = g.Ask() {
 		told := make([]optimize.Evaluation, len(batch))
 		for i, c := range batch {
-			u := s.features.of(c.Point)
-			out := make([]float64, len(f.outputs))
-			f.foretell(u, float64(s.caution), room, out)
 			e := &told[i]
+			u := s.features.of(c.Point)
 			e.Candidate, e.Status = c, optimize.OK
-			e.Aims, e.Limits = out[:s.domain.Aims:s.domain.Aims], out[s.domain.Aims:]
+			e.Aims, e.Limits = foretell(c.Point, u)
 			all = append(all, promise{c.Point, u, e.Value()})
 		}
 		g.Tell(told)

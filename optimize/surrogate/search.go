@@ -1,8 +1,12 @@
-// Package surrogate is the learned searcher for dear simulations: it lays
-// surfaces through what was answered, searches them with the genetic searcher
-// at no cost, and asks the points that promise the most hypervolume. A part
-// of each batch is bred without the surfaces; the parts follow what they
-// gain, so that surfaces that mislead are soon left alone.
+// Package surrogate is the learned searcher: it lays surfaces through what was
+// answered, searches them with the genetic searcher at no cost, and asks the
+// points that promise the most hypervolume. A part of each batch is bred
+// without the surfaces; the parts follow what they gain, so that surfaces that
+// mislead are soon left alone.
+//
+// Where a domain has traits, Gaussian processes follow those and several
+// views of their errors choose; else radial basis functions follow aims and
+// limits themselves, with caution.
 package surrogate
 
 import (
@@ -16,10 +20,6 @@ type Config struct {
 	Evaluations int // that may be asked
 	Batch       int // 0: 5 to 16, by the evaluations
 	Seed        uint64
-	// Near lays surfaces around members of the front, many small ones, where
-	// else one goes through all that is known: for a search that has a front
-	// already and many evaluations behind it.
-	Near bool
 }
 
 // Bounds of a batch, and the rounds that a search should have at least.
@@ -49,6 +49,8 @@ type Search struct {
 	parts    parts
 	caution  caution
 	promised []front.Value // by the surfaces, of the last batch
+	scales   []*scales     // of every kind of trait, learned when fitted were known
+	fitted   int
 	why      string
 }
 
@@ -121,13 +123,13 @@ func (s *Search) points(n int) []space.Point {
 			s.asked = append(s.asked, from)
 		}
 	}
-	if short := s.first() - s.answered(); short > 0 {
+	if short := s.first() - s.count(); short > 0 {
 		add(s.draw(min(n, short)), drawn)
 		return points
 	}
 	infill := s.infill
-	if s.c.Near {
-		infill = s.infillNear
+	if s.domain.Traits != nil {
+		infill = s.infillViews
 	}
 	add(infill(s.parts.take(n)), learned)
 	add(s.breed(n-len(points), points), bred)
@@ -140,11 +142,14 @@ func (s *Search) first() int {
 	return min(2*(s.features.size+1), max(s.c.Evaluations/3, leastBatch))
 }
 
-// answered counts the evaluations that surfaces can be laid through.
-func (s *Search) answered() int {
+// answered reports whether an evaluation can be learned from.
+func (s *Search) answered(i int) bool { return s.known[i].Status == optimize.OK }
+
+// count is how many evaluations were answered.
+func (s *Search) count() int {
 	n := 0
 	for i := range s.known {
-		if s.known[i].Status == optimize.OK {
+		if s.answered(i) {
 			n++
 		}
 	}

@@ -8,7 +8,10 @@ import (
 // warp is a monotone scale on which a figure is learned: the middle half of
 // the values spans a unit, and far above it grows like a logarithm, so that
 // the worst of the known do not bend the surface where it matters.
-type warp struct{ middle, width float64 }
+type warp struct {
+	middle, width float64
+	both          bool // far below as well, where it is not known which end is bad
+}
 
 // warpFrom is where the logarithm begins, and warpTo the most that it is
 // undone for: what lies beyond is bad enough.
@@ -37,12 +40,18 @@ func (w warp) to(x float64) float64 {
 	if z > warpFrom {
 		return warpFrom + math.Log1p(z-warpFrom)
 	}
+	if w.both && z < -warpFrom {
+		return -warpFrom - math.Log1p(-warpFrom-z)
+	}
 	return z
 }
 
 func (w warp) from(z float64) float64 {
 	if z > warpFrom {
 		z = warpFrom + math.Expm1(min(z-warpFrom, warpTo))
+	}
+	if w.both && z < -warpFrom {
+		z = -warpFrom - math.Expm1(min(-warpFrom-z, warpTo))
 	}
 	return w.middle + z*w.width
 }

@@ -1,0 +1,135 @@
+package surrogate
+
+import (
+	"math"
+
+	"gonum.org/v1/gonum/mat"
+)
+
+// process is a Gaussian process through every trait of one kind: of each
+// frequency's, say. They share scales and so all but their values. Method:
+// Rasmussen, Williams, Gaussian Processes for Machine Learning, 2006, ch. 2,
+// with Matérn's kernel of order 5/2 (Stein, Interpolation of Spatial Data,
+// 1999).
+type process struct {
+	*scales
+	centres []float64   // by their scales, one after the other
+	weights [][]float64 // of the centres, a row a trait
+	warps   []warp
+	error   float64 // left-out errors by what the nearest centre lets expect
+}
+
+// matern is the kernel at a squared distance in scales.
+func matern(square float64) float64 {
+	r := math.Sqrt(5 * square)
+	return (1 + r + r*r/3) * math.Exp(-r)
+}
+
+// standardised are the traits of a kind as a process sees them: values[t][i]
+// of trait t at centre i, and the scales that turn them back.
+func standardised(traits [][]float64) (values [][]float64, warps []warp) {
+	for _, t := range traits {
+		w := newWarp(t)
+		w.both = true
+		z := make([]float64, len(t))
+		for i, x := range t {
+			z[i] = w.to(x)
+		}
+		values, warps = append(values, z), append(warps, w)
+	}
+	return values, warps
+}
+
+// stubborn are the nuggets to try, times the one that was learned, where
+// centres all but coincide.
+var stubborn = []float64{1, 1e2, 1e4}
+
+// newProcess lays a process through values at the features of its centres,
+// best first. False: nothing can be laid through them.
+func newProcess(s *scales, features [][]float64, values [][]float64, warps []warp, telling int) (*process, bool) {
+	n, d := len(features), len(s.inverse)
+	p := &process{scales: s, warps: warps, centres: make([]float64, n*d)}
+	for i, u := range features {
+		for k, x := range u {
+			p.centres[i*d+k] = x * s.inverse[k]
+		}
+	}
+	kernel := mat.NewSymDense(n, nil)
+	most := make([]float64, n) // kernel to another centre
+	for i := range n {
+		for j := range i {
+			k := matern(square(p.centres[i*d:(i+1)*d], p.centres[j*d:(j+1)*d]))
+			kernel.SetSym(i, j, k)
+			most[i], most[j] = max(most[i], k), max(most[j], k)
+		}
+	}
+	var chol mat.Cholesky
+	var inverse mat.SymDense
+	for _, times := range stubborn {
+		for i := range n {
+			kernel.SetSym(i, i, 1+s.nugget*times)
+		}
+		if chol.Factorize(kernel) && chol.InverseTo(&inverse) == nil {
+			p.weigh(values, &inverse, most, telling)
+			return p, true
+		}
+	}
+	return nil, false
+}
+
+// weigh sets the weights, and the error of what is left out: Rippa, Adv.
+// Comput. Math. 11, 193, 1999, over the first telling centres.
+func (p *process) weigh(values [][]float64, inverse *mat.SymDense, most []float64, telling int) {
+	sum := 0.0
+	for _, z := range values {
+		var w mat.VecDense
+		w.MulVec(inverse, mat.NewVecDense(len(z), z))
+		p.weights = append(p.weights, w.RawVector().Data)
+		for i := range telling {
+			e := w.AtVec(i) / inverse.At(i, i)
+			sum += e * e / (1 - most[i]*most[i] + p.nugget)
+		}
+	}
+	p.error = math.Sqrt(sum / float64(telling*len(values)))
+}
+
+// square is the squared distance of two points.
+func square(a, b []float64) float64 {
+	sum := 0.0
+	for k, x := range a {
+		sum += (x - b[k]) * (x - b[k])
+	}
+	return sum
+}
+
+// foretell writes the traits at features u to every step-th place of out,
+// each off by so many errors as view says: none at a centre, and more the
+// farther the nearest is. room holds a kernel for each centre and the
+// features in scales.
+func (p *process) foretell(u []float64, view float64, room *processRoom, out []float64, step int) {
+	d := len(u)
+	for k, x := range u {
+		room.scaled[k] = x * p.inverse[k]
+	}
+	most := 0.0
+	for i := range room.kernels {
+		k := matern(square(room.scaled, p.centres[i*d:(i+1)*d]))
+		room.kernels[i] = k
+		most = max(most, k)
+	}
+	off := view * p.error * math.Sqrt(1-most*most)
+	for t, weights := range p.weights {
+		z := off
+		for i, k := range room.kernels {
+			z += weights[i] * k
+		}
+		out[t*step] = p.warps[t].from(z)
+	}
+}
+
+// processRoom is what foretelling needs.
+type processRoom struct{ kernels, scaled []float64 }
+
+func newProcessRoom(centres, features int) *processRoom {
+	return &processRoom{kernels: make([]float64, centres), scaled: make([]float64, features)}
+}

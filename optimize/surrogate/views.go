@@ -1,0 +1,67 @@
+package surrogate
+
+import (
+	"strconv"
+	"sync"
+
+	"turnwise/optimize"
+	"turnwise/optimize/space"
+)
+
+// views is how many searches of the processes choose a batch together. The
+// first believes what is most likely; each of the others takes every kind of
+// trait to be off by errors of its own, drawn anew, wherever answers are far.
+// So what may be good is tried as often as that is likely: Thompson,
+// Biometrika 25, 285, 1933, with one draw a kind for all points.
+const views = 4
+
+// viewed is how many evaluations of the processes each of them has.
+const viewed = 1000
+
+// infillViews chooses n points by processes through what is known and notes
+// what the first view promises.
+func (s *Search) infillViews(n int) []space.Point {
+	s.promised = nil
+	if n == 0 {
+		return nil
+	}
+	centres := s.centres(mostBestProcessed, mostProcessed, s.learnable)
+	p, ok := s.process(centres)
+	if !ok {
+		return nil
+	}
+	var start []optimize.Evaluation
+	if s.round%afresh != 0 {
+		start = s.those(centres)
+	}
+	rng := optimize.Stream(s.c.Seed, "surrogate views", s.round)
+	var found [views][]promise
+	var all sync.WaitGroup
+	for k := range found {
+		view := make([]float64, len(p.of))
+		if k > 0 {
+			for i := range view {
+				view[i] = rng.NormFloat64()
+			}
+		}
+		share := n*(k+1)/views - n*k/views
+		all.Go(func() {
+			room, out := newProcessRoom(p.centres, s.features.size), make([]float64, p.traits)
+			found[k] = s.choose(s.foretold(func(pt space.Point, u []float64) (aims, limits []float64) {
+				return p.foretell(s.domain.Traits, pt, u, view, room, out)
+			}, start, viewed, "view "+strconv.Itoa(k)), share, p.typical)
+		})
+	}
+	all.Wait()
+	var chosen []promise
+	taken := map[string]bool{}
+	for _, some := range found {
+		for _, one := range some {
+			if key := one.point.Key(); !taken[key] {
+				taken[key] = true
+				chosen = append(chosen, one)
+			}
+		}
+	}
+	return s.note(chosen, n)
+}
