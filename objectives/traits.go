@@ -158,11 +158,11 @@ func unroundness(s *models.Sample, wanted models.Sense) float64 {
 // axialRatioOf turns unroundness back: linear and what is in the other sense
 // have the highest.
 func axialRatioOf(u float64) float64 {
-	v := 1 - math.Max(u, 0)
-	if !(v > 0) {
+	u = math.Max(u, 0)
+	if !(u < 1) {
 		return models.AxialRatioCap
 	}
-	return math.Min(20*math.Log10((1+math.Sqrt(1-v*v))/v), models.AxialRatioCap)
+	return math.Min(20*math.Log10((1+math.Sqrt(u*(2-u)))/(1-u)), models.AxialRatioCap)
 }
 
 // Recollect gives evaluations of the search that were read from a record the

@@ -10,6 +10,7 @@ import (
 	"turnwise/optimize/front"
 	"turnwise/optimize/genetic"
 	"turnwise/optimize/searchtest"
+	"turnwise/optimize/space"
 	"turnwise/optimize/surrogate"
 )
 
@@ -63,10 +64,28 @@ func valuesOf(es []optimize.Evaluation) []front.Value {
 }
 
 // BenchmarkRound is what one round costs late in a search: 16 points asked
-// when 2,000 are known, of 10 variables, 3 aims and 4 limits.
+// when 2,000 are known, of 10 variables; by figures of 3 aims and 4 limits,
+// and by the traits of two aims and a limit over five frequencies.
 func BenchmarkRound(b *testing.B) {
-	d := cube(10, 3, 4)
-	start := drive(genetic.New(d, genetic.Config{Population: 40, Evaluations: 2000, Seed: 1}, nil), trade(d))
+	figures := cube(10, 3, 4)
+	b.Run("figures", func(b *testing.B) {
+		rounds(b, figures, func(c optimize.Candidate) optimize.Evaluation { return trade(figures)(c) })
+	})
+	many := banded{true}
+	wide := many.domain()
+	for _, name := range []string{"a", "b", "c", "d", "e"} {
+		wide.Space = append(wide.Space, space.NewReal(name, 0, 1, 1e-6))
+	}
+	b.Run("traits", func(b *testing.B) {
+		rounds(b, wide, func(c optimize.Candidate) optimize.Evaluation {
+			s, _ := many.Evaluate(b.Context(), c)
+			return optimize.Evaluation{Candidate: c, Score: s, Status: optimize.OK}
+		})
+	})
+}
+
+func rounds(b *testing.B, d optimize.Domain, answer func(optimize.Candidate) optimize.Evaluation) {
+	start := drive(genetic.New(d, genetic.Config{Population: 40, Evaluations: 2000, Seed: 1}, nil), answer)
 	spent := time.Duration(0)
 	count := 0
 	for b.Loop() {
@@ -76,7 +95,7 @@ func BenchmarkRound(b *testing.B) {
 			batch := s.Ask()
 			told := make([]optimize.Evaluation, len(batch))
 			for i, c := range batch {
-				told[i] = trade(d)(c)
+				told[i] = answer(c)
 			}
 			s.Tell(told)
 			spent += time.Since(began)

@@ -46,9 +46,7 @@ type likelihood struct {
 	low, width []float64
 }
 
-// fitted are the most likely scales for values at some points, from where an
-// earlier fit ended.
-func fitted(x [][]float64, values []float64, from *scales) *scales {
+func newLikelihood(x [][]float64, values []float64) *likelihood {
 	n, features := len(x), len(x[0])
 	l := &likelihood{x: x, y: mat.NewVecDense(n, values), kernel: mat.NewSymDense(n, nil), slope: mat.NewSymDense(n, nil),
 		gradient: make([]float64, features+1)}
@@ -56,6 +54,13 @@ func fitted(x [][]float64, values []float64, from *scales) *scales {
 		l.low, l.width = append(l.low, math.Log(shortest)), append(l.width, math.Log(longest/shortest))
 	}
 	l.low, l.width = append(l.low, math.Log(leastNugget)), append(l.width, math.Log(mostNugget/leastNugget))
+	return l
+}
+
+// fitted are the most likely scales for values at some points, from where an
+// earlier fit ended.
+func fitted(x [][]float64, values []float64, from *scales) *scales {
+	l := newLikelihood(x, values)
 	start := l.first()
 	if from != nil {
 		start = from.raw
