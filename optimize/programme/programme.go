@@ -48,9 +48,9 @@ type Config struct {
 	Dear     bool
 	DearFrom time.Duration
 	// Learned is how many evaluations at the start of a genetic stage go to the
-	// learned searcher, where the domain has traits for it: it finds in fewer
-	// evaluations what the genetic searcher would, and takes time of its own
-	// for each.
+	// learned searcher, where the domain has traits for it and one model: it
+	// finds in fewer evaluations what the genetic searcher would, and takes
+	// time of its own for each. A ladder saves in its own way.
 	Learned int
 	// Population of the genetic searcher; 0: fitted to the plan.
 	Population int
@@ -110,7 +110,7 @@ func New(d optimize.Domain, c Config) *Search {
 		}
 		walks := int(math.Round(c.Simplex * float64(n)))
 		learned := 0
-		if d.Traits != nil {
+		if d.Traits != nil && d.Finest == 0 {
 			learned = max(min(c.Learned, n-walks-min(sample, n)), 0)
 		}
 		s.segments = append(s.segments,
