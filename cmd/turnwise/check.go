@@ -66,20 +66,23 @@ func check(ctx context.Context, s streams, path, lasting string) error {
 		return failed(fmt.Errorf("the model answers none of the first designs: %w", err))
 	}
 	workers := runtime.NumCPU()
-	planned := plannedEvaluations(&b, one, workers)
+	planned := plannedEvaluations(&b, p, one, workers)
 	ground, sizes := timeGround(ctx, p, one), grounds(p)
-	whole := time.Duration((float64(one)*float64(planned) + float64(ground)*float64(sizes)) / float64(workers))
+	whole := time.Duration((float64(one)*float64(planned)+float64(ground)*float64(sizes))/float64(workers)) + ownTime(p, planned)
 	first := ""
 	if ground > 0 {
 		first = fmt.Sprintf(" and up to %s more for the first on each of %d grounds", brief(ground), sizes)
 	}
 	fmt.Fprintf(w, "time          one evaluation %s here%s; %d of them on %d workers about %s, and the final front besides\n", brief(one), first, planned, workers, brief(whole))
-	if one >= dearFrom {
+	switch {
+	case one >= dearFrom:
 		fmt.Fprintf(w, "searcher      learned: an evaluation takes so long that surfaces through the answers pay\n")
+	case learns(p):
+		fmt.Fprintf(w, "searcher      learned for the first %d evaluations, which it takes some %v each for; then genetic\n", min(planned, learnedMost), learnedOwn)
 	}
 	_, err = fmt.Fprintf(w, "journal       about %s\n", bytesText(journalBytes(&b, planned)))
 	if limit > 0 {
-		n := timedPlan(limit, one, workers)
+		n := timedPlan(p, limit, one, workers)
 		_, err = fmt.Fprintf(w, "in %-10s about %d evaluations and %s of journal\n", brief(limit), n, bytesText(journalBytes(&b, n)))
 	}
 	return failed(err)
@@ -239,21 +242,34 @@ func timeEvaluation(ctx context.Context, p *objectives.Problem) (time.Duration, 
 
 // plannedEvaluations is what a search of a brief plans: what the brief says,
 // else as many as its time allows, else the default.
-func plannedEvaluations(b *configs.Brief, one time.Duration, workers int) int {
+func plannedEvaluations(b *configs.Brief, p *objectives.Problem, one time.Duration, workers int) int {
 	switch {
 	case b.Budget.Evaluations > 0:
 		return b.Budget.Evaluations
 	case b.Budget.Time > 0:
-		return timedPlan(b.Budget.Time, one, workers)
+		return timedPlan(p, b.Budget.Time, one, workers)
 	}
 	return configs.DefaultEvaluations
 }
 
 // timedPlan is how many evaluations fit into a time, a tenth of it kept for
 // the final front.
-func timedPlan(t, one time.Duration, workers int) int {
-	n := 0.9 * float64(t) / float64(one) * float64(workers)
+func timedPlan(p *objectives.Problem, t, one time.Duration, workers int) int {
+	left, each := 0.9*float64(t), float64(one)/float64(workers)
+	n := left / each
+	if learns(p) && one < dearFrom {
+		n = math.Max((left-float64(ownTime(p, learnedMost)))/each, 0)
+		n = math.Max(n, math.Min(left/(each+float64(learnedOwn)), learnedMost))
+	}
 	return int(math.Min(math.Max(n, 100), 100_000_000))
+}
+
+// ownTime is about what the learned searcher takes for itself.
+func ownTime(p *objectives.Problem, planned int) time.Duration {
+	if !learns(p) {
+		return 0
+	}
+	return learnedOwn * time.Duration(min(planned, learnedMost))
 }
 
 // journalBytes is about how many bytes a journal takes on disk: a row and an

@@ -168,7 +168,7 @@ func (ses *session) plan(ctx context.Context) error {
 		if err != nil {
 			return failed(fmt.Errorf("the model answers none of the first designs: %w", err))
 		}
-		ses.planned = []int{timedPlan(limit, one, ses.set.Workers)}
+		ses.planned = []int{timedPlan(ses.problem, limit, one, ses.set.Workers)}
 	default:
 		ses.planned = []int{configs.DefaultEvaluations}
 	}

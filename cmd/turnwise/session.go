@@ -96,13 +96,24 @@ const dearFrom = 300 * time.Millisecond
 // their time that they are dear.
 const learnedMost = 1900
 
+// learnedOwn is about how long the learned searcher takes for one of them, on
+// two cores of a common server.
+const learnedOwn = 15 * time.Millisecond
+
+// learns reports whether the learned searcher leads a search whose
+// evaluations are not dear.
+func learns(p *objectives.Problem) bool {
+	d := p.Domain()
+	return p.Finest().Model == configs.FullWave && d.Traits != nil && d.Finest == 0
+}
+
 // searcher is the programme of the run.
 func (ses *session) searcher() *programme.Search {
 	c := programme.Config{
 		Plan: ses.planned, Sample: ses.brief.Search.Sample, Genetic: ses.brief.Search.Genetic, Simplex: ses.brief.Search.Simplex,
 		Seed: ses.brief.Seed, Seeds: ses.problem.HandSeeds(20), DearFrom: dearFrom,
 	}
-	if ses.problem.Finest().Model == configs.FullWave {
+	if learns(ses.problem) {
 		c.Learned = learnedMost
 	}
 	for i, d := range ses.brief.Starts {
