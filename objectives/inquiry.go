@@ -33,10 +33,13 @@ func (q *inquiry) ask(ctx context.Context, d *models.Design, question models.Que
 	}
 	a := optimize.Answer{Design: d.Hash(), Model: q.rung.Simulator.Identity()}
 	a.Key = QuestionKey(a.Design, question, a.Model)
-	if r, stored, ok := recalled(q.memory, a.Key); ok {
-		a.Response = stored
-		q.answers = append(q.answers, a)
-		return r, nil
+	if stored, ok := q.memory.Recall(a.Key); ok {
+		var r models.Response
+		if err := json.Unmarshal(stored, &r); err == nil {
+			a.Response = stored
+			q.answers = append(q.answers, a)
+			return r, nil
+		}
 	}
 	r, stored, err := q.put(ctx, d, question, a.Key)
 	q.took += r.Took
@@ -46,14 +49,6 @@ func (q *inquiry) ask(ctx context.Context, d *models.Design, question models.Que
 	a.Response = stored
 	q.answers = append(q.answers, a)
 	return r, nil
-}
-
-// recalled is an answer that the memory holds.
-func recalled(m Memory, key string) (r models.Response, stored []byte, ok bool) {
-	if stored, ok = m.Recall(key); !ok {
-		return r, nil, false
-	}
-	return r, stored, json.Unmarshal(stored, &r) == nil
 }
 
 // put asks the simulator, once where the same question is asked by several at

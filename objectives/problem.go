@@ -224,7 +224,7 @@ func (p *Problem) score(ctx context.Context, pt space.Point, r Rung, hz []float6
 			return optimize.Score{Answers: q.answers, Took: q.took}, err
 		}
 		rows = append(rows, row)
-		traits = append(traits, traitsIn(kinds, &d, &band)...)
+		traits = append(traits, traitsIn(kinds, &row, &d, &band)...)
 	}
 	row := p.standing(rows)
 	if p.hides(r) {
@@ -257,11 +257,6 @@ func (p *Problem) ScoreOf(row Row, answers []optimize.Answer) optimize.Score {
 	return s
 }
 
-// question asks for what decides a set of figures over a sweep.
-func (p *Problem) question(hz []float64, want figureSet) models.Question {
-	return models.Question{Hz: hz, Outputs: want.outputs(), Cone: p.Cone}
-}
-
 // figures reads one design's figures, and gives its answer over hz.
 func (p *Problem) figures(ctx context.Context, q *inquiry, d models.Design, hz []float64, want figureSet) (Row, models.Response, error) {
 	row := emptyRow()
@@ -270,7 +265,7 @@ func (p *Problem) figures(ctx context.Context, q *inquiry, d models.Design, hz [
 		return row, models.Response{}, err
 	}
 	readGeometry(&row, curve.Geometry())
-	r, err := q.ask(ctx, &d, p.question(hz, want))
+	r, err := q.ask(ctx, &d, models.Question{Hz: hz, Outputs: want.outputs(), Cone: p.Cone})
 	if err != nil {
 		return row, r, err
 	}

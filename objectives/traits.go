@@ -1,6 +1,7 @@
 package objectives
 
 import (
+	"context"
 	"fmt"
 	"math"
 	"slices"
@@ -16,7 +17,8 @@ type trait int
 
 // The traits. A VSWR has a kink where the match is perfect and an axial ratio
 // where the wave is circular; the reflection coefficient and the fourth Stokes
-// parameter have none. The others are the figures themselves at one frequency.
+// parameter have none. The others are the figures themselves at one frequency,
+// or those of the whole winding, equal at all.
 const (
 	reflectionReal trait = iota
 	reflectionImaginary
@@ -28,19 +30,24 @@ const (
 	beamwidthTrait
 	sidelobeTrait
 	rearTrait
+	gainBandwidthTrait
+	vswrBandwidthTrait
+	headroomTrait
 	traitCount int = iota
 
 	firstPlain = gainTrait
+	firstWhole = gainBandwidthTrait
 )
 
 // plainly is the figure that a plain trait is.
 var plainly = [traitCount]Figure{
 	gainTrait: Gain, efficiencyTrait: Efficiency, coneTrait: AxialRatioCone, edgeTrait: EdgeGain,
 	beamwidthTrait: Beamwidth, sidelobeTrait: Sidelobe, rearTrait: FrontToBack,
+	gainBandwidthTrait: GainBandwidth, vswrBandwidthTrait: VSWRBandwidth, headroomTrait: Headroom,
 }
 
 // traitsOf lists what each figure is read from. Those of the geometry need
-// nothing; those without a list are no worst case over the band's samples.
+// nothing.
 var traitsOf = [FigureCount][]trait{
 	Gain:           {gainTrait},
 	RealisedGain:   {gainTrait, reflectionReal, reflectionImaginary},
@@ -52,19 +59,16 @@ var traitsOf = [FigureCount][]trait{
 	Sidelobe:       {sidelobeTrait},
 	Efficiency:     {efficiencyTrait},
 	FrontToBack:    {rearTrait},
+	GainBandwidth:  {gainBandwidthTrait},
+	VSWRBandwidth:  {vswrBandwidthTrait},
+	Headroom:       {headroomTrait},
 }
 
-// kinds are the traits that aims and limits are read from; nil where one of
-// them cannot be.
+// kinds are the traits that aims and limits are read from; none where the
+// geometry decides them all.
 func (p *Problem) kinds() []trait {
 	var kinds []trait
 	for _, f := range p.Judged() {
-		if Figures[f].Geometry {
-			continue
-		}
-		if traitsOf[f] == nil {
-			return nil
-		}
 		for _, k := range traitsOf[f] {
 			if !slices.Contains(kinds, k) {
 				kinds = append(kinds, k)
@@ -96,23 +100,26 @@ func (p *Problem) traits() *optimize.Traits {
 	}}
 }
 
-// traitsIn are the traits of one answer, a row for each of its samples.
-func traitsIn(kinds []trait, d *models.Design, r *models.Response) []float64 {
+// traitsIn are the traits of a winding with these figures, a row for each of
+// its answer's samples.
+func traitsIn(kinds []trait, figures *Row, d *models.Design, r *models.Response) []float64 {
 	out := make([]float64, 0, len(kinds)*len(r.Samples))
 	for i := range r.Samples {
 		s := &r.Samples[i]
 		reflection := models.Reflection(s.Input, d.Feed.Impedance)
 		row := readSample(d, s, r.Answered)
 		for _, k := range kinds {
-			switch k {
-			case reflectionReal:
+			switch {
+			case k == reflectionReal:
 				out = append(out, real(reflection))
-			case reflectionImaginary:
+			case k == reflectionImaginary:
 				out = append(out, imag(reflection))
-			case unround:
+			case k == unround:
 				out = append(out, unroundness(s, d.Wanted()))
-			default:
+			case k < firstWhole:
 				out = append(out, row[plainly[k]])
+			default:
+				out = append(out, figures[plainly[k]])
 			}
 		}
 	}
@@ -165,29 +172,25 @@ func axialRatioOf(u float64) float64 {
 	return math.Min(20*math.Log10((1+math.Sqrt(u*(2-u)))/(1-u)), models.AxialRatioCap)
 }
 
-// Recollect gives evaluations of the search that were read from a record the
-// traits they had, from the answers in memory: a search that goes on is told
-// what it was told before.
-func (p *Problem) Recollect(past []optimize.Evaluation) error {
-	kinds := p.kinds()
-	if kinds == nil {
+// Recollect gives evaluations that were read from a record the traits they
+// had, by asking the memory again what they rest on: a search that goes on is
+// told what it was told before. It stops short where ctx ends.
+func (p *Problem) Recollect(ctx context.Context, past []optimize.Evaluation) error {
+	if p.kinds() == nil {
 		return nil
 	}
-	question := p.question(p.Band.Hz(), p.needed())
 	for i := range past {
-		e := &past[i]
-		if e.Status != optimize.OK {
+		if past[i].Status != optimize.OK {
 			continue
 		}
-		e.Traits = nil
-		model := p.rungs[min(e.Rung, len(p.rungs)-1)].Simulator.Identity()
-		for _, d := range p.spread(p.Layout.Design(e.Point)) {
-			r, _, ok := recalled(p.Memory, QuestionKey(d.Hash(), question, model))
-			if !ok {
-				return fmt.Errorf("the record has no answer to candidate %d, which was answered", e.ID)
-			}
-			e.Traits = append(e.Traits, traitsIn(kinds, &d, &r)...)
+		s, err := p.Evaluate(ctx, past[i].Candidate)
+		if ctx.Err() != nil {
+			return nil
 		}
+		if err != nil {
+			return fmt.Errorf("candidate %d was answered, and now: %w", past[i].ID, err)
+		}
+		past[i].Traits = s.Traits
 	}
 	return nil
 }

@@ -132,7 +132,7 @@ func (ses *session) run(ctx context.Context) error {
 		return ses.already()
 	}
 	ses.problem.Memory = ses
-	if err := ses.problem.Recollect(ses.past); err != nil {
+	if err := ses.problem.Recollect(ctx, ses.past); err != nil {
 		return failed(fmt.Errorf("%s: %w", ses.folder.Dir, err))
 	}
 	for _, u := range ses.problem.Unapplied {
