@@ -66,7 +66,13 @@ func TestDearExtensionContinues(t *testing.T) {
 // A dear run that was stopped anywhere and goes on finds what an unbroken
 // one finds, and evaluates nothing anew.
 func TestDearReplay(t *testing.T) {
-	p := searchtest.ProblemByName("tnk")
+	for _, p := range []*searchtest.Problem{searchtest.ProblemByName("tnk"), searchtest.ProblemByName("tnk").WithTraits()} {
+		replays(t, p)
+	}
+}
+
+func replays(t *testing.T, p *searchtest.Problem) {
+	t.Helper()
 	run := func(past []optimize.Evaluation) optimize.Result {
 		s := programme.New(p.Domain, dear(80))
 		defer s.Close()
