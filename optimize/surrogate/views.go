@@ -1,6 +1,7 @@
 package surrogate
 
 import (
+	"slices"
 	"strconv"
 	"sync"
 
@@ -18,10 +19,9 @@ const views = 4
 // viewed is how many evaluations of the processes each of them has.
 const viewed = 1000
 
-// infillViews chooses n points by processes through what is known and notes
-// what the first view promises.
+// infillViews chooses n points by processes through what is known; fewer where
+// nothing is promised.
 func (s *Search) infillViews(n int) []space.Point {
-	s.promised = nil
 	if n == 0 {
 		return nil
 	}
@@ -53,15 +53,13 @@ func (s *Search) infillViews(n int) []space.Point {
 		})
 	}
 	all.Wait()
-	var chosen []promise
+	var chosen []space.Point
 	taken := map[string]bool{}
-	for _, some := range found {
-		for _, one := range some {
-			if key := one.point.Key(); !taken[key] {
-				taken[key] = true
-				chosen = append(chosen, one)
-			}
+	for _, one := range slices.Concat(found[:]...) {
+		if key := one.point.Key(); !taken[key] {
+			taken[key] = true
+			chosen = append(chosen, one.point)
 		}
 	}
-	return s.note(chosen, n)
+	return chosen
 }
