@@ -15,6 +15,9 @@ type scales struct {
 	inverse []float64
 	nugget  float64
 	raw     []float64 // where their search ended, to start from again
+	// error is how far processes with these scales are off where a centre is
+	// left out, by what the nearest other lets expect; 0: not known yet.
+	error float64
 }
 
 // Bounds of lengths, in parts of a feature's range, and of the nugget. A
@@ -128,7 +131,7 @@ func (l *likelihood) evaluate(raw []float64) {
 				d += (a[k] - b) * (a[k] - b) * square[k]
 			}
 			r := math.Sqrt(5 * d)
-			e := math.Exp(-r)
+			e := decay(r)
 			l.kernel.SetSym(i, j, (1+r+r*r/3)*e)
 			l.slope.SetSym(i, j, 5.0/3*(1+r)*e)
 		}

@@ -176,6 +176,14 @@ func TestProcessThroughWhatIsTied(t *testing.T) {
 	}
 }
 
+func TestDecay(t *testing.T) {
+	for x := 0.0; x < 700; x += 0.0137 {
+		if got, want := decay(x), math.Exp(-x); math.Abs(got-want) > 2e-12*want+1e-299 {
+			t.Fatalf("e^-%g: %g, want %g", x, got, want)
+		}
+	}
+}
+
 // A warp of both ends is monotone and turns back.
 func TestWarpOfBothEnds(t *testing.T) {
 	w := newWarp([]float64{-100, 9, 10, 11, 12, 13, 90})
