@@ -5,7 +5,6 @@ import (
 	"sync"
 
 	"turnwise/optimize"
-	"turnwise/optimize/space"
 )
 
 // Bounds of what processes are laid through: all of it, and of that the best;
@@ -114,11 +113,9 @@ func (s *Search) fit(centres []int, features [][]float64) {
 	all.Wait()
 }
 
-// foretell writes the traits of a point to out and reads its aims and limits
-// from them, as a view has them.
-func (p *processes) foretell(t *optimize.Traits, pt space.Point, u []float64, view []float64, room *processRoom, out []float64) (aims, limits []float64) {
+// foretell writes the traits at features u to out, as a view has them.
+func (p *processes) foretell(u, view []float64, room *processRoom, out []float64) {
 	for kind, one := range p.of {
 		one.foretell(u, view[kind], room, out[kind:], len(p.of))
 	}
-	return t.Read(pt, out)
 }

@@ -34,22 +34,20 @@ func (s *Search) infillViews(n int) []space.Point {
 	if s.round%afresh != 0 {
 		start = s.those(centres)
 	}
-	rng := optimize.Stream(s.c.Seed, "surrogate views", s.round)
 	var found [views][]promise
 	var all sync.WaitGroup
-	for k := range found {
-		view := make([]float64, len(p.of))
-		if k > 0 {
-			for i := range view {
-				view[i] = rng.NormFloat64()
-			}
+	for k, view := range s.drawnViews(len(p.of)) {
+		share := (n + views - 1 - k) / views
+		if share == 0 {
+			break
 		}
-		share := n*(k+1)/views - n*k/views
 		all.Go(func() {
 			room, out := newProcessRoom(p.centres, s.features.size), make([]float64, p.traits)
-			found[k] = s.choose(s.foretold(func(pt space.Point, u []float64) (aims, limits []float64) {
-				return p.foretell(s.domain.Traits, pt, u, view, room, out)
-			}, start, viewed, "view "+strconv.Itoa(k)), share, p.typical)
+			foretell := func(pt space.Point, u []float64) (aims, limits []float64) {
+				p.foretell(u, view, room, out)
+				return s.domain.Traits.Read(pt, out)
+			}
+			found[k] = s.choose(s.foretold(foretell, start, viewed, "view "+strconv.Itoa(k)), share, p.typical)
 		})
 	}
 	all.Wait()
@@ -62,4 +60,19 @@ func (s *Search) infillViews(n int) []space.Point {
 		}
 	}
 	return chosen
+}
+
+// drawnViews says for every view how many errors each kind of trait is off.
+func (s *Search) drawnViews(kinds int) [views][]float64 {
+	rng := optimize.Stream(s.c.Seed, "surrogate views", s.round)
+	var all [views][]float64
+	for k := range all {
+		all[k] = make([]float64, kinds)
+		for i := range all[k] {
+			if k > 0 {
+				all[k][i] = rng.NormFloat64()
+			}
+		}
+	}
+	return all
 }
