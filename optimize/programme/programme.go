@@ -93,6 +93,11 @@ var _ optimize.Searcher = (*Search)(nil)
 var _ optimize.Explainer = (*Search)(nil)
 var _ io.Closer = (*Search)(nil)
 
+// learnedBefore is how many evaluations may go before a learned stage that the
+// genetic searcher follows: it learns from some hundreds at most, and would
+// see little of more.
+const learnedBefore = 20_000
+
 // New is the programme of a config. It panics on a plan of nothing.
 func New(d optimize.Domain, c Config) *Search {
 	if len(c.Plan) == 0 || c.Plan[0] < 1 {
@@ -110,11 +115,13 @@ func New(d optimize.Domain, c Config) *Search {
 		}
 		walks := int(math.Round(c.Simplex * float64(n)))
 		learned := 0
-		if d.Traits != nil && d.Finest == 0 {
+		if d.Traits != nil && d.Finest == 0 && begin < learnedBefore {
 			learned = max(min(c.Learned, n-walks-min(sample, n)), 0)
 		}
+		if learned > 0 {
+			s.segments = append(s.segments, segment{stage: Learned, end: begin + min(sample, n) + learned, id: k})
+		}
 		s.segments = append(s.segments,
-			segment{stage: Learned, end: begin + min(sample, n) + learned, id: k},
 			segment{stage: Genetic, end: end - walks, id: k},
 			segment{stage: Simplex, end: end, id: k})
 	}
@@ -146,12 +153,17 @@ func (s *Search) decide() {
 	}
 }
 
-// learn gives what the genetic searcher would have to the learned one before
-// it.
+// learn gives what the genetic searcher would have to the learned one, the one
+// before it where there is one.
 func (s *Search) learn() {
 	for i := range s.segments {
-		if s.segments[i].stage == Learned && i+1 < len(s.segments) && s.segments[i+1].stage == Genetic {
-			s.segments[i].end = s.segments[i+1].end
+		if s.segments[i].stage != Genetic {
+			continue
+		}
+		if i > 0 && s.segments[i-1].stage == Learned {
+			s.segments[i-1].end = s.segments[i].end
+		} else {
+			s.segments[i].stage = Learned
 		}
 	}
 }
