@@ -1,7 +1,9 @@
 package configs
 
 import (
+	"fmt"
 	"math"
+	"slices"
 
 	"turnwise/models"
 	"turnwise/models/helix"
@@ -20,6 +22,7 @@ func (r *reader) checkBrief(b *block, br *Brief) {
 	c.feedHeight()
 	c.ground()
 	c.foot()
+	c.solvable(br.Ladder)
 	c.answerable(br.Ladder)
 	c.room()
 }
@@ -206,6 +209,34 @@ func (c *briefCheck) foot() {
 	}
 	if g.Diameter > 0 && g.Diameter <= need {
 		c.r.add(c.at("ground", "diameter"), "ground.diameter", what, remedy)
+	}
+}
+
+// solvable notes a disc or cup that is or may become larger than the full-wave
+// model solves.
+func (c *briefCheck) solvable(ladder []Rung) {
+	if !slices.ContainsFunc(ladder, func(r Rung) bool { return r.Model == FullWave }) || !(c.s.Band.To > 0) {
+		return
+	}
+	wavelength := models.LightSpeed / c.s.Band.To
+	for _, d := range []struct {
+		q     objectives.Quantity
+		key   string
+		fixed float64
+		most  float64 // wavelengths
+	}{
+		{objectives.GroundDiameter, "diameter", c.s.Base.Ground.Diameter, models.MostGroundDiameter},
+		{objectives.GroundRim, "rim", c.s.Base.Ground.Rim, models.MostGroundRim},
+	} {
+		most := d.most * wavelength
+		what := fmt.Sprintf("is beyond %g wavelengths at the band's upper end, the most that the full-wave model solves", d.most)
+		remedy := "make it at most " + show(math.Floor(most*1e3)/1e3, Length) + ", or infinite"
+		if d.fixed > most {
+			c.r.add(c.at("ground", d.key), "ground."+d.key, what, remedy)
+		}
+		if v, ok := c.varies[d.q]; ok && v.To > most {
+			c.r.add(c.at("vary", string(d.q), "to"), "vary."+string(d.q)+".to", what, remedy)
+		}
 	}
 }
 

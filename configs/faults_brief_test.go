@@ -152,6 +152,9 @@ func TestFaultsOfWhatVaries(t *testing.T) {
 		{"a sheet of no thickness", []string{"diameter: 150 mm}", "diameter: 150 mm, thickness: 0 mm}"}, one(9, "ground.thickness", "0 mm is out of range", "from 0.01 mm to 100 mm")},
 		{"a sheet of no metal", []string{"diameter: 150 mm}", "diameter: 150 mm, material: cardboard}"}, one(9, "ground.material", `"cardboard" is not known`, "copper, aluminium")},
 		{"half a metal", []string{"diameter: 150 mm}", "diameter: 150 mm, density: 2.7 g/cm3}"}, one(9, "ground.material", "is missing", "conductivity and density")},
+		// 30 wavelengths at 1.70 GHz, 176.348 mm, are 5.290 m.
+		{"a plate as wide as a field", []string{"{kind: cup, diameter: 150 mm}", "{kind: cup, diameter: 20 m}", "  widest: {at_most: 160 mm}\n", ""}, one(9, "ground.diameter", "beyond 30 wavelengths", "at most 5.29 m")},
+		{"a rim that may be a tower", []string{"{from: 20 mm, to: 60 mm, step: 10 mm}", "{from: 1 m, to: 2 m, step: 1 m}"}, one(28, "vary.ground_rim.to", "beyond 10 wavelengths", "at most 1.763 m")},
 		{"an infinite sheet", []string{"{kind: cup, diameter: 150 mm}", "{kind: infinite, thickness: 1 mm, material: brass}", "  ground_rim: {from: 20 mm, to: 60 mm, step: 10 mm}\n", ""},
 			[]expected{{9, "ground.thickness", "does not go with a ground of kind infinite", "leave it away"}, {9, "ground.material", "does not go with a ground of kind infinite", "leave it away"}}},
 		{"a ground of no kind", []string{"{kind: cup, diameter: 150 mm}", "{diameter: 150 mm}"},

@@ -376,11 +376,14 @@ func (d *briefDraw) limits(f objectives.Figure) {
 func (d *briefDraw) model() {
 	t, br := d.t, &d.br
 	fidelity := func() string { return rapid.SampledFrom(Fidelities).Draw(t, "fidelity") }
-	least := 0
-	if br.Spec.Asks(objectives.FrontToBack) {
-		least = 1 // the formulas have no rear
+	kinds := []int{3}
+	if !br.Spec.Asks(objectives.FrontToBack) {
+		kinds = append(kinds, 0) // the formulas have no rear
 	}
-	switch rapid.IntRange(least, 3).Draw(t, "model") {
+	if d.solvable() {
+		kinds = append(kinds, 1, 2)
+	}
+	switch rapid.SampledFrom(kinds).Draw(t, "model") {
 	case 0:
 		br.Ladder = []Rung{{Model: ClosedForm}}
 	case 1:
@@ -394,6 +397,22 @@ func (d *briefDraw) model() {
 			Timeout: time.Duration(rapid.Int64Range(10, 1e9).Draw(t, "timeout")) * time.Millisecond,
 		}
 	}
+}
+
+// solvable reports whether the full-wave model solves every ground drawn.
+func (d *briefDraw) solvable() bool {
+	s := &d.br.Spec
+	diameter, rim := s.Base.Ground.Diameter, s.Base.Ground.Rim
+	for _, v := range s.Vary {
+		switch v.Quantity {
+		case objectives.GroundDiameter:
+			diameter = v.To
+		case objectives.GroundRim:
+			rim = v.To
+		}
+	}
+	wavelength := models.LightSpeed / s.Band.To
+	return diameter <= models.MostGroundDiameter*wavelength && rim <= models.MostGroundRim*wavelength
 }
 
 func (d *briefDraw) budget() {

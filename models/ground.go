@@ -23,6 +23,13 @@ type Ground struct {
 	Material  Material // the zero one: aluminium
 }
 
+// The largest ground that the full-wave model solves, in wavelengths: its rules
+// around the axis end there.
+const (
+	MostGroundDiameter = 30
+	MostGroundRim      = 10
+)
+
 // What a plate or cup is made of where nobody says: practice.
 const sheetThickness = 1e-3 // m
 

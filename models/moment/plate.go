@@ -4,6 +4,8 @@ import (
 	"errors"
 	"fmt"
 	"math"
+
+	"turnwise/models"
 )
 
 // Plate is a finite ground about the axis that stands in place of the
@@ -55,19 +57,12 @@ func (p Plate) check(plane bool) error {
 // mostPlate is a length in metres that no plate has.
 const mostPlate = 1e6
 
-// Plates beyond these sizes, in wavelengths, are not solved: the rules around
-// the axis end there.
-const (
-	mostRadii = 15
-	mostRim   = 10
-)
-
 // fits tells whether a plate can be solved up to the wave number k.
 func (p Plate) fits(k float64) error {
 	waves := k / (2 * math.Pi)
-	if p.Radius*waves > mostRadii || p.Rim*waves > mostRim {
+	if 2*p.Radius*waves > models.MostGroundDiameter || p.Rim*waves > models.MostGroundRim {
 		return fmt.Errorf("ground: a plate %.4g wavelengths across with a rim of %.4g; up to %d and %d are solved: a smaller one, or an infinite plane, is due",
-			2*p.Radius*waves, p.Rim*waves, 2*mostRadii, mostRim)
+			2*p.Radius*waves, p.Rim*waves, models.MostGroundDiameter, models.MostGroundRim)
 	}
 	return nil
 }
