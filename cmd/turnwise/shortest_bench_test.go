@@ -34,7 +34,18 @@ var shortestLaws = []struct {
 // first sample a Latin hypercube alone, seeds 1 to 5, and confirms with the
 // fine model. wavelengths is the median. Run it with -benchtime 1x: it takes
 // minutes a seed.
-func BenchmarkShortest(b *testing.B) { shortestOf(b, shortestSpec, 5, 20000) }
+func BenchmarkShortest(b *testing.B) { shortestOf(b, shortestSpec, longSearch(20000), 5) }
+
+// longSearch is a search by the genetic searcher and simplexes.
+func longSearch(evaluations int) programme.Config {
+	return programme.Config{Plan: []int{evaluations}, Sample: 0.05, Genetic: 0.65, Simplex: 0.3}
+}
+
+// BenchmarkShortestLearned has a tenth of the simulations and the learned
+// searcher, seeds 1 to 5.
+func BenchmarkShortestLearned(b *testing.B) {
+	shortestOf(b, shortestSpec, programme.Config{Plan: []int{2000}, Sample: 0.05, Genetic: 0.9, Simplex: 0.05, Learned: 2000}, 5)
+}
 
 // BenchmarkShortestBand is the same over a band of 4 %, whatever the error of
 // scale up to 1 %: over as much more of the band at either end. It has 6,000
@@ -44,19 +55,19 @@ func BenchmarkShortestBand(b *testing.B) {
 		s := shortestSpec(gain, diameter, spacing)
 		s.Band = models.Band{From: 0.98 * 0.99 * models.LightSpeed, To: 1.02 * 1.01 * models.LightSpeed, Samples: 7}
 		return s
-	}, 1, 6000)
+	}, longSearch(6000), 1)
 }
 
-func shortestOf(b *testing.B, spec func(gain float64, diameter, spacing int) objectives.Spec, seeds uint64, evaluations int) {
+func shortestOf(b *testing.B, spec func(gain float64, diameter, spacing int) objectives.Spec, c programme.Config, seeds uint64) {
 	for _, gain := range []float64{13, 15} {
 		for _, law := range shortestLaws {
 			b.Run(fmt.Sprintf("gain=%g/%s", gain, law.name), func(b *testing.B) {
 				for b.Loop() {
 					var lengths []float64
 					var hand float64
-					for seed := uint64(1); seed <= seeds; seed++ {
-						length, byHand := shortest(b, spec(gain, law.diameter, law.spacing), gain, seed, evaluations)
-						b.Logf("seed %d: %.3f wavelengths, by hand %.3f", seed, length, byHand)
+					for c.Seed = 1; c.Seed <= seeds; c.Seed++ {
+						length, byHand := shortest(b, spec(gain, law.diameter, law.spacing), gain, c)
+						b.Logf("seed %d: %.3f wavelengths, by hand %.3f", c.Seed, length, byHand)
 						lengths = append(lengths, length)
 						hand = byHand
 					}
@@ -94,11 +105,11 @@ func shortestSpec(gain float64, diameter, spacing int) objectives.Spec {
 
 // shortest searches once and gives the length in wavelengths, and what the
 // common hand formula gives for the gain.
-func shortest(b *testing.B, spec objectives.Spec, gain float64, seed uint64, evaluations int) (length, hand float64) {
+func shortest(b *testing.B, spec objectives.Spec, gain float64, c programme.Config) (length, hand float64) {
 	p, last := solvedAt(b, spec, moment.Standard), solvedAt(b, spec, moment.Fine)
-	search := programme.New(p.Domain(), programme.Config{Plan: []int{evaluations}, Sample: 0.05, Genetic: 0.65, Simplex: 0.3, Seed: seed})
+	search := programme.New(p.Domain(), c)
 	defer search.Close()
-	r, err := optimize.Run(context.Background(), p, search, nil, optimize.Options{Workers: 2, Evaluations: evaluations})
+	r, err := optimize.Run(context.Background(), p, search, nil, optimize.Options{Workers: 2, Evaluations: c.Plan[0]})
 	if err != nil {
 		b.Fatal(err)
 	}
