@@ -125,7 +125,7 @@ func (p *process) leftOut(chol *mat.Cholesky, most []float64, telling int) float
 	for _, weights := range p.weights {
 		for i := range telling {
 			e := weights[i] / inverse.At(i, i)
-			sum += e * e / (1 - most[i]*most[i] + p.nugget)
+			sum += e * e / (max(1-most[i]*most[i], 0) + p.nugget)
 		}
 	}
 	return math.Sqrt(sum / float64(telling*len(p.weights)))
@@ -155,7 +155,7 @@ func (p *process) foretell(u []float64, view float64, room *processRoom, out []f
 		room.kernels[i] = k
 		most = max(most, k)
 	}
-	off := view * p.error * math.Sqrt(1-most*most)
+	off := view * p.error * math.Sqrt(max(1-most*most, 0)) // rounding may lift most above 1
 	for t, weights := range p.weights {
 		out[t*step] = p.warps[t].from(off + floats.Dot(weights, room.kernels))
 	}

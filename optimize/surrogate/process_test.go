@@ -131,6 +131,19 @@ func TestProcessInterpolates(t *testing.T) {
 	})
 }
 
+// A hair's breadth from a centre the kernel may round to more than it is at the
+// centre itself; a view still knows what to do.
+func TestProcessNextToACentre(t *testing.T) {
+	points := scattered(40, 3)
+	values := wavyAt(points)
+	p := laidProcess(t, even(3, 0.8, 1e-8), points, values)
+	for hair := 1e-12; hair < 1e-2; hair *= 1.001 {
+		if got := foretoldTrait(p, 40, []float64{points[0][0] + hair, points[0][1], points[0][2]}, 1); !(math.Abs(got-values[0]) < 0.5) {
+			t.Fatalf("%g from a centre: %g, want about %g", hair, got, values[0])
+		}
+	}
+}
+
 // The error is that of processes laid without each centre in turn.
 func TestProcessKnowsItsError(t *testing.T) {
 	points := scattered(30, 2)
