@@ -139,6 +139,9 @@ func (s *Search) foretold(foretell func(p space.Point, u []float64) (aims, limit
 			u := s.features.of(c.Point)
 			e.Candidate, e.Status = c, optimize.OK
 			e.Aims, e.Limits = foretell(c.Point, u)
+			if !finite(e.Aims) || !finite(e.Limits) {
+				e.Status = optimize.Failed
+			}
 			all = append(all, promise{c.Point, u, e.Value()})
 		}
 		g.Tell(told)

@@ -29,10 +29,12 @@ type processes struct {
 // learnable reports whether an answer can be learned from.
 func (s *Search) learnable(i int) bool {
 	e := &s.known[i]
-	if e.Status != optimize.OK || len(e.Traits) == 0 {
-		return false
-	}
-	for _, x := range e.Traits {
+	return e.Status == optimize.OK && len(e.Traits) > 0 && finite(e.Traits)
+}
+
+// finite reports whether all are plain numbers.
+func finite(xs []float64) bool {
+	for _, x := range xs {
 		if math.IsNaN(x) || math.IsInf(x, 0) {
 			return false
 		}

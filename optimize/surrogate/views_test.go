@@ -111,6 +111,33 @@ func TestViewsDoNotDependOnProcessors(t *testing.T) {
 	}
 }
 
+// Points whose aims cannot be read are not asked, and stop nothing.
+func TestSomePointsCannotBeRead(t *testing.T) {
+	d := banded{true}.domain()
+	read := d.Traits.Read
+	d.Traits = &optimize.Traits{Kinds: 3, Read: func(p space.Point, traits []float64) (aims, limits []float64) {
+		aims, limits = read(p, traits)
+		if p[0] > 0.5 {
+			aims[0] = math.NaN()
+		}
+		return aims, limits
+	}}
+	s := surrogate.New(d, surrogate.Config{Evaluations: 90, Seed: 2}, nil)
+	r, err := optimize.Run(context.Background(), banded{true}, s, nil, optimize.Options{Workers: 1})
+	if err != nil || len(r.Evaluations) != 90 {
+		t.Fatalf("%d evaluations (%v)", len(r.Evaluations), err)
+	}
+	high := 0
+	for _, e := range r.Evaluations[30:] {
+		if e.Point[0] > 0.5 {
+			high++
+		}
+	}
+	if high > 20 { // what is drawn or bred knows nothing of it
+		t.Errorf("%d of 60 cannot be read", high)
+	}
+}
+
 // unknowable answers with traits that are no numbers now and then.
 type unknowable struct{ banded }
 
