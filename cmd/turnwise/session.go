@@ -94,7 +94,7 @@ const dearFrom = 300 * time.Millisecond
 // run repeats itself; what it has found by then the genetic searcher takes
 // many times as long to find. Other models are cheaper than that, or say by
 // their time that they are dear.
-const learnedMost = 1900
+const learnedMost = 1000
 
 // learnedOwn is about how long the learned searcher takes for one of them, on
 // two cores of a common server.
