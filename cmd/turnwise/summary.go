@@ -1,7 +1,6 @@
 package main
 
 import (
-	"context"
 	"fmt"
 	"strings"
 	"time"
@@ -40,11 +39,7 @@ func (ses *session) summary(r optimize.Result, settled optimize.Settled, t *fold
 	if len(t.Members) == 0 {
 		return unmet("nothing met the limits; %s holds the ten designs that miss them least", ses.folder.Path(folder.NearFile))
 	}
-	growth, err := ses.book.Growth(context.Background())
-	if err != nil {
-		return failed(err)
-	}
-	if when := grownBy(growth); when != "" {
+	if when := grownBy(history(r.Evaluations, ses.problem)); when != "" {
 		fmt.Fprintf(w, "hypervolume   %s\n", when)
 	}
 	for _, a := range ses.problem.Aims {
@@ -67,7 +62,7 @@ func (ses *session) summary(r optimize.Result, settled optimize.Settled, t *fold
 		fmt.Fprintln(w, line)
 	}
 	fmt.Fprintf(w, "front         %s\n", ses.folder.Path(folder.FrontFile))
-	_, err = fmt.Fprintf(w, "next          turnwise choose %s --at-least gain=%.0f\n", ses.folder.Dir, middleGain(t))
+	_, err := fmt.Fprintf(w, "next          turnwise choose %s --at-least gain=%.0f\n", ses.folder.Dir, middleGain(t))
 	return failed(err)
 }
 
