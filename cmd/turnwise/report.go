@@ -287,7 +287,7 @@ func tellSearch(ctx context.Context, book *journal.Reader, past []optimize.Evalu
 	s := report.Search{
 		Program: h.Program, Model: strings.Join(h.Models, "; "), Digest: h.Digest[:min(10, len(h.Digest))],
 		Evaluations: n.Evaluations, Failed: n.Failed, TimedOut: n.TimedOut, Feasible: n.Feasible, Reused: n.Reused, Final: n.Final,
-		Stages: report.Stages(past, found), History: report.History(past),
+		Stages: report.Stages(past, found), Stretches: report.Stretches(past), History: report.History(past),
 	}
 	s.Planned, _ = decided(ds)
 	for i, d := range ds {

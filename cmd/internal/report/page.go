@@ -49,6 +49,7 @@ type Search struct {
 
 	Evaluations, Failed, TimedOut, Feasible, Reused, Final int
 	Stages                                                 []Stage
+	Stretches                                              []Stretch
 	History                                                []Step
 }
 

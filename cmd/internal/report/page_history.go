@@ -129,7 +129,18 @@ func Stages(past []optimize.Evaluation, found map[string]int) []Stage {
 			stages = append(stages, Stage{Name: name, Front: found[name]})
 		}
 		stages[k].Evaluations++
-		stages[k].To = i + 1
 	}
 	return stages
+}
+
+// Stretches tells which stage asked when.
+func Stretches(past []optimize.Evaluation) []Stretch {
+	var all []Stretch
+	for i := range past {
+		if n := len(all); n == 0 || all[n-1].Stage != past[i].From {
+			all = append(all, Stretch{Stage: past[i].From})
+		}
+		all[len(all)-1].To = i + 1
+	}
+	return all
 }

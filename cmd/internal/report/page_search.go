@@ -15,8 +15,13 @@ type Stage struct {
 	Name        string
 	Evaluations int
 	Front       int // members of the front that it found
-	// To is the number of the last evaluation of its latest stretch.
-	To int
+}
+
+// Stretch is a part of a search that one stage had: an extended search has
+// several of a stage.
+type Stretch struct {
+	Stage string
+	To    int // the number of its last evaluation
 }
 
 // Step is how much of the final front's hypervolume was there after so many
@@ -111,8 +116,8 @@ func (r *Run) historyChart(steps []Step) *chart.Lines {
 		Y:      chart.Axis{Label: "hypervolume, % of the final", Min: 0, Max: 100},
 		Series: []chart.Series{s},
 	}
-	for _, st := range r.Search.Stages {
-		l.Sections = append(l.Sections, chart.Section{Name: st.Name, To: float64(st.To)})
+	for _, part := range r.Search.Stretches {
+		l.Sections = append(l.Sections, chart.Section{Name: part.Stage, To: float64(part.To)})
 	}
 	return l
 }
