@@ -29,9 +29,6 @@ type promise struct {
 // what they promise; fewer where nothing does.
 func (s *Search) infill(n int) []space.Point {
 	s.promised = nil
-	if n == 0 {
-		return nil
-	}
 	centres := s.centres(mostBest, mostCentres, s.answered)
 	surfaces, ok := s.learn(centres)
 	if !ok {

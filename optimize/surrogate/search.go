@@ -131,7 +131,9 @@ func (s *Search) points(n int) []space.Point {
 	if s.domain.Traits != nil {
 		infill = s.infillViews
 	}
-	add(infill(s.parts.take(n)), learned)
+	if k := s.parts.take(n); k > 0 {
+		add(infill(k), learned)
+	}
 	add(s.breed(n-len(points), points), bred)
 	return points
 }

@@ -22,9 +22,6 @@ const viewed = 1000
 // infillViews chooses n points by processes through what is known; fewer where
 // nothing is promised.
 func (s *Search) infillViews(n int) []space.Point {
-	if n == 0 {
-		return nil
-	}
 	centres := s.centres(mostBestProcessed, mostProcessed, s.learnable)
 	p, ok := s.process(centres)
 	if !ok {
